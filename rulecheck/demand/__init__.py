@@ -1,0 +1,31 @@
+"""What the circuit asks of each position, from its legal switching states."""
+
+from rulecheck.demand.demands import (
+    Bridge,
+    Demands,
+    FreeShort,
+    Group,
+    HardCommutation,
+    InterruptedCurrent,
+    Leg,
+    PositionDemand,
+    State,
+    Undetermined,
+    Variable,
+    Witness,
+)
+
+__all__ = [
+    "Bridge",
+    "Demands",
+    "FreeShort",
+    "Group",
+    "HardCommutation",
+    "InterruptedCurrent",
+    "Leg",
+    "PositionDemand",
+    "State",
+    "Undetermined",
+    "Variable",
+    "Witness",
+]

@@ -1,0 +1,154 @@
+"""What is known of one element: kind, pins by role, ratings with their provenance, edges."""
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from enum import StrEnum
+
+from rulecheck.netlist import Waveform
+from rulecheck.values import Dimension, Interval, Span, Unknown
+
+
+class Kind(StrEnum):
+    DIODE = "diode"
+    ZENER = "zener"
+    THYRISTOR = "thyristor"
+    TRIAC = "triac"
+    BJT = "bjt"
+    MOSFET = "mosfet"
+    P_MOSFET = "p-mosfet"
+    GAN_HEMT = "gan-hemt"
+    IGBT = "igbt"
+    IGBT_WITH_DIODE = "igbt-with-diode"
+    REVERSE_BLOCKING_IGBT = "reverse-blocking-igbt"
+    IDEAL_SWITCH = "ideal-switch"
+    RESISTOR = "resistor"
+    CAPACITOR = "capacitor"
+    INDUCTOR = "inductor"
+    WINDING_SET = "winding-set"
+    VOLTAGE_SOURCE = "voltage-source"
+    CURRENT_SOURCE = "current-source"
+    DRIVER = "driver"
+    ISOLATOR = "isolator"
+    CONTROLLER = "controller"
+    CONNECTOR = "connector"
+    FUSE = "fuse"
+    SENSOR = "sensor"
+    MODULE = "module"
+    OTHER = "other"
+    UNKNOWN = "unknown"
+
+
+class Conduction(StrEnum):
+    """How an edge conducts in its direction."""
+
+    FREE = "free"
+    GATED = "gated"
+    NEVER = "never"
+
+
+@dataclass(frozen=True, slots=True)
+class Edge:
+    """One direction through a device, from net `tail` to net `head`.
+
+    `blocks` is the voltage (tail over head, volts) that it withstands when it does not
+    conduct: 0 for a free edge. `current` is its rating in amperes in that direction.
+    A MOSFET's source-to-drain edge is free (its gate only lowers the drop).
+    """
+
+    tail: str
+    head: str
+    conduction: Conduction
+    blocks: float | Unknown
+    current: float | Unknown
+
+
+@dataclass(frozen=True, slots=True)
+class Pin:
+    role: str
+    net: str
+
+
+@dataclass(frozen=True, slots=True)
+class Datum:
+    """A stated number or range, in SI units, and who stated it."""
+
+    value: float | Interval
+    dimension: Dimension
+    stated_in: str
+    """`card`, `model NAME` or `part data KEY`."""
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class Part:
+    name: str
+    kind: Kind
+    pins: tuple[Pin, ...]
+    span: Span
+    value: float | Unknown
+    """Ohm, henry, farad, or a source's DC value."""
+    text: str = ""
+    """Model, subcircuit or value text on the card."""
+    edges: tuple[Edge, ...] = ()
+    """Both directions of every power path; empty for all but power devices."""
+    data: Mapping[str, Datum] = field(default_factory=dict)
+    """Stated figures by path: `ratings.blocking`, `gate.charge`, `diode.recovery-time`,
+    `driver.dead-time`."""
+    facts: Mapping[str, str] = field(default_factory=dict)
+    """Stated words by path, such as `ratings.dielectric`."""
+    settle_in: str = ""
+    """Where a missing datum would be written: `part SW-N100-7 (in hut.parts.yaml)`."""
+    waveform: Waveform | None = None
+    multiplicity: float = 1.0
+    module: str = ""
+    """The module part that this inner device belongs to; empty otherwise."""
+    instance: str = ""
+    instance_chain: tuple[Span, ...] = ()
+
+    def net(self, role: str) -> str | None:
+        """The net on the pin of that role, or None where the part has no such pin."""
+        return next((pin.net for pin in self.pins if pin.role == role), None)
+
+    @property
+    def nets(self) -> tuple[str, ...]:
+        return tuple(pin.net for pin in self.pins)
+
+    @property
+    def gated(self) -> bool:
+        return any(edge.conduction is Conduction.GATED for edge in self.edges)
+
+    def datum(self, path: str) -> Datum | Unknown:
+        """The stated figure, or what to write to state it."""
+        return self.data.get(path) or Unknown(
+            f"{path.partition('.')[2] or path} of {self.name}", f"{path} of {self.settle_in}"
+        )
+
+
+@dataclass(frozen=True, slots=True)
+class Core:
+    """Windings on one magnetic core: the coupled inductors' names and their relative turns.
+
+    Turns are proportional to the square root of inductance; the dot is at the first net.
+    """
+
+    name: str
+    windings: tuple[str, ...]
+    turns: tuple[float, ...]
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class PartList:
+    """All parts in netlist order; opaque subcircuits are one part, flattened ones their contents."""
+
+    file: str
+    parts: tuple[Part, ...]
+    cores: tuple[Core, ...]
+    ground: str
+    grounds: tuple[str, ...]
+    not_understood: tuple[str, ...]
+    """Names of parts of kind UNKNOWN and of elements whose cards could not be read."""
+    assumed: tuple[str, ...]
+    """Readings that the user may overrule, one sentence each."""
+    by_name: Mapping[str, Part] = field(default_factory=dict)
+    """By the part's name as written."""

@@ -1,0 +1,139 @@
+"""The product of this step: the power stage as ports, branches and positions on merged nets."""
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from enum import StrEnum
+
+from rulecheck.parts import PartList
+from rulecheck.stage.position import Position
+from rulecheck.values import Interval, Span
+
+
+class PortKind(StrEnum):
+    DC = "dc"
+    AC = "ac"
+    PHASES = "phases"
+
+
+@dataclass(frozen=True, slots=True)
+class Port:
+    """Where the stage meets the world, from the sheet or from a source of the netlist.
+
+    `current` is the mean (DC) or plus and minus the amplitude (AC) out of the first net into
+    the stage; `voltage` likewise of the first net over the second, for phases of a phase over
+    the neutral. None is a quantity that the port leaves free.
+    """
+
+    name: str
+    kind: PortKind
+    nets: tuple[str, ...]
+    """DC and AC: plus and minus; phases: the phases in order. Merged nets."""
+    neutral: str
+    """Of phases: the net, or empty where the star point is not connected."""
+    voltage: Interval | None
+    current: Interval | None
+    power: Interval | None
+    """Into the stage, watts."""
+    frequency: Interval | None
+    instantaneous: bool
+    """True where `current` is the whole instantaneous range (the port is on a switching net)."""
+    stated_in: str
+    """`sheet` or the element of the netlist that serves."""
+    span: Span
+
+
+class BranchKind(StrEnum):
+    VOLTAGE = "voltage"
+    CURRENT = "current"
+    RESISTOR = "resistor"
+
+
+@dataclass(frozen=True, slots=True)
+class Branch:
+    """A two-terminal power branch that is no position, on merged nets.
+
+    VOLTAGE: sources, voltage ports, bulk capacitors. CURRENT: inductors, current sources and
+    current ports (positive from `start` through the branch to `end`). RESISTOR: loads.
+    """
+
+    name: str
+    """The part's name, or `port/PORT` and `port/PORT/NET` for a phase."""
+    kind: BranchKind
+    start: str
+    end: str
+    value: float | None
+    """Ohm, henry or farad where known."""
+    part: str
+    """The part's name; empty for a port."""
+    port: str
+    """The port's name; empty for a part."""
+    given: Interval | None
+    """The voltage or current that sheet or source states."""
+
+
+@dataclass(frozen=True, slots=True)
+class Transformer:
+    """Ideal windings on one core; each is (start, end) with the dot at start."""
+
+    name: str
+    windings: tuple[tuple[str, str], ...]
+    turns: tuple[float, ...]
+    parts: tuple[str, ...]
+    magnetising: float | None
+    """Henry, seen from the first winding."""
+
+
+class Role(StrEnum):
+    SWITCH = "switch"
+    WIRE = "wire"
+    SNUBBER = "snubber"
+    CLAMP = "clamp"
+    BULK_CAPACITOR = "bulk capacitor"
+    INDUCTOR = "inductor"
+    WINDING = "winding"
+    SOURCE = "source"
+    LOAD = "load"
+    GATE_DRIVE = "gate drive"
+    BOOTSTRAP = "bootstrap"
+    SHARING = "sharing"
+    SENSE = "sense"
+    PORT = "port"
+    SIGNAL = "signal"
+    IGNORED = "ignored"
+
+
+@dataclass(frozen=True, slots=True)
+class Switching:
+    """Of one leg or of all; None where nobody states it. Hertz and seconds."""
+
+    frequency: float | None = None
+    dead_time: float | None = None
+    edge: float | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Stage:
+    netlist: str
+    parts: PartList
+    ports: tuple[Port, ...]
+    branches: tuple[Branch, ...]
+    transformers: tuple[Transformer, ...]
+    positions: tuple[Position, ...]
+    merged: Mapping[str, str]
+    """Every net of the circuit -> the net that stands for it after merging wires."""
+    roles: Mapping[str, Role]
+    """By part name."""
+    role_of: Mapping[str, str] = field(default_factory=dict)
+    """By part name: the part or net that the role refers to (a snubber's position)."""
+    given: Mapping[str, Interval] = field(default_factory=dict)
+    """Overrides of the sheet by part name: the current of an inductor, the voltage of a
+    capacitor, as a whole instantaneous range."""
+    ground: str = "0"
+    switching: Switching = Switching()
+    leg_switching: Mapping[str, Switching] = field(default_factory=dict)
+    """By midpoint net."""
+    efficiency: float = 1.0
+    sheet: str = ""
+    """The sheet's file name; empty where there is none."""
+    assumed: tuple[str, ...] = ()
+    not_covered: tuple[str, ...] = ()

@@ -1,0 +1,40 @@
+"""Small frozen types that every step shares; knows nothing of netlists or electronics."""
+
+from rulecheck.values.affine import AffineForm, total_of, variable
+from rulecheck.values.interval import Interval, point
+from rulecheck.values.natural import natural_key
+from rulecheck.values.problem import Gravity, Problem, error, errors_of, note
+from rulecheck.values.quadrants import Quadrant, QuadrantSet
+from rulecheck.values.quantity import (
+    Dimension,
+    NotAQuantity,
+    Quantity,
+    read_quantity,
+    write_quantity,
+)
+from rulecheck.values.span import Span
+from rulecheck.values.unknown import Known, Unknown
+
+__all__ = [
+    "AffineForm",
+    "Dimension",
+    "Gravity",
+    "Interval",
+    "Known",
+    "NotAQuantity",
+    "Problem",
+    "Quadrant",
+    "QuadrantSet",
+    "Quantity",
+    "Span",
+    "Unknown",
+    "error",
+    "errors_of",
+    "natural_key",
+    "note",
+    "point",
+    "read_quantity",
+    "total_of",
+    "variable",
+    "write_quantity",
+]
