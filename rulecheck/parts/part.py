@@ -139,7 +139,7 @@ class Core:
 
 @dataclass(frozen=True, slots=True)
 class PartList:
-    """All parts in netlist order; opaque subcircuits are one part, flattened ones their contents."""
+    """All parts in netlist order; an opaque subcircuit is one part, a flattened one its contents."""
 
     file: str
     parts: tuple[Part, ...]

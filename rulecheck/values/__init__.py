@@ -13,14 +13,13 @@ from rulecheck.values.quantity import (
     write_quantity,
 )
 from rulecheck.values.span import Span
-from rulecheck.values.unknown import Known, Unknown
+from rulecheck.values.unknown import Unknown
 
 __all__ = [
     "AffineForm",
     "Dimension",
     "Gravity",
     "Interval",
-    "Known",
     "NotAQuantity",
     "Problem",
     "Quadrant",

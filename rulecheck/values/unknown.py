@@ -1,9 +1,6 @@
 """A datum that nobody stated, as a value of its own."""
 
 from dataclasses import dataclass
-from typing import TypeVar
-
-T = TypeVar("T")
 
 
 @dataclass(frozen=True, slots=True, order=True)
@@ -17,6 +14,3 @@ class Unknown:
 
     what: str
     settle: str
-
-
-Known = T | Unknown
