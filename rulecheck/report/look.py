@@ -1,0 +1,27 @@
+"""How a human report may look: how wide, in which characters, with or without colour."""
+
+from dataclasses import dataclass
+
+
+@dataclass(frozen=True, slots=True)
+class Look:
+    """`width` in columns; `ascii` keeps to seven-bit signs; `color` allows colour codes."""
+
+    width: int = 100
+    ascii: bool = False
+    color: bool = False
+
+    @property
+    def dots(self) -> str:
+        return " .. " if self.ascii else " … "
+
+    @property
+    def plus_minus(self) -> str:
+        return "+-" if self.ascii else "±"
+
+    @property
+    def arrow(self) -> str:
+        return "->" if self.ascii else "→"
+
+
+PLAIN = Look()

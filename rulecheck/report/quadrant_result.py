@@ -1,0 +1,107 @@
+"""What the quadrant reports show: each position's demand beside its capability."""
+
+from dataclasses import dataclass
+
+from rulecheck.capability import Capabilities, Capability
+from rulecheck.demand import Bridge, Demands, Group, Leg, PositionDemand, Undetermined
+from rulecheck.stage import Position, Stage
+from rulecheck.values import QuadrantSet, Unknown, natural_key
+
+
+@dataclass(frozen=True, slots=True)
+class PositionResult:
+    position: Position
+    demand: PositionDemand
+    capability: Capability
+
+    @property
+    def needs(self) -> QuadrantSet | Unknown:
+        return self.demand.quadrants
+
+    @property
+    def missing(self) -> QuadrantSet:
+        """The demanded quadrants that the devices lack; none where demand is not known."""
+        if isinstance(self.needs, Unknown):
+            return QuadrantSet()
+        return self.needs.without(self.capability.quadrants)
+
+    @property
+    def covered(self) -> bool | None:
+        """By quadrants alone; ratings are compared beside it. None where demand is not known."""
+        return None if isinstance(self.needs, Unknown) else not self.missing.members
+
+
+@dataclass(frozen=True, slots=True)
+class QuadrantResult:
+    netlist: str
+    positions: tuple[PositionResult, ...]
+    legs: tuple[Leg, ...]
+    bridges: tuple[Bridge, ...]
+    groups: tuple[Group, ...]
+    undetermined: tuple[Undetermined, ...]
+    assumed: tuple[str, ...]
+    not_covered: tuple[str, ...]
+
+
+def quadrant_result(stage: Stage, capabilities: Capabilities, demands: Demands) -> QuadrantResult:
+    """Join what the steps found, in natural order of names; nothing is judged here."""
+    return QuadrantResult(
+        stage.netlist,
+        tuple(
+            _position_result(position, capabilities, demands)
+            for position in sorted(stage.positions, key=lambda p: natural_key(p.name))
+        ),
+        tuple(sorted(demands.legs, key=lambda leg: natural_key(leg.name))),
+        tuple(sorted(demands.bridges, key=lambda bridge: natural_key(bridge.name))),
+        tuple(sorted(demands.groups, key=lambda group: natural_key(group.positions[0]))),
+        open_questions(stage, demands),
+        _without_repeats((*stage.parts.assumed, *stage.assumed, *demands.assumed)),
+        what_is_not_covered(stage, demands),
+    )
+
+
+def open_questions(stage: Stage, demands: Demands) -> tuple[Undetermined, ...]:
+    """Every quantity and every part that stayed open, each with what settles it."""
+    return (*demands.undetermined, *(_not_understood(name, stage) for name in _unread(stage)))
+
+
+def what_is_not_covered(stage: Stage, demands: Demands) -> tuple[str, ...]:
+    groups = tuple(
+        f"{', '.join(group.positions)}: not analysed, {group.why_not}"
+        for group in demands.groups
+        if not group.analysed
+    )
+    positions = tuple(line for d in demands.positions.values() for line in d.not_covered)
+    return _without_repeats((*stage.not_covered, *demands.not_covered, *positions, *groups))
+
+
+def _position_result(
+    position: Position, capabilities: Capabilities, demands: Demands
+) -> PositionResult:
+    demand = demands.positions.get(position.name) or _no_demand(position.name)
+    return PositionResult(position, demand, capabilities.positions[position.name])
+
+
+def _no_demand(name: str) -> PositionDemand:
+    """A position outside every group was not analysed, which is not the same as unstressed."""
+    unknown = Unknown(f"demand of {name}", "a stage sheet with the ports of this circuit")
+    return PositionDemand(name, unknown, unknown, unknown, None, None, None, None)
+
+
+def _unread(stage: Stage) -> tuple[str, ...]:
+    return tuple(sorted(set(stage.parts.not_understood), key=natural_key))
+
+
+def _not_understood(name: str, stage: Stage) -> Undetermined:
+    part = stage.parts.by_name.get(name)
+    if part is None:
+        return Undetermined(
+            f"{name} is missing from the analysis: its card could not be read",
+            "a card that can be read",
+        )
+    where = part.settle_in or f"part {part.text or name}"
+    return Undetermined(f"{name} is not understood: its kind is not known", f"kind of {where}")
+
+
+def _without_repeats(lines: tuple[str, ...]) -> tuple[str, ...]:
+    return tuple(dict.fromkeys(lines))

@@ -1,0 +1,108 @@
+"""The quadrant table on a terminal: needed and available side by side, one row a position."""
+
+from typing import TextIO
+
+from rich import box
+from rich.console import Console
+from rich.table import Table
+from rich.text import Text
+
+from rulecheck.report.cautions import CAUTIONS
+from rulecheck.report.figures import range_figure
+from rulecheck.report.look import PLAIN, Look
+from rulecheck.report.open_points import open_sections
+from rulecheck.report.quadrant_markdown import bridge_line, leg_line
+from rulecheck.report.quadrant_result import PositionResult, QuadrantResult
+from rulecheck.report.standing import rated_current, rated_voltage, standing
+from rulecheck.report.styles import console_for, hanging, shown
+from rulecheck.values import QuadrantSet, Unknown
+
+_WIDE = 110
+_HEADER = ("position", "from", "to", "needs", "has", "must block", "must carry", "result")
+
+
+def render(result: QuadrantResult, stream: TextIO, look: Look = PLAIN) -> None:
+    """Draw the table at `look.width`; a missing quadrant is the only thing in colour."""
+    console = console_for(stream, look)
+    hanging(console, "", f"{result.netlist}: what each switch position must do and can do", look)
+    if result.positions:
+        print_table(console, _table(result, look))
+    else:
+        console.print("no switch position was found in this netlist")
+    legs = tuple(leg_line(leg) for leg in result.legs)
+    print_sections(console, (("Legs", legs), ("Bridges", _bridges(result))), look)
+    print_sections(
+        console, open_sections(result.undetermined, result.assumed, result.not_covered), look
+    )
+    print_cautions(console, look)
+
+
+def print_sections(
+    console: Console, sections: tuple[tuple[str, tuple[str, ...]], ...], look: Look
+) -> None:
+    """Print each heading with its lines as a list; an empty section is left out."""
+    for heading, lines in sections:
+        if not lines:
+            continue
+        console.print()
+        console.print(Text(heading, style="heading"))
+        for line in lines:
+            hanging(console, "  - ", line, look)
+
+
+def print_table(console: Console, table: Table) -> None:
+    """Print the table without the blanks that would pad its lines."""
+    with console.capture() as captured:
+        console.print(table)
+    lines = [line.rstrip() for line in captured.get().splitlines()]
+    console.file.write("\n".join(lines).strip("\n") + "\n")
+
+
+def print_cautions(console: Console, look: Look) -> None:
+    console.print()
+    hanging(console, "", " ".join(CAUTIONS), look)
+
+
+def _bridges(result: QuadrantResult) -> tuple[str, ...]:
+    return tuple(bridge_line(bridge) for bridge in result.bridges)
+
+
+def _table(result: QuadrantResult, look: Look) -> Table:
+    table = Table(box=box.ASCII if look.ascii else box.SIMPLE_HEAD, padding=(0, 1, 0, 0))
+    for name in _HEADER:
+        table.add_column(name, overflow="fold")
+    for row in result.positions:
+        table.add_row(*_cells(row, look))
+    return table
+
+
+def _cells(row: PositionResult, look: Look) -> tuple[Text, ...]:
+    between = " " if look.width >= _WIDE else "\n"
+    blocks = f"of {rated_voltage(row, look)}"
+    carries = f"of {rated_current(row, look)}"
+    return (
+        Text(shown(row.position.name, look)),
+        Text(shown(row.position.start, look)),
+        Text(shown(row.position.end, look)),
+        _needed(row, look),
+        Text(_drawn(row.capability.quadrants, look)),
+        Text(f"{range_figure(row.demand.off_voltage, 'V', look)}{between}{blocks}"),
+        Text(f"{range_figure(row.demand.on_current, 'A', look)}{between}{carries}"),
+        Text("\n".join(standing(row))),
+    )
+
+
+def _needed(row: PositionResult, look: Look) -> Text:
+    """The needed quadrants, those that the devices lack in colour; the result column says which."""
+    if isinstance(row.needs, Unknown):
+        return Text("unknown")
+    text = Text("" if look.ascii else f"{row.needs.block} ")
+    for number, quadrant in enumerate(row.needs.members):
+        style = "quadrant.missing" if quadrant in row.missing else ""
+        text.append("+" if number else "")
+        text.append(quadrant.name, style=style)
+    return text if row.needs.members else text.append("-")
+
+
+def _drawn(quadrants: QuadrantSet, look: Look) -> str:
+    return quadrants.label if look.ascii else f"{quadrants.block} {quadrants.label}"
