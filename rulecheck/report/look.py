@@ -5,11 +5,14 @@ from dataclasses import dataclass
 
 @dataclass(frozen=True, slots=True)
 class Look:
-    """`width` in columns; `ascii` keeps to seven-bit signs; `color` allows colour codes."""
+    """`width` in columns; `ascii` keeps to seven-bit signs; `color` allows colour codes;
+    `quiet` leaves out assumptions, remarks and cautions, never what is broken or open.
+    """
 
     width: int = 100
     ascii: bool = False
     color: bool = False
+    quiet: bool = False
 
     @property
     def dots(self) -> str:

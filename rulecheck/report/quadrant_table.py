@@ -7,14 +7,15 @@ from rich.console import Console
 from rich.table import Table
 from rich.text import Text
 
-from rulecheck.report.cautions import CAUTIONS
 from rulecheck.report.figures import range_figure
 from rulecheck.report.look import PLAIN, Look
+from rulecheck.report.one_line import visible
 from rulecheck.report.open_points import open_sections
 from rulecheck.report.quadrant_markdown import bridge_line, leg_line
 from rulecheck.report.quadrant_result import PositionResult, QuadrantResult
 from rulecheck.report.standing import rated_current, rated_voltage, standing
-from rulecheck.report.styles import console_for, hanging, shown
+from rulecheck.report.styles import console_for, hanging
+from rulecheck.report.terminal_sections import print_cautions, print_sections
 from rulecheck.values import QuadrantSet, Unknown
 
 _WIDE = 110
@@ -26,41 +27,23 @@ def render(result: QuadrantResult, stream: TextIO, look: Look = PLAIN) -> None:
     console = console_for(stream, look)
     hanging(console, "", f"{result.netlist}: what each switch position must do and can do", look)
     if result.positions:
-        print_table(console, _table(result, look))
+        _print_table(console, _table(result, look))
     else:
         console.print("no switch position was found in this netlist")
+    assumed = () if look.quiet else result.assumed
     legs = tuple(leg_line(leg) for leg in result.legs)
     print_sections(console, (("Legs", legs), ("Bridges", _bridges(result))), look)
-    print_sections(
-        console, open_sections(result.undetermined, result.assumed, result.not_covered), look
-    )
-    print_cautions(console, look)
+    print_sections(console, open_sections(result.undetermined, assumed, result.not_covered), look)
+    if not look.quiet:
+        print_cautions(console, look)
 
 
-def print_sections(
-    console: Console, sections: tuple[tuple[str, tuple[str, ...]], ...], look: Look
-) -> None:
-    """Print each heading with its lines as a list; an empty section is left out."""
-    for heading, lines in sections:
-        if not lines:
-            continue
-        console.print()
-        console.print(Text(heading, style="heading"))
-        for line in lines:
-            hanging(console, "  - ", line, look)
-
-
-def print_table(console: Console, table: Table) -> None:
+def _print_table(console: Console, table: Table) -> None:
     """Print the table without the blanks that would pad its lines."""
     with console.capture() as captured:
         console.print(table)
     lines = [line.rstrip() for line in captured.get().splitlines()]
     console.file.write("\n".join(lines).strip("\n") + "\n")
-
-
-def print_cautions(console: Console, look: Look) -> None:
-    console.print()
-    hanging(console, "", " ".join(CAUTIONS), look)
 
 
 def _bridges(result: QuadrantResult) -> tuple[str, ...]:
@@ -81,9 +64,9 @@ def _cells(row: PositionResult, look: Look) -> tuple[Text, ...]:
     blocks = f"of {rated_voltage(row, look)}"
     carries = f"of {rated_current(row, look)}"
     return (
-        Text(shown(row.position.name, look)),
-        Text(shown(row.position.start, look)),
-        Text(shown(row.position.end, look)),
+        Text(visible(row.position.name, look)),
+        Text(visible(row.position.start, look)),
+        Text(visible(row.position.end, look)),
         _needed(row, look),
         Text(_drawn(row.capability.quadrants, look)),
         Text(f"{range_figure(row.demand.off_voltage, 'V', look)}{between}{blocks}"),

@@ -7,6 +7,7 @@ from rich.text import Text
 from rich.theme import Theme
 
 from rulecheck.report.look import Look
+from rulecheck.report.one_line import visible
 
 STYLES = {
     "quadrant.missing": "bold red",
@@ -37,27 +38,10 @@ def console_for(stream: TextIO, look: Look) -> Console:
     )
 
 
-def shown(text: str, look: Look) -> str:
-    """The text with control signs made visible, and in seven-bit signs where asked."""
-    clean = "".join(sign if sign.isprintable() or sign == "\n" else _visible(sign) for sign in text)
-    return clean if not look.ascii else _seven_bit(clean)
-
-
 def hanging(console: Console, lead: str, text: str, look: Look) -> None:
     """Print `lead` and then `text`, later lines indented under the first word of the text."""
-    words = Text(shown(text, look))
+    words = Text(visible(text, look))
     room = max(look.width - len(lead), 20)
     for number, line in enumerate(words.wrap(console, room)):
         line.rstrip()
         console.print(Text(lead if number == 0 else " " * len(lead)).append_text(line))
-
-
-def _visible(sign: str) -> str:
-    return f"\\x{ord(sign):02x}"
-
-
-_SUBSTITUTES = str.maketrans({"…": "..", "±": "+-", "→": "->", "µ": "u", "Ω": "ohm", "·": "-"})
-
-
-def _seven_bit(text: str) -> str:
-    return text.translate(_SUBSTITUTES).encode("ascii", "backslashreplace").decode("ascii")

@@ -1,0 +1,131 @@
+"""Findings as SARIF 2.1.0 (OASIS), one run over all netlists.
+
+A broken rule is a result of kind `fail`, an undecided one of kind `open` (its level is then
+`none`, as the standard asks); a deviation is an accepted external suppression.
+"""
+
+import json
+from typing import TextIO
+from urllib.parse import quote
+
+from rulecheck import __version__
+from rulecheck.report.cautions import CAUTIONS
+from rulecheck.report.lint_json import json_value
+from rulecheck.report.lint_lines import excuse_text
+from rulecheck.report.lint_result import (
+    Finding,
+    LintReport,
+    LintRun,
+    RuleText,
+    tally_line,
+    wanted_line,
+)
+from rulecheck.report.look import PLAIN, Look
+from rulecheck.values import Span
+
+SCHEMA = (
+    "https://docs.oasis-open.org/sarif/sarif/v2.1.0/errata01/os/schemas/sarif-schema-2.1.0.json"
+)
+
+
+def render(run: LintRun, stream: TextIO, look: Look = PLAIN) -> None:
+    """Write one log with one run."""
+    del look
+    log = {"$schema": SCHEMA, "version": "2.1.0", "runs": [_run(run)]}
+    json.dump(log, stream, indent=1)
+    stream.write("\n")
+
+
+def _run(run: LintRun) -> dict[str, object]:
+    places = {rule.id: number for number, rule in enumerate(run.rules)}
+    return {
+        "tool": {
+            "driver": {
+                "name": "rulecheck",
+                "version": __version__,
+                "semanticVersion": __version__,
+                "rules": [_rule(rule) for rule in run.rules],
+            }
+        },
+        "columnKind": "unicodeCodePoints",
+        "invocations": [
+            {"executionSuccessful": True, "toolExecutionNotifications": _notifications(run)}
+        ],
+        "results": [
+            _result(finding, places) for report in run.reports for finding in report.findings
+        ],
+    }
+
+
+def _rule(rule: RuleText) -> dict[str, object]:
+    return {
+        "id": rule.id,
+        "shortDescription": {"text": rule.id.replace("-", " ")},
+        "fullDescription": {"text": rule.why or rule.id},
+        "help": {"text": rule.remedy or rule.why or rule.id},
+        "defaultConfiguration": {"level": rule.level},
+        "properties": {"source": rule.source},
+    }
+
+
+def _result(finding: Finding, places: dict[str, int]) -> dict[str, object]:
+    undecided = finding.verdict == "undecided"
+    result: dict[str, object] = {
+        "ruleId": finding.rule,
+        "ruleIndex": places.get(finding.rule, -1),
+        "kind": "open" if undecided else "fail",
+        "level": "none" if undecided else finding.level,
+        "message": {"text": finding.sentence},
+        "locations": [_location(finding)],
+        "properties": _properties(finding),
+    }
+    if finding.fingerprint:
+        result["partialFingerprints"] = {"rulecheck/v1": finding.fingerprint}
+    if finding.related:
+        result["relatedLocations"] = [
+            {"id": number, "physicalLocation": _place(span)}
+            for number, span in enumerate(finding.related, 1)
+        ]
+    if finding.excuse is not None:
+        result["suppressions"] = [
+            {"kind": "external", "status": "accepted", "justification": excuse_text(finding)}
+        ]
+    return result
+
+
+def _location(finding: Finding) -> dict[str, object]:
+    parts = [{"name": name, "kind": "element"} for name in finding.parts]
+    nets = [{"name": name, "kind": "net"} for name in finding.nets]
+    return {"physicalLocation": _place(finding.where), "logicalLocations": [*parts, *nets]}
+
+
+def _place(span: Span) -> dict[str, object]:
+    return {
+        "artifactLocation": {"uri": quote(span.file.replace("\\", "/"), safe="/")},
+        "region": {"startLine": span.line, "startColumn": span.column},
+    }
+
+
+def _properties(finding: Finding) -> dict[str, object]:
+    return {
+        "verdict": finding.verdict,
+        "values": {name: json_value(value) for name, value in finding.values.items()},
+        "missing": [item.settle_with for item in finding.missing],
+    }
+
+
+def _notifications(run: LintRun) -> list[dict[str, object]]:
+    """What a reader of the results alone would miss: the open points and the cautions."""
+    lines = [line for report in run.reports for line in _open_lines(report)]
+    lines += [f"rule switched off: {off}" for off in run.switched_off]
+    return [{"level": "note", "message": {"text": line}} for line in (*lines, *CAUTIONS)]
+
+
+def _open_lines(report: LintReport) -> list[str]:
+    lines = [tally_line(report.tally), *(wanted_line(item) for item in report.wanted)]
+    lines += [
+        f"undetermined: {item.what}; settle with {item.settle_with}" for item in report.undetermined
+    ]
+    lines += [f"not covered: {line}" for line in report.not_covered]
+    lines += [f"assumed: {line}" for line in report.assumed]
+    return [f"{report.netlist}: {line}" for line in lines]
