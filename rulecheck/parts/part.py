@@ -5,7 +5,7 @@ from dataclasses import dataclass, field
 from enum import StrEnum
 
 from rulecheck.netlist import Waveform
-from rulecheck.values import Dimension, Interval, Span, Unknown
+from rulecheck.values import Dimension, Interval, Problem, Span, Unknown
 
 
 class Kind(StrEnum):
@@ -60,6 +60,8 @@ class Edge:
     conduction: Conduction
     blocks: float | Unknown
     current: float | Unknown
+    part: str = ""
+    """The name of the part that the edge belongs to."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -119,9 +121,12 @@ class Part:
 
     def datum(self, path: str) -> Datum | Unknown:
         """The stated figure, or what to write to state it."""
-        return self.data.get(path) or Unknown(
-            f"{path.partition('.')[2] or path} of {self.name}", f"{path} of {self.settle_in}"
-        )
+        return self.data.get(path) or self.missing(path)
+
+    def missing(self, path: str) -> Unknown:
+        """The figure as one that nobody stated."""
+        what = path.partition(".")[2] or path
+        return Unknown(f"{what} of {self.name}", f"{path} of {self.settle_in}")
 
 
 @dataclass(frozen=True, slots=True)
@@ -139,7 +144,7 @@ class Core:
 
 @dataclass(frozen=True, slots=True)
 class PartList:
-    """All parts in netlist order; an opaque subcircuit is one part, a flattened one its contents."""
+    """All parts in netlist order; of a subcircuit either the instance or its contents."""
 
     file: str
     parts: tuple[Part, ...]
@@ -152,3 +157,5 @@ class PartList:
     """Readings that the user may overrule, one sentence each."""
     by_name: Mapping[str, Part] = field(default_factory=dict)
     """By the part's name as written."""
+    problems: tuple[Problem, ...] = ()
+    """Errors and notes of part data and of the cards' own figures."""
