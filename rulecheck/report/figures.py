@@ -6,8 +6,15 @@ from rulecheck.report.look import PLAIN, Look
 from rulecheck.values import Interval, Unknown
 
 # from this size on: factor, SI prefix; volts and amperes stay plain from 0.1 to 10,000
-_SCALES = ((1e7, 1e-6, "M"), (1e4, 1e-3, "k"), (0.1, 1.0, ""), (1e-4, 1e3, "m"))
-_TINY = (1e6, "u")
+_SCALES = (
+    (1e7, 1e-6, "M"),
+    (1e4, 1e-3, "k"),
+    (0.1, 1.0, ""),
+    (1e-3, 1e3, "m"),
+    (1e-6, 1e6, "u"),
+    (1e-9, 1e9, "n"),
+)
+_TINY = (1e12, "p")
 _SAME = 1e-9
 _JSON_DIGITS = 9
 
