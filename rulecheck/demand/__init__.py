@@ -1,5 +1,6 @@
 """What the circuit asks of each position, from its legal switching states."""
 
+from rulecheck.demand.build import find_demands
 from rulecheck.demand.demands import (
     Bridge,
     Demands,
@@ -28,4 +29,5 @@ __all__ = [
     "Undetermined",
     "Variable",
     "Witness",
+    "find_demands",
 ]

@@ -1,6 +1,9 @@
 """The power stage: ports, part roles, branches and switch positions."""
 
+from rulecheck.stage.build import StageReading, read_stage
 from rulecheck.stage.position import Position
+from rulecheck.stage.sheet import EMPTY_SHEET, Sheet, SheetReading, read_sheet
+from rulecheck.stage.sheet_file import SheetFile
 from rulecheck.stage.stage import (
     Branch,
     BranchKind,
@@ -13,13 +16,20 @@ from rulecheck.stage.stage import (
 )
 
 __all__ = [
+    "EMPTY_SHEET",
     "Branch",
     "BranchKind",
     "Port",
     "PortKind",
     "Position",
     "Role",
+    "Sheet",
+    "SheetFile",
+    "SheetReading",
     "Stage",
+    "StageReading",
     "Switching",
     "Transformer",
+    "read_sheet",
+    "read_stage",
 ]

@@ -35,11 +35,13 @@ class Port:
     power: Interval | None
     """Into the stage, watts."""
     frequency: Interval | None
-    instantaneous: bool
-    """True where `current` is the whole instantaneous range (the port is on a switching net)."""
     stated_in: str
     """`sheet` or the element of the netlist that serves."""
     span: Span
+    least_amplitude: float = 0.0
+    """Of an AC voltage: the smallest amplitude that the sheet states."""
+    draws: bool = False
+    """The sheet says `draws`: an AC port takes power out of the stage."""
 
 
 class BranchKind(StrEnum):
@@ -81,6 +83,8 @@ class Transformer:
     parts: tuple[str, ...]
     magnetising: float | None
     """Henry, seen from the first winding."""
+    ideal: bool = False
+    """True where the magnetising current is neglected."""
 
 
 class Role(StrEnum):
@@ -129,7 +133,7 @@ class Stage:
     """Overrides of the sheet by part name: the current of an inductor, the voltage of a
     capacitor, as a whole instantaneous range."""
     ground: str = "0"
-    switching: Switching = Switching()
+    switching: Switching = field(default_factory=Switching)
     leg_switching: Mapping[str, Switching] = field(default_factory=dict)
     """By midpoint net."""
     efficiency: float = 1.0

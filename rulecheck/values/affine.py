@@ -84,7 +84,11 @@ def variable(name: str) -> AffineForm:
 
 
 def total_of(forms: Iterable[AffineForm]) -> AffineForm:
-    result = AffineForm()
+    """The sum, in time linear in all terms together."""
+    terms: dict[str, float] = {}
+    constant = 0.0
     for form in forms:
-        result += form
-    return result
+        constant += form.constant
+        for name, coefficient in form.terms:
+            terms[name] = terms.get(name, 0.0) + coefficient
+    return AffineForm.of(terms, constant)

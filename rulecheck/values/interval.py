@@ -36,6 +36,11 @@ class Interval:
         low, high = max(self.low, other.low), min(self.high, other.high)
         return Interval(low, high) if low <= high else None
 
+    def part_of_sign(self, positive: bool, beyond: float = 0.0) -> "Interval | None":
+        """The values of that sign with a magnitude of at least `beyond`, or None."""
+        half = Interval(beyond, math.inf) if positive else Interval(-math.inf, -beyond)
+        return self.meet(half)
+
     def contains(self, value: float) -> bool:
         return self.low <= value <= self.high
 

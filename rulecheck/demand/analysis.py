@@ -1,0 +1,308 @@
+"""The whole procedure on one stage, step by step: voltages, topology, states, currents, ranges."""
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass, replace
+from itertools import product
+
+from rulecheck.demand.currents import CurrentRange, Means, derive_means, range_of_current
+from rulecheck.demand.means import collect_unknowns, current_names
+from rulecheck.demand.power import PortCurrents, find_port_currents
+from rulecheck.demand.readings import Failure, Reading, failures, inequalities
+from rulecheck.demand.routes import Carrier, Route, find_carriers, find_routes
+from rulecheck.demand.sign_cases import Case, cases_for, port_cases, voltage_names
+from rulecheck.demand.states import (
+    MOST_POSITIONS,
+    Laws,
+    RawState,
+    find_connecting_states,
+    find_states,
+)
+from rulecheck.demand.stiff import EVERYTHING, Box, PhaseSet
+from rulecheck.demand.topology import Topology, build_topology, magnetising_name
+from rulecheck.demand.voltages import Voltages, derive_voltages, name_of
+from rulecheck.stage import BranchKind, Port, PortKind, Stage
+from rulecheck.values import Interval
+
+_MOST_RECTIFIER_STATES = 32
+
+
+@dataclass(frozen=True, slots=True)
+class Worked:
+    """Everything the procedure found for one reading of the stage."""
+
+    stage: Stage
+    voltages: Voltages
+    topology: Topology
+    currents: Mapping[str, CurrentRange]
+    port_currents: PortCurrents
+    box: Box
+    reading: Reading
+    routes: tuple[tuple[Carrier, Route], ...]
+    failures: tuple[Failure, ...]
+    too_large: frozenset[int]
+    connecting: frozenset[int]
+    """Clusters without a stiff current, whose states connect voltages."""
+    means: Means
+    cases_of: Mapping[str, Sequence[Case]]
+
+
+def work_out(stage: Stage) -> Worked:
+    """Analyse the stage as its branches stand."""
+    voltages = derive_voltages(stage.branches, stage.transformers, stage.positions)
+    topology = build_topology(
+        stage.positions, stage.branches, stage.transformers, voltages.potentials
+    )
+    box, port_currents = _first_box(stage, voltages)
+    laws = Laws(topology.ties, box)
+    states, too_large, connecting = _all_states(topology, laws)
+    carriers = find_carriers(stage.branches, stage.transformers)
+    routes = find_routes(carriers, topology)
+    by_port = [port_cases(port, box) for port in stage.ports]
+    means = _means(stage, voltages, port_currents, carriers, topology, states)
+    box = replace(box, means=means.forms)
+    names = _names_by_cluster(topology, states)
+    local = {c.name: _names_of(c, r, names, box, means) for c, r in routes}
+    cases_of = {name: cases_for(found, by_port) for name, found in local.items()}
+    reading, failed = _choose_reading(topology, states, routes, box, cases_of, local)
+    currents = _currents(stage, routes, means, box, reading, cases_of, local)
+    box = _with_currents(box, currents)
+    return Worked(
+        stage,
+        voltages,
+        topology,
+        currents,
+        port_currents,
+        box,
+        reading,
+        routes,
+        tuple(failed),
+        too_large,
+        connecting,
+        means,
+        cases_of,
+    )
+
+
+def _first_box(stage: Stage, voltages: Voltages) -> tuple[Box, PortCurrents]:
+    """Ranges of voltages and of port currents; every other current may be anything as yet."""
+    ranges: dict[str, Interval] = {}
+    unsettled: set[str] = set()
+    for branch in stage.branches:
+        name = name_of(branch)
+        if branch.kind is BranchKind.VOLTAGE or branch.kind is BranchKind.CURRENT:
+            ranges[name] = branch.given or EVERYTHING
+        if branch.kind is not BranchKind.RESISTOR and branch.given is None:
+            unsettled.add(name)
+    for core in stage.transformers:
+        ranges[magnetising_name(core)] = EVERYTHING
+        unsettled.add(magnetising_name(core))
+    sets = tuple(_phase_sets(stage.ports))
+    box = Box(ranges, phase_sets=sets, unsettled=frozenset(unsettled))
+    found = find_port_currents(stage.ports, stage.branches, voltages, box, stage.efficiency)
+    for port in stage.ports:
+        known = found.ranges.get(port.name)
+        for name in current_names(port):
+            if known is not None:
+                ranges[name] = known
+                unsettled.discard(name)
+    sets = tuple(_phase_sets(stage.ports, found.ranges))
+    return Box(ranges, phase_sets=sets, unsettled=frozenset(unsettled)), found
+
+
+def _phase_sets(
+    ports: Sequence[Port], currents: Mapping[str, Interval] | None = None
+) -> list[PhaseSet]:
+    sets = []
+    for port in ports:
+        if port.kind is not PortKind.PHASES:
+            continue
+        if port.voltage is not None:
+            sets.append(PhaseSet(voltage_names(port), port.voltage.magnitude))
+        known = (currents or {}).get(port.name)
+        if known is not None:
+            sets.append(PhaseSet(current_names(port), known.magnitude))
+    return sets
+
+
+def _all_states(
+    topology: Topology, laws: Laws
+) -> tuple[list[Sequence[RawState]], frozenset[int], frozenset[int]]:
+    states: list[Sequence[RawState]] = []
+    too_large, connecting = set(), set()
+    for index, cluster in enumerate(topology.clusters):
+        if len(cluster.positions) > MOST_POSITIONS:
+            too_large.add(index)
+            states.append(())
+            continue
+        found = find_states(cluster, laws)
+        if not any(state.on for state in found) and cluster.positions:
+            connecting.add(index)
+            found = find_connecting_states(cluster, laws)
+        states.append(found)
+    return states, frozenset(too_large), frozenset(connecting)
+
+
+def _means(
+    stage: Stage,
+    voltages: Voltages,
+    port_currents: PortCurrents,
+    carriers: Sequence[Carrier],
+    topology: Topology,
+    states: Sequence[Sequence[RawState]],
+) -> Means:
+    unknowns = collect_unknowns(
+        stage.branches,
+        stage.transformers,
+        stage.positions,
+        stage.ports,
+        port_currents.ranges,
+        voltages,
+    )
+    stated = {name_of(b) for b in stage.branches if b.given is not None}
+    wanted = [carrier for carrier in carriers if carrier.name not in stated]
+    slow = _rectifier_states(topology, states)
+    return derive_means(unknowns, wanted, stage.transformers, slow)
+
+
+def _rectifier_states(
+    topology: Topology, states: Sequence[Sequence[RawState]]
+) -> list[frozenset[str]]:
+    """Which diodes are off together, over all mixtures of groups that have only diodes."""
+    choices = []
+    for cluster, found in zip(topology.clusters, states, strict=True):
+        if cluster.gated or not cluster.positions or not found:
+            continue
+        names = {link.name for link in cluster.positions}
+        choices.append([frozenset(names - set(state.on)) for state in found])
+    count = 1
+    for options in choices:
+        count *= len(options)
+    if not choices or count > _MOST_RECTIFIER_STATES:
+        return []
+    return [frozenset().union(*mixture) for mixture in product(*choices)]
+
+
+def _names_by_cluster(
+    topology: Topology, states: Sequence[Sequence[RawState]]
+) -> list[frozenset[str]]:
+    """The variables that a cluster's forms speak of."""
+    found = []
+    for cluster, mine in zip(topology.clusters, states, strict=True):
+        names: set[str] = set()
+        for state in mine:
+            solution = state.solution
+            for form in (
+                *solution.off_voltages.values(),
+                *solution.on_currents.values(),
+                *solution.potentials.values(),
+                *inequalities(cluster, state, strict=True),
+            ):
+                names |= set(form.names)
+        found.append(frozenset(names))
+    return found
+
+
+def _names_of(
+    carrier: Carrier, route: Route, by_cluster: Sequence[frozenset[str]], box: Box, means: Means
+) -> frozenset[str]:
+    names = {carrier.name, *route.fixed.names}
+    names |= {n for form in means.rectified.get(carrier.name, ()) for n in form.names}
+    for step in route.steps:
+        names |= by_cluster[step.cluster]
+    return frozenset(box.only(names & box.ranges.keys()).ranges)
+
+
+def _choose_reading(
+    topology: Topology,
+    states: Sequence[Sequence[RawState]],
+    routes: Sequence[tuple[Carrier, Route]],
+    box: Box,
+    cases_of: Mapping[str, Sequence[Case]],
+    local: Mapping[str, frozenset[str]],
+) -> tuple[Reading, list[Failure]]:
+    """Free paths limit the control where the stage still works so; elsewhere all legal states."""
+    reading = Reading(topology.clusters, states, frozenset(range(len(states))))
+    failed = _failures(reading, routes, box, cases_of, local)
+    if failed:
+        reading = reading.relaxed(index for failure in failed for index in failure.clusters)
+        failed = _failures(reading, routes, box, cases_of, local)
+    return reading, failed
+
+
+def _failures(
+    reading: Reading,
+    routes: Sequence[tuple[Carrier, Route]],
+    box: Box,
+    cases_of: Mapping[str, Sequence[Case]],
+    local: Mapping[str, frozenset[str]],
+) -> list[Failure]:
+    found = []
+    for carrier, route in routes:
+        if carrier.port and not route.steps:
+            continue
+        mine = box.only(local[carrier.name])
+        found += failures(reading, [(carrier, route)], mine, cases_of)
+    return found
+
+
+def _currents(
+    stage: Stage,
+    routes: Sequence[tuple[Carrier, Route]],
+    means: Means,
+    box: Box,
+    reading: Reading,
+    cases_of: Mapping[str, Sequence[Case]],
+    local: Mapping[str, frozenset[str]],
+) -> dict[str, CurrentRange]:
+    given = {name_of(b): b.given for b in stage.branches if b.given is not None}
+    alternating = alternating_parts(stage)
+    found: dict[str, CurrentRange] = {}
+    for carrier, route in routes:
+        stated = given.get(carrier.name)
+        if stated is not None:
+            found[carrier.name] = CurrentRange(stated, 0.0, "stated", True)
+            continue
+        if carrier.port:
+            continue
+        found[carrier.name] = range_of_current(
+            carrier,
+            route,
+            means,
+            box.only(local[carrier.name]),
+            reading,
+            cases_of[carrier.name],
+            stage,
+            carrier.part in alternating,
+        )
+    return found
+
+
+def alternating_parts(stage: Stage) -> frozenset[str]:
+    """Inductors in series with a winding or with a capacitor alone: they carry no DC."""
+    at_net: dict[str, list[tuple[str, str]]] = {}
+    for branch in stage.branches:
+        kind = "capacitor" if branch.kind is BranchKind.VOLTAGE and branch.part else "other"
+        if branch.kind is BranchKind.CURRENT and branch.part:
+            kind = "inductor"
+        for net in (branch.start, branch.end):
+            at_net.setdefault(net, []).append((kind, branch.part))
+    for core in stage.transformers:
+        for pair in core.windings:
+            for net in pair:
+                at_net.setdefault(net, []).append(("winding", core.name))
+    for position in stage.positions:
+        for net in (position.start, position.end):
+            at_net.setdefault(net, []).append(("position", position.name))
+    found = set()
+    for touching in at_net.values():
+        kinds = sorted(kind for kind, _ in touching)
+        if kinds in (["inductor", "winding"], ["capacitor", "inductor"]):
+            found |= {name for kind, name in touching if kind == "inductor"}
+    return frozenset(found)
+
+
+def _with_currents(box: Box, currents: Mapping[str, CurrentRange]) -> Box:
+    ranges = {**box.ranges, **{name: found.range for name, found in currents.items()}}
+    ripples = {name: found.ripple for name, found in currents.items() if found.ripple}
+    settled = {name for name, found in currents.items() if found.settled}
+    return replace(box, ranges=ranges, ripples=ripples, unsettled=box.unsettled - settled)

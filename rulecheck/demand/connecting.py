@@ -1,0 +1,83 @@
+"""Positions between two rigid voltages: battery disconnects, OR-ing switches, crowbars.
+
+Such a position is on only where the two voltages are equal. Its off voltage is the range of
+their difference, its on current the mean that the ports behind it leave to it.
+"""
+
+from collections.abc import Mapping
+
+from rulecheck.demand.analysis import Worked
+from rulecheck.demand.demands import PositionDemand
+from rulecheck.demand.equations import Solution
+from rulecheck.demand.evaluate import Sample, from_samples
+from rulecheck.demand.states import RawState
+from rulecheck.demand.stiff import Box
+from rulecheck.stage import Position
+from rulecheck.values import AffineForm, Interval, Unknown
+
+_NOTHING = Solution({}, {}, {}, (), ())
+
+
+def connecting_demand(
+    position: Position, worked: Worked, settle: Mapping[str, str]
+) -> tuple[PositionDemand, str]:
+    """The demand of a position whose ends stand on one rigid island, and what was assumed."""
+    box = worked.box
+    form, assumed = _difference(position, worked)
+    off_range = box.range_of(form)
+    if assumed:
+        off_range = off_range.hull(Interval(0.0, 0.0))
+    if not position.gated:
+        limits = Interval(
+            0.0 if position.free_reverse else off_range.low,
+            0.0 if position.free_forward else off_range.high,
+        )
+        off_range = off_range.meet(limits) or Interval(0.0, 0.0)
+    off = [Sample(RawState((), _NOTHING), form, off_range, box)]
+    on = _on_samples(position, worked, box, box.range_of(form), bool(assumed))
+    demand = from_samples(position, off, on, settle)
+    if not on and (assumed or box.range_of(form).contains(0.0)):
+        demand = _current_unknown(demand, position)
+    return demand, assumed
+
+
+def _difference(position: Position, worked: Worked) -> tuple[AffineForm, str]:
+    rigid = worked.voltages.potentials
+    form = rigid.offset(position.start) - rigid.offset(position.end)
+    charged = worked.voltages.charged_through.get(position.name)
+    if charged is None:
+        return form, ""
+    before, over = charged
+    sentence = (
+        f"{position.name} connects a capacitor, taken as anything from discharged to "
+        f"{over.text()} while {position.name} is off"
+    )
+    return (over if before == position.start else -over), sentence
+
+
+def _on_samples(
+    position: Position, worked: Worked, box: Box, difference: Interval, charges: bool
+) -> list[Sample]:
+    mean = worked.means.branches.get(position.name)
+    if mean is None or not (charges or difference.contains(0.0)):
+        return []
+    span = box.range_of(mean)
+    if not position.gated:
+        limits = Interval(0.0 if position.free_forward else span.low, max(span.high, 0.0))
+        span = span.meet(limits) or Interval(0.0, 0.0)
+    return [Sample(RawState((position.name,), _NOTHING), mean, span, box)]
+
+
+def _current_unknown(demand: PositionDemand, position: Position) -> PositionDemand:
+    settle = f"the currents of the ports behind {position.name} (`supplies:` or `draws:`)"
+    return PositionDemand(
+        demand.position,
+        demand.off_voltage,
+        Unknown(f"on-state current of {position.name}", settle),
+        Unknown(f"quadrants of {position.name}", settle),
+        demand.off_low,
+        demand.off_high,
+        None,
+        None,
+        demand.not_covered,
+    )

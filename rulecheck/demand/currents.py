@@ -1,0 +1,229 @@
+"""Ranges of the stiff currents: stated, mean plus ripple, clipped where a diode stops them."""
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass, replace
+
+from rulecheck.demand.means import Unknowns, find_means, magnetising_means
+from rulecheck.demand.readings import Reading, sustainable
+from rulecheck.demand.ripple import swing
+from rulecheck.demand.routes import Carrier, Route
+from rulecheck.demand.sign_cases import Case
+from rulecheck.demand.stiff import EVERYTHING, Box
+from rulecheck.stage import Stage, Transformer
+from rulecheck.values import AffineForm, Interval, write_quantity
+
+
+@dataclass(frozen=True, slots=True)
+class Means:
+    """Of the inductors, by variable: the mean as a form, and how it was found."""
+
+    forms: Mapping[str, AffineForm]
+    origins: Mapping[str, str]
+    rectified: Mapping[str, tuple[AffineForm, ...]]
+    """Where a slow rectifier decides: the mean in each of its states."""
+    branches: Mapping[str, AffineForm]
+    """The mean of every branch and position, by part, that Kirchhoff's law fixes."""
+
+
+def derive_means(
+    unknowns: Unknowns,
+    carriers: Sequence[Carrier],
+    transformers: Sequence[Transformer],
+    rectifier_states: Sequence[frozenset[str]],
+) -> Means:
+    """Kirchhoff's law on means; then once for each state of the slow rectifiers.
+
+    `rectifier_states` lists the sets of diodes that are off together.
+    """
+    found = find_means(unknowns)
+    found = {**found, **_equal_shares(unknowns, found, carriers)}
+    magnetising = magnetising_means(transformers, found)
+    forms: dict[str, AffineForm] = {}
+    origins: dict[str, str] = {}
+    for carrier in carriers:
+        form = magnetising.get(carrier.name) or found.get(carrier.part)
+        if carrier.port or form is None:
+            continue
+        if carrier.name in magnetising or carrier.name == f"i({carrier.part})":
+            forms[carrier.name] = form
+            origins[carrier.name] = f"mean by Kirchhoff's law: {carrier.name} = {form.text()}"
+    rectified: dict[str, list[AffineForm]] = {}
+    for off in rectifier_states:
+        edges = tuple(edge for edge in unknowns.edges if edge[0] not in off)
+        means = find_means(replace(unknowns, edges=edges))
+        for carrier in carriers:
+            if carrier.part in means and carrier.name == f"i({carrier.part})":
+                rectified.setdefault(carrier.name, []).append(means[carrier.part])
+    kept = {n: tuple(f) for n, f in rectified.items() if n not in forms}
+    return Means(forms, origins, kept, found)
+
+
+def _equal_shares(
+    unknowns: Unknowns, means: Mapping[str, AffineForm], carriers: Sequence[Carrier]
+) -> dict[str, AffineForm]:
+    """Equal inductors that alone feed a net share what it takes evenly (interleaved legs)."""
+    inductance = {c.part: c.inductance for c in carriers if c.name == f"i({c.part})"}
+    at_net: dict[str, list[tuple[str, int]]] = {}
+    for name, start, end in unknowns.edges:
+        at_net.setdefault(start, []).append((name, -1))
+        at_net.setdefault(end, []).append((name, 1))
+    shares: dict[str, AffineForm] = {}
+    for net, edges in sorted(at_net.items()):
+        names = [name for name, _ in edges]
+        values = {inductance.get(name) for name in names}
+        if len(edges) < 2 or len(values) > 1 or None in values or means.keys() & set(names):
+            continue
+        if not _same_rails(unknowns, names, net):
+            continue
+        total = AffineForm()
+        for start, end, form in unknowns.known:
+            if start != end and net in (start, end):
+                total += form if start == net else -form
+        for name, sign in edges:
+            shares[name] = total.scaled(sign / len(edges))
+    return shares
+
+
+def _same_rails(unknowns: Unknowns, names: Sequence[str], net: str) -> bool:
+    """True where the inductors' far ends are switched between the same two or more nets."""
+    far: list[frozenset[str]] = []
+    for name in names:
+        end = next(e[2] if e[1] == net else e[1] for e in unknowns.edges if e[0] == name)
+        around = {e[2] if e[1] == end else e[1] for e in unknowns.edges if end in e[1:]}
+        far.append(frozenset(around - {net}))
+    return len(set(far)) == 1 and len(far[0]) >= 1
+
+
+@dataclass(frozen=True, slots=True)
+class CurrentRange:
+    range: Interval
+    ripple: float
+    origin: str
+    settled: bool
+    """False where not even the sign is known."""
+
+
+def range_of_current(
+    carrier: Carrier,
+    route: Route | None,
+    means: Means,
+    box: Box,
+    reading: Reading,
+    cases: Sequence[Case],
+    stage: Stage,
+    alternates: bool,
+) -> CurrentRange:
+    """The whole instantaneous range of one carrier that nobody states."""
+    ripple, swing_note = _ripple(carrier, route, box, reading, cases, stage)
+    form = means.forms.get(carrier.name)
+    if form is not None:
+        mean = box.range_of(form)
+        origin = means.origins[carrier.name]
+    elif carrier.name in means.rectified:
+        mean = _hull(box, means.rectified[carrier.name])
+        origin = f"mean, rectified: {means.rectified[carrier.name][0].text()} or its negative"
+    else:
+        return _without_mean(carrier, route, box, reading, cases, ripple, alternates)
+    span = Interval(mean.low - ripple, mean.high + ripple)
+    note = f", +- {write_quantity(ripple, 'A')} of ripple" if ripple else swing_note
+    return _clipped(
+        carrier, route, box, reading, cases, CurrentRange(span, ripple, origin + note, True)
+    )
+
+
+def _hull(box: Box, forms: Sequence[AffineForm]) -> Interval:
+    span = box.range_of(forms[0])
+    for form in forms[1:]:
+        span = span.hull(box.range_of(form))
+    return span
+
+
+def _ripple(
+    carrier: Carrier,
+    route: Route | None,
+    box: Box,
+    reading: Reading,
+    cases: Sequence[Case],
+    stage: Stage,
+) -> tuple[float, str]:
+    """Half the peak-to-peak ripple in amperes, or why none is included."""
+    if route is None or not route.steps:
+        return 0.0, ""
+    frequency = _frequency(route, reading, stage)
+    if not carrier.inductance or not frequency:
+        missing = "inductance" if not carrier.inductance else "switching frequency"
+        return 0.0, f", ripple not included: the {missing} is not stated"
+    volts = swing(reading, route, [case.narrow(box) for case in cases])
+    return volts / (carrier.inductance * frequency) / 2, ""
+
+
+def _frequency(route: Route, reading: Reading, stage: Stage) -> float | None:
+    """The lowest switching frequency of the legs on the route, which gives the largest ripple."""
+    nets = {
+        net
+        for step in route.steps
+        for link in reading.clusters[step.cluster].positions
+        if link.position
+        for net in (link.position.start, link.position.end)
+    }
+    own = [
+        switching.frequency
+        for net, switching in stage.leg_switching.items()
+        if net in nets and switching.frequency
+    ]
+    return min(own) if own else stage.switching.frequency
+
+
+def _without_mean(
+    carrier: Carrier,
+    route: Route | None,
+    box: Box,
+    reading: Reading,
+    cases: Sequence[Case],
+    ripple: float,
+    alternates: bool,
+) -> CurrentRange:
+    """A magnetising current is its ripple; another current may still have a known sign."""
+    wide = box.with_ranges({carrier.name: EVERYTHING})
+    signs = [
+        route is not None
+        and bool(route.steps)
+        and sustainable(reading, route, wide, cases, carrier.name, positive)
+        for positive in (True, False)
+    ]
+    if carrier.name.startswith("i(magnetising") and ripple > 0.0 and any(signs):
+        both = all(signs)
+        low = -ripple if both else 0.0 if signs[0] else -2 * ripple
+        high = ripple if both else 2 * ripple if signs[0] else 0.0
+        return CurrentRange(Interval(low, high), 0.0, "the ripple of a flux that balances", True)
+    if signs[0] != signs[1]:
+        half = Interval(0.0, EVERYTHING.high) if signs[0] else Interval(EVERYTHING.low, 0.0)
+        return CurrentRange(half, 0.0, "only this sign can be kept; magnitude not stated", True)
+    why = "alternates; magnitude not stated" if alternates else "nobody states it"
+    return CurrentRange(EVERYTHING, 0.0, why, alternates)
+
+
+def _clipped(
+    carrier: Carrier,
+    route: Route | None,
+    box: Box,
+    reading: Reading,
+    cases: Sequence[Case],
+    found: CurrentRange,
+) -> CurrentRange:
+    """Discontinuous conduction: where no state can keep a sign, the current stops at zero."""
+    span = found.range
+    if route is None or not route.steps or not span.low < 0.0 < span.high:
+        return found
+    wide = box.with_ranges({carrier.name: span})
+    up, down = (
+        sustainable(reading, route, wide, cases, carrier.name, positive)
+        for positive in (True, False)
+    )
+    if up and not down:
+        stopped = "; a diode stops it at zero"
+        return replace(found, range=Interval(0.0, span.high), origin=found.origin + stopped)
+    if down and not up:
+        stopped = "; a diode stops it at zero"
+        return replace(found, range=Interval(span.low, 0.0), origin=found.origin + stopped)
+    return found

@@ -1,0 +1,140 @@
+"""From states and boxes to the demand of each position, with the state that gave each extreme."""
+
+import math
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+
+from rulecheck.demand.demands import PositionDemand, Witness
+from rulecheck.demand.readings import Reading, feasible
+from rulecheck.demand.states import RawState
+from rulecheck.demand.stiff import Box
+from rulecheck.stage import Position
+from rulecheck.values import AffineForm, Interval, QuadrantSet, Unknown, point
+
+SMALL = 0.02
+"""Share of the largest below which a value counts as none; method: 2 %, at least 1 V."""
+SMALL_VOLTAGE = 1.0
+
+
+@dataclass(frozen=True, slots=True)
+class Sample:
+    """One form in one state, with the range that the state leaves it."""
+
+    state: RawState
+    form: AffineForm
+    range: Interval
+    box: Box
+
+
+def demand_of(
+    position: Position, reading: Reading, index: int, box: Box, settle: Mapping[str, str]
+) -> PositionDemand:
+    """Over all possible states: the range of voltage while off and of current while on."""
+    off: list[Sample] = []
+    on: list[Sample] = []
+    strict = index in reading.strict
+    for state, narrowed in feasible(reading, index, box):
+        if position.name in state.on:
+            form = state.solution.on_currents[position.name]
+            clip = _carried(position)
+            on.append(Sample(state, form, _clip(narrowed.range_of(form), clip), narrowed))
+        else:
+            form = state.solution.off_voltages[position.name]
+            clip = _withstood(position, strict)
+            off.append(Sample(state, form, _clip(narrowed.range_of(form), clip), narrowed))
+    return from_samples(position, off, on, settle)
+
+
+def _carried(position: Position) -> Interval:
+    """What an ungated position can carry at all: a diode's current has one sign."""
+    both = position.gated or position.free_forward == position.free_reverse
+    low = -math.inf if both or position.free_reverse else 0.0
+    high = math.inf if both or position.free_forward else 0.0
+    return Interval(low, high)
+
+
+def _withstood(position: Position, strict: bool) -> Interval:
+    """What can stand across an off position: nothing that its free path would conduct."""
+    limited = strict or not position.gated
+    high = 0.0 if limited and position.free_forward else math.inf
+    low = 0.0 if limited and position.free_reverse else -math.inf
+    return Interval(low, high)
+
+
+def _clip(span: Interval, limits: Interval) -> Interval:
+    return span.meet(limits) or point(limits.low if span.high < limits.low else limits.high)
+
+
+def from_samples(
+    position: Position, off: Sequence[Sample], on: Sequence[Sample], settle: Mapping[str, str]
+) -> PositionDemand:
+    """The demand from all ranges while off and while on; `settle` says how to state a variable."""
+    off_range, off_low, off_high = _extremes(off)
+    on_range, on_low, on_high = _extremes(on)
+    unknown = _open_by((*off, *on), f"quadrants of {position.name}", settle)
+    quadrants = unknown or quadrants_of(off_range, on_range)
+    return PositionDemand(
+        position.name,
+        _numbers(off_range, f"off-state voltage of {position.name}", off, settle),
+        _numbers(on_range, f"on-state current of {position.name}", on, settle),
+        quadrants,
+        off_low,
+        off_high,
+        on_low,
+        on_high,
+    )
+
+
+def _extremes(samples: Sequence[Sample]) -> tuple[Interval, Witness | None, Witness | None]:
+    if not samples:
+        return point(0.0), None, None
+    low = min(samples, key=lambda s: s.range.low)
+    high = max(samples, key=lambda s: s.range.high)
+    span = Interval(low.range.low, high.range.high)
+    return span, _witness(low, low.range.low, False), _witness(high, high.range.high, True)
+
+
+def _witness(sample: Sample, value: float, high: bool) -> Witness:
+    return Witness(value, sample.state.on, sample.form, sample.box.corner_of(sample.form, high))
+
+
+def _numbers(
+    span: Interval, what: str, samples: Sequence[Sample], settle: Mapping[str, str]
+) -> Interval | Unknown:
+    """The range itself; an end without a known magnitude stays infinite in it."""
+    return _open_by(samples, what, settle) or span
+
+
+def _open_by(samples: Sequence[Sample], what: str, settle: Mapping[str, str]) -> Unknown | None:
+    """Unknown where an end is open only because a variable's sign is not known."""
+    names = sorted(
+        {
+            name
+            for sample in samples
+            if not sample.range.bounded
+            for name in sample.box.says_nothing(sample.form)
+        }
+    )
+    if not names:
+        return None
+    return Unknown(what, " and ".join(settle.get(name, name) for name in names))
+
+
+def quadrants_of(off: Interval, on: Interval) -> QuadrantSet:
+    """The product of the signs; small values count as none."""
+    volts = _signs(off, max(SMALL_VOLTAGE, SMALL * _finite(off)))
+    amperes = _signs(on, SMALL * _finite(on))
+    return QuadrantSet.product(volts, amperes)
+
+
+def _finite(span: Interval) -> float:
+    return span.magnitude if math.isfinite(span.magnitude) else 0.0
+
+
+def _signs(span: Interval, small: float) -> list[bool]:
+    signs = []
+    if span.high > small:
+        signs.append(True)
+    if span.low < -small:
+        signs.append(False)
+    return signs

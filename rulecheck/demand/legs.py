@@ -1,0 +1,269 @@
+"""Name what the states show: legs by their midpoints, bridges by legs that share rails.
+
+Names come last, as labels; nothing before this step knows one.
+"""
+
+import math
+from collections.abc import Iterable, Sequence
+from itertools import pairwise
+
+import networkx as nx
+
+from rulecheck.demand.analysis import Worked
+from rulecheck.demand.demands import Bridge, HardCommutation, Leg, PositionDemand
+from rulecheck.demand.readings import feasible
+from rulecheck.demand.topology import Cluster
+from rulecheck.stage import Position
+from rulecheck.values import Interval, Unknown, natural_key
+
+
+def find_legs(worked: Worked) -> tuple[Leg, ...]:
+    legs: list[Leg] = []
+    for index, cluster in enumerate(worked.topology.clusters):
+        for midpoint in _midpoints(cluster, worked):
+            leg = _leg(worked, index, cluster, midpoint)
+            if leg is not None:
+                legs.append(leg)
+    nested = [_nested(leg, worked) for leg in legs]
+    return tuple(sorted(nested, key=lambda leg: natural_key(leg.name)))
+
+
+def _nested(leg: Leg, worked: Worked) -> Leg:
+    """Flying capacitors: a leg whose rails are themselves switched, each by one of a pair."""
+    inner_pairs = 1
+    while True:
+        pair = _outer_pair(leg, worked)
+        if pair is None:
+            return leg
+        upper, lower, rails = pair
+        inner_pairs += 1
+        high = tuple(sorted((*leg.high, upper), key=natural_key))
+        low = tuple(sorted((*leg.low, lower), key=natural_key))
+        leg = Leg(
+            leg.name, "multilevel leg", leg.midpoint, rails, high, low, leg.others, inner_pairs + 1
+        )
+
+
+def _outer_pair(leg: Leg, worked: Worked) -> tuple[str, str, tuple[str, str]] | None:
+    known = {*leg.high, *leg.low}
+    for cluster in worked.topology.clusters:
+        links = cluster.positions
+        if len(links) != 2 or known & {link.name for link in links}:
+            continue
+        ends: dict[str, str] = {}
+        outer: dict[str, str] = {}
+        for link in links:
+            position = link.position
+            assert position is not None
+            for near, far in (
+                (position.start, position.end),
+                (position.end, position.start),
+            ):
+                if near in leg.rails:
+                    ends[near], outer[near] = link.name, far
+        if len(set(ends.values())) == 2 and set(ends) == set(leg.rails):
+            top, bottom = leg.rails
+            return ends[top], ends[bottom], (outer[top], outer[bottom])
+    return None
+
+
+def _midpoints(cluster: Cluster, worked: Worked) -> list[str]:
+    """Nets where positions meet and a stiff current or a winding leaves."""
+    at_net: dict[str, int] = {}
+    for link in cluster.positions:
+        if link.position:
+            for net in (link.position.start, link.position.end):
+                at_net[net] = at_net.get(net, 0) + 1
+    leaving = {island for island, form in cluster.into.items() if form.terms}
+    leaving |= {
+        end for link in cluster.links if link.core or link.ohm for end in (link.start, link.end)
+    }
+    rigid = worked.voltages.potentials
+    return [
+        net
+        for net in sorted(at_net, key=natural_key)
+        if at_net[net] >= 2 and rigid.root(net) in leaving
+    ]
+
+
+def _leg(worked: Worked, index: int, cluster: Cluster, midpoint: str) -> Leg | None:
+    graph = nx.MultiGraph()
+    for link in cluster.positions:
+        if link.position:
+            graph.add_edge(link.position.start, link.position.end, key=link.name)
+    rails = _rails(worked, graph, midpoint)
+    if len(rails) < 2:
+        return None
+    top, bottom = rails[0], rails[-1]
+    high, low = _chain(graph, top, midpoint, rails), _chain(graph, bottom, midpoint, rails)
+    names = [link.name for link in cluster.positions]
+    others = tuple(n for n in names if n not in high and n not in low)
+    positions = {link.name: link.position for link in cluster.positions if link.position}
+    reachable = _exclusive(graph, midpoint, rails)
+    others = tuple(n for n in others if n in reachable)
+    levels = _levels(worked, index, midpoint, rails)
+    kind = _kind(worked, [positions[n] for n in (*high, *low)], rails, others)
+    return Leg(midpoint, kind, midpoint, rails_named(rails, kind), high, low, others, levels)
+
+
+def rails_named(rails: Sequence[str], kind: str) -> tuple[str, ...]:
+    """A selector leg has all its lines as rails, other legs the outer two."""
+    return tuple(rails) if kind == "selector leg" else (rails[0], rails[-1])
+
+
+def _rails(worked: Worked, graph: nx.MultiGraph, midpoint: str) -> list[str]:
+    """Nets on one rigid island that positions lead to, highest mean potential first."""
+    rigid = worked.voltages.potentials
+    component = nx.node_connected_component(graph, midpoint)
+    by_root: dict[str, list[str]] = {}
+    for net in sorted(component, key=natural_key):
+        if rigid.root(net) != rigid.root(midpoint):
+            by_root.setdefault(rigid.root(net), []).append(net)
+    ground = rigid.root(worked.stage.ground)
+    best = max(by_root, key=lambda root: (root == ground, len(by_root[root])), default="")
+    most = by_root.get(best, [])
+    if len(most) < 2:
+        return []
+    reference = most[0]
+
+    def mean(net: str) -> float:
+        form = rigid.difference(net, reference)
+        span = worked.box.range_of(form) if form is not None else Interval(0.0, 0.0)
+        return span.middle if span.bounded else 0.0
+
+    return sorted(most, key=lambda net: -mean(net))
+
+
+def _chain(graph: nx.MultiGraph, rail: str, midpoint: str, rails: Sequence[str]) -> tuple[str, ...]:
+    """Positions between a rail and the midpoint that pass no other rail."""
+    kept = graph.subgraph(set(graph.nodes) - (set(rails) - {rail}))
+    if rail not in kept or not nx.has_path(kept, rail, midpoint):
+        return ()
+    path = nx.shortest_path(kept, rail, midpoint)
+    names = [name for a, b in pairwise(path) for name in sorted(graph[a][b])]
+    return tuple(sorted(names, key=natural_key))
+
+
+def _exclusive(graph: nx.MultiGraph, midpoint: str, rails: Sequence[str]) -> set[str]:
+    """Positions of this midpoint: reached without passing a rail."""
+    kept = graph.subgraph(set(graph.nodes) - set(rails))
+    inner = nx.node_connected_component(kept, midpoint)
+    return {name for net in inner for _, _, name in graph.edges(net, keys=True)}
+
+
+def _levels(worked: Worked, index: int, midpoint: str, rails: Sequence[str]) -> int:
+    """How many different potentials the midpoint takes over the states."""
+    rigid = worked.voltages.potentials
+    reference = rails[-1]
+    seen: list[float] = []
+    for state, box in feasible(worked.reading, index, worked.box):
+        potentials = state.solution.potentials
+        root, base = rigid.root(midpoint), rigid.root(reference)
+        form = potentials[root] - potentials[base]
+        form += rigid.offset(midpoint) - rigid.offset(reference)
+        span = box.range_of(form)
+        middle = span.middle if span.bounded else 0.0
+        size = max(1.0, 0.02 * span.magnitude) if span.bounded else 1.0
+        if all(abs(middle - other) > size for other in seen):
+            seen.append(middle)
+    return max(2, len(seen))
+
+
+def _kind(
+    worked: Worked, ends: Sequence[Position], rails: Sequence[str], others: Sequence[str]
+) -> str:
+    if len(rails) > 2 and _alternate(worked, rails):
+        return "selector leg"
+    if others or len(rails) > 2 or len(ends) > 2:
+        return "multilevel leg"
+    gated = sum(position.gated for position in ends)
+    return {2: "half-bridge leg", 1: "chopper cell"}.get(gated, "rectifier leg")
+
+
+def _alternate(worked: Worked, rails: Sequence[str]) -> bool:
+    form = worked.voltages.potentials.difference(rails[0], rails[-1])
+    if form is None:
+        return False
+    span = worked.box.range_of(form)
+    return span.low < 0.0 < span.high
+
+
+def find_bridges(worked: Worked, legs: Sequence[Leg]) -> tuple[Bridge, ...]:
+    """Two or three two-level legs on the same rails whose midpoints meet in one load."""
+    by_rails: dict[tuple[str, ...], list[Leg]] = {}
+    for leg in legs:
+        if leg.kind in ("half-bridge leg", "chopper cell", "rectifier leg"):
+            by_rails.setdefault(leg.rails, []).append(leg)
+    bridges = []
+    for rails, on_rails in sorted(by_rails.items()):
+        for names in _meeting(worked, rails, [leg.midpoint for leg in on_rails]):
+            if len(names) in (2, 3):
+                kinds = frozenset(leg.kind for leg in on_rails if leg.midpoint in names)
+                bridges.append(Bridge("/".join(names), _bridge_kind(kinds, len(names)), names))
+    return tuple(bridges)
+
+
+def _bridge_kind(kinds: frozenset[str], count: int) -> str:
+    if kinds == {"rectifier leg"}:
+        return "diode bridge" if count == 2 else "three-phase diode bridge"
+    if kinds == {"chopper cell"}:
+        return "asymmetric half bridge" if count == 2 else "three-phase half-controlled bridge"
+    return "H-bridge" if count == 2 else "three-phase bridge"
+
+
+def _meeting(
+    worked: Worked, rails: Sequence[str], midpoints: Iterable[str]
+) -> list[tuple[str, ...]]:
+    rigid = worked.voltages.potentials
+    barred = {rigid.root(net) for net in rails}
+    graph = nx.Graph()
+    graph.add_nodes_from(midpoints)
+    stage = worked.stage
+    pairs = [(b.start, b.end) for b in stage.branches]
+    pairs += [pair for core in stage.transformers for pair in core.windings]
+    for a, b in pairs:
+        if rigid.root(a) not in barred and rigid.root(b) not in barred:
+            graph.add_edge(a, b)
+    wanted = set(midpoints)
+    groups = [sorted(c & wanted, key=natural_key) for c in nx.connected_components(graph)]
+    return [tuple(group) for group in sorted(groups) if len(group) > 1]
+
+
+def find_hard_commutations(
+    legs: Sequence[Leg],
+    positions: Sequence[Position],
+    demands: dict[str, PositionDemand],
+) -> tuple[HardCommutation, ...]:
+    """In a two-level leg: free paths that the other, gated position turns off by turning on."""
+    by_name = {position.name: position for position in positions}
+    found = []
+    for leg in legs:
+        if leg.kind not in ("half-bridge leg", "chopper cell"):
+            continue
+        for mine, other in ((leg.high, leg.low), (leg.low, leg.high)):
+            if by_name[other[0]].gated:
+                found += _recovering(by_name[mine[0]], other[0], demands[mine[0]])
+    return tuple(sorted(found, key=lambda item: natural_key(item.position)))
+
+
+def _recovering(position: Position, by: str, demand: PositionDemand) -> list[HardCommutation]:
+    for free, sign in ((position.free_forward, 1.0), (position.free_reverse, -1.0)):
+        if not free:
+            continue
+        current, voltage = demand.on_current, demand.off_voltage
+        if isinstance(current, Unknown) or isinstance(voltage, Unknown):
+            missing = current if isinstance(current, Unknown) else voltage
+            assert isinstance(missing, Unknown)
+            return [HardCommutation(position.name, by, missing, missing)]
+        flowing = current.high if sign > 0 else -current.low
+        standing = -voltage.low if sign > 0 else voltage.high
+        if flowing > 0.0 and standing > 0.0:
+            stated = [_finite(x, position.name) for x in (flowing, standing)]
+            return [HardCommutation(position.name, by, stated[0], stated[1])]
+    return []
+
+
+def _finite(value: float, name: str) -> float | Unknown:
+    if math.isfinite(value):
+        return value
+    return Unknown(f"recovery of {name}", "the undetermined quantities of its group")

@@ -1,0 +1,155 @@
+"""Which states the drawn hardware allows, and whether the stage can work with them.
+
+A free path (a body or anti-parallel diode) forbids states in which it would be forward-biased
+while its position is off. If without those states the stage cannot work, the device must not
+excuse itself from its own job: then all legal states count.
+"""
+
+from collections.abc import Iterable, Mapping, Sequence
+from dataclasses import dataclass
+
+from rulecheck.demand.routes import Carrier, Route
+from rulecheck.demand.sign_cases import Case
+from rulecheck.demand.states import RawState
+from rulecheck.demand.stiff import Box, tightened
+from rulecheck.demand.topology import Cluster, Link
+from rulecheck.values import AffineForm, Interval
+
+_VOLT_SECOND = 1e-6
+_NO_CURRENT = 1e-5
+"""Ampere."""
+
+
+@dataclass(frozen=True, slots=True)
+class Failure:
+    """A carrier that cannot see voltage of both signs in some case, so its current would run off."""
+
+    carrier: Carrier
+    case: Case
+    clusters: tuple[int, ...]
+    why: str
+
+
+@dataclass(frozen=True, slots=True)
+class Reading:
+    """For each cluster its states; `strict` holds those whose free paths limit the control."""
+
+    clusters: Sequence[Cluster]
+    states: Sequence[Sequence[RawState]]
+    strict: frozenset[int]
+
+    def relaxed(self, clusters: Iterable[int]) -> "Reading":
+        return Reading(self.clusters, self.states, self.strict - set(clusters))
+
+
+def inequalities(cluster: Cluster, state: RawState, strict: bool) -> list[AffineForm]:
+    """Forms that are zero or positive in the state: diodes, free paths, connected voltages."""
+    forms: list[AffineForm] = []
+    for link in cluster.positions:
+        forms += _of_position(link, state, strict)
+    for form in state.equal:
+        forms += [form, -form]
+    return forms
+
+
+def _of_position(link: Link, state: RawState, strict: bool) -> list[AffineForm]:
+    position = link.position
+    if position is None or (position.gated and not strict):
+        return []
+    if link.name in state.on:
+        if position.gated or position.free_forward == position.free_reverse:
+            return []
+        current = state.solution.on_currents[link.name]
+        return [current if position.free_forward else -current]
+    voltage = state.solution.off_voltages[link.name]
+    forms = []
+    if position.free_forward:
+        forms.append(-voltage)
+    if position.free_reverse:
+        forms.append(voltage)
+    return forms
+
+
+def feasible(reading: Reading, index: int, box: Box) -> list[tuple[RawState, Box]]:
+    """The cluster's states that the box leaves possible, each with its narrowed box."""
+    cluster, strict = reading.clusters[index], index in reading.strict
+    found = []
+    for state in reading.states[index]:
+        narrowed = tightened(box, inequalities(cluster, state, strict))
+        if narrowed is not None:
+            found.append((state, narrowed))
+    return found
+
+
+def reach(reading: Reading, route: Route, box: Box) -> Interval | None:
+    """The voltages that a carrier can see over the states; None where some group has no state."""
+    total = box.range_of(route.fixed)
+    for step in route.steps:
+        span = _step_reach(reading, step.cluster, step.enter, step.leave, box)
+        if span is None:
+            return None
+        total += span.scaled(step.weight)
+    return total
+
+
+def _step_reach(reading: Reading, index: int, enter: str, leave: str, box: Box) -> Interval | None:
+    span: Interval | None = None
+    for state, narrowed in feasible(reading, index, box):
+        potentials = state.solution.potentials
+        here = narrowed.range_of(potentials[enter] - potentials[leave])
+        span = here if span is None else span.hull(here)
+    return span
+
+
+def failures(
+    reading: Reading,
+    routes: Sequence[tuple[Carrier, Route]],
+    box: Box,
+    cases_of: Mapping[str, Sequence[Case]],
+) -> list[Failure]:
+    """Carriers that would not keep volt-second balance in one of their required cases."""
+    found = []
+    for carrier, route in routes:
+        clusters = tuple(sorted({step.cluster for step in route.steps}))
+        if not clusters:
+            continue
+        controlled = any(reading.clusters[index].gated for index in clusters)
+        for case in _instants(cases_of[carrier.name], box, controlled):
+            why = _why_not(reach(reading, route, case.narrow(box)))
+            if why:
+                found.append(Failure(carrier, case, clusters, why))
+                break
+    return found
+
+
+def _instants(cases: Sequence[Case], box: Box, controlled: bool) -> list[Case]:
+    """A controlled stage must work at every instant, a rectifier only over the line period."""
+    if not controlled:
+        return list(cases)
+    return [instant for case in cases for instant in case.at_instants(box.phase_sets)]
+
+
+def _why_not(span: Interval | None) -> str:
+    if span is None:
+        return "no state is possible"
+    scale = max(1.0, min(span.magnitude, 1e9)) * _VOLT_SECOND
+    if span.high <= scale:
+        return "no state gives it positive voltage"
+    if span.low >= -scale:
+        return "no state gives it negative voltage"
+    return ""
+
+
+def sustainable(
+    reading: Reading, route: Route, box: Box, cases: Sequence[Case], name: str, positive: bool
+) -> bool:
+    """True where a current of that sign can be kept in some case: both voltages are at hand."""
+    # leave zero itself out: a current of zero satisfies every diode
+    signed = box.ranges[name].part_of_sign(positive, _NO_CURRENT)
+    if signed is None:
+        return False
+    for case in cases:
+        span = reach(reading, route, case.narrow(box.with_ranges({name: signed})))
+        if not _why_not(span):
+            return True
+    return False

@@ -1,0 +1,134 @@
+"""Ripple of an inductor's current from the states that it sees.
+
+di = v1 d / (L f), with d from volt-second balance of the two neighbouring levels v1 > 0 > -v2:
+di = v1 v2 / ((v1 + v2) L f). Mohan, Undeland and Robbins, Power Electronics, ch. 7 (from
+memory). For a two-level leg its maximum is V / (4 L f).
+"""
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+from itertools import product
+
+import numpy as np
+import numpy.typing as npt
+
+from rulecheck.demand.readings import Reading, feasible
+from rulecheck.demand.routes import Route
+from rulecheck.demand.stiff import Box
+from rulecheck.values import AffineForm
+
+_MOST_COMBINATIONS = 64
+_MOST_POINTS = 20000
+Grid = npt.NDArray[np.float64]
+
+
+@dataclass(frozen=True, slots=True)
+class Level:
+    """A voltage that the inductor can see, and the gates that make it."""
+
+    form: AffineForm
+    gates: tuple[str, ...]
+
+
+def swing(reading: Reading, route: Route, boxes: Sequence[Box]) -> float:
+    """The largest v1 v2 / (v1 + v2), in volts, over the boxes; di is this over L f.
+
+    Through several groups every mixture of their states is taken to follow every other, which
+    bounds all modulations; through one group neighbouring levels follow each other.
+    """
+    if route.floating:
+        return max((_own_leg_swing(reading, route, box) for box in boxes), default=0.0)
+    return max((_swing_in(reading, route, box) for box in boxes), default=0.0)
+
+
+def _own_leg_swing(reading: Reading, route: Route, box: Box) -> float:
+    """With a floating star each carrier's own leg moves it by the leg's span: span / 4 at most."""
+    own = max(route.steps, key=lambda step: abs(step.weight), default=None)
+    if own is None:
+        return 0.0
+    ends: list[float] = []
+    for state, narrowed in feasible(reading, own.cluster, box):
+        potentials = state.solution.potentials
+        span = narrowed.range_of(potentials[own.enter] - potentials[own.leave])
+        ends += [span.low, span.high]
+    return (max(ends) - min(ends)) / 4 if ends and np.isfinite(ends).all() else 0.0
+
+
+def _swing_in(reading: Reading, route: Route, box: Box) -> float:
+    choices: list[list[Level]] = []
+    for step in route.steps:
+        levels = []
+        for state, _ in feasible(reading, step.cluster, box):
+            potentials = state.solution.potentials
+            form = (potentials[step.enter] - potentials[step.leave]).scaled(step.weight)
+            gated = reading.clusters[step.cluster].gated
+            levels.append(Level(form, tuple(n for n in state.on if n in gated)))
+        choices.append(levels)
+    if not choices or not all(choices):
+        return 0.0
+    combined = _combined(route, choices)
+    return _largest(combined, box, neighbours=len(choices) == 1)
+
+
+def _combined(route: Route, choices: Sequence[Sequence[Level]]) -> list[Level]:
+    count = int(np.prod([len(levels) for levels in choices]))
+    if count > _MOST_COMBINATIONS:
+        choices = [[levels[0], levels[-1]] for levels in choices[:6]]
+    mixed = []
+    for combination in product(*choices):
+        form = route.fixed
+        for level in combination:
+            form += level.form
+        mixed.append(Level(form, tuple(g for level in combination for g in level.gates)))
+    return mixed
+
+
+def _largest(levels: Sequence[Level], box: Box, neighbours: bool) -> float:
+    grid = _grid(levels, box)
+    if grid is None:
+        return 0.0
+    names, points = grid
+    volts = (
+        np.array([[dict(level.form.terms).get(n, 0.0) for n in names] for level in levels]) @ points
+    )
+    tolerance = 1e-9 * max(1.0, float(np.abs(volts).max(initial=0.0)))
+    above = np.where(volts > tolerance, volts, np.inf if neighbours else -np.inf)
+    below = np.where(volts < -tolerance, -volts, np.inf if neighbours else -np.inf)
+    up = above.min(axis=0) if neighbours else above.max(axis=0)
+    down = below.min(axis=0) if neighbours else below.max(axis=0)
+    usable = np.isfinite(up) & np.isfinite(down)
+    if not usable.any():
+        return 0.0
+    up, down = up[usable], down[usable]
+    swings = up * down / (up + down)
+    if neighbours:
+        swings = swings / _repeats(levels, volts[:, usable], up)
+    return float(swings.max())
+
+
+def _repeats(levels: Sequence[Level], volts: Grid, up: Grid) -> Grid:
+    """How many different gate patterns make the upper level: each comes once a period."""
+    close = np.abs(volts - up) < 1e-6 * np.maximum(1.0, up)
+    first: Mapping[tuple[str, ...], int] = {l.gates: i for i, l in enumerate(levels)}
+    total = np.zeros(up.shape)
+    for gates in first:
+        mine = [i for i, level in enumerate(levels) if level.gates == gates]
+        total += close[mine].any(axis=0)
+    return np.maximum(total, 1.0)
+
+
+def _grid(levels: Sequence[Level], box: Box) -> tuple[tuple[str, ...], Grid] | None:
+    """Sample points of the variables: ends and an even spread between them."""
+    names = tuple(sorted({n for level in levels for n in level.form.names}))
+    if any(not box.ranges[n].bounded for n in names):
+        return None
+    spread = [n for n in names if box.ranges[n].high > box.ranges[n].low]
+    each = 129 if len(spread) == 1 else max(2, int(_MOST_POINTS ** (1 / max(1, len(spread)))))
+    each = min(each, 129)
+    axes = [
+        np.linspace(box.ranges[n].low, box.ranges[n].high, each if n in spread else 1)
+        for n in names
+    ]
+    if not axes:
+        return names, np.zeros((0, 1))
+    return names, np.array([axis.ravel() for axis in np.meshgrid(*axes, indexing="ij")])

@@ -1,0 +1,231 @@
+"""Cut the network into independent groups of positions, and say what flows into each.
+
+Nets tied by voltage branches are one rigid island. Positions, resistors and windings join
+islands; their biconnected components, united where windings share a core, are the groups. The
+groups and islands form a forest, so the current into each group at each island follows from
+Kirchhoff's law on the branches of that side.
+"""
+
+from collections.abc import Iterable, Mapping, Sequence
+from dataclasses import dataclass
+from itertools import pairwise
+
+import networkx as nx
+
+from rulecheck.demand.offsets import Offsets
+from rulecheck.demand.ties import Ties, build_ties
+from rulecheck.demand.voltages import name_of
+from rulecheck.stage import Branch, BranchKind, Position, Transformer
+from rulecheck.values import AffineForm, natural_key, total_of, variable
+
+
+@dataclass(frozen=True, slots=True)
+class Link:
+    """Something between two islands: a position, a resistor or a winding."""
+
+    name: str
+    start: str
+    end: str
+    """Islands, by the root net."""
+    step: AffineForm
+    """Voltage between the ends beyond that of their islands' roots."""
+    position: Position | None = None
+    ohm: float = 0.0
+    core: str = ""
+    turns: float = 0.0
+
+
+@dataclass(frozen=True, slots=True)
+class Cluster:
+    """One independent group: its links and the current that the rest drives into its islands."""
+
+    links: tuple[Link, ...]
+    islands: tuple[str, ...]
+    into: Mapping[str, AffineForm]
+
+    @property
+    def positions(self) -> tuple[Link, ...]:
+        return tuple(link for link in self.links if link.position is not None)
+
+    @property
+    def gated(self) -> frozenset[str]:
+        return frozenset(p.name for p in self.positions if p.position and p.position.gated)
+
+
+@dataclass(frozen=True, slots=True)
+class Topology:
+    clusters: tuple[Cluster, ...]
+    ties: Ties
+    tie_positions: tuple[Position, ...]
+    """Positions whose ends stand on one rigid island."""
+    forest: nx.Graph
+    """Islands (by name) and clusters (by index) that touch."""
+    rigid: Offsets
+
+
+def build_topology(
+    positions: Sequence[Position],
+    branches: Sequence[Branch],
+    transformers: Sequence[Transformer],
+    rigid: Offsets,
+) -> Topology:
+    links = tuple(_links(positions, branches, transformers, rigid))
+    injected = _injections(branches, transformers, rigid)
+    joined = [link for link in links if link.start != link.end or link.core]
+    groups = _group(joined)
+    forest = _forest(groups, injected)
+    into = _flows(groups, forest, injected)
+    clusters = tuple(
+        Cluster(tuple(group), tuple(sorted(_islands(group))), into[i])
+        for i, group in enumerate(groups)
+    )
+    loops = tuple(link.position for link in links if link.position and link.start == link.end)
+    return Topology(clusters, build_ties(_balances(forest, injected)), loops, forest, rigid)
+
+
+def _links(
+    positions: Sequence[Position],
+    branches: Sequence[Branch],
+    transformers: Sequence[Transformer],
+    rigid: Offsets,
+) -> Iterable[Link]:
+    def step(start: str, end: str) -> AffineForm:
+        return rigid.offset(start) - rigid.offset(end)
+
+    for position in positions:
+        a, b = position.start, position.end
+        yield Link(position.name, rigid.root(a), rigid.root(b), step(a, b), position)
+    for branch in branches:
+        if branch.kind is BranchKind.RESISTOR and branch.value:
+            a, b = branch.start, branch.end
+            yield Link(branch.name, rigid.root(a), rigid.root(b), step(a, b), ohm=branch.value)
+    for core in transformers:
+        for index, ((a, b), turns) in enumerate(zip(core.windings, core.turns, strict=True)):
+            name = core.parts[index]
+            yield Link(
+                name,
+                rigid.root(a),
+                rigid.root(b),
+                step(a, b),
+                core=core.name,
+                turns=turns / core.turns[0],
+            )
+
+
+def magnetising_name(core: Transformer) -> str:
+    return f"i(magnetising {core.name})"
+
+
+def _injections(
+    branches: Sequence[Branch], transformers: Sequence[Transformer], rigid: Offsets
+) -> dict[str, AffineForm]:
+    """Current that current branches and magnetising inductances drive into each island."""
+    into: dict[str, AffineForm] = {}
+
+    def drive(name: str, start: str, end: str) -> None:
+        form = variable(name)
+        for net, signed in ((start, -form), (end, form)):
+            root = rigid.root(net)
+            into[root] = into.get(root, AffineForm()) + signed
+
+    for branch in branches:
+        if branch.kind is BranchKind.CURRENT:
+            drive(name_of(branch), branch.start, branch.end)
+    for core in transformers:
+        if not core.ideal:
+            drive(magnetising_name(core), *core.windings[0])
+    return into
+
+
+def _islands(links: Iterable[Link]) -> set[str]:
+    return {island for link in links for island in (link.start, link.end)}
+
+
+def _group(links: Sequence[Link]) -> list[list[Link]]:
+    """Biconnected components of links, united by cores and until they form a forest."""
+    graph = nx.Graph()
+    for link in links:
+        graph.add_edge(link.start, link.end)
+    block_of: dict[frozenset[str], object] = {}
+    for index, edges in enumerate(nx.biconnected_component_edges(graph)):
+        block_of |= {frozenset(edge): index for edge in edges}
+    joined = nx.Graph()
+    for link in links:
+        block = ("block", block_of.get(frozenset((link.start, link.end)), link.name))
+        joined.add_edge(("link", link.name), block)
+        if link.core:
+            joined.add_edge(block, ("core", link.core))
+    united = _without_cycles(joined, links)
+    order = {link.name: i for i, link in enumerate(links)}
+    groups: list[list[Link]] = []
+    for component in nx.connected_components(united):
+        names = {node[1] for node in component if node[0] == "link"}
+        groups.append([links[i] for i in sorted(order[name] for name in names)])
+    return sorted(groups, key=lambda group: natural_key(group[0].name))
+
+
+def _without_cycles(joined: nx.Graph, links: Sequence[Link]) -> nx.Graph:
+    """Unite groups that touch each other at two islands; a core may have closed such a ring."""
+    while True:
+        group_of: dict[str, int] = {}
+        for index, component in enumerate(nx.connected_components(joined)):
+            group_of |= {node[1]: index for node in component if node[0] == "link"}
+        meeting = nx.Graph()
+        for link in links:
+            for island in (link.start, link.end):
+                meeting.add_edge(("group", group_of[link.name]), ("island", island))
+        rings = [
+            [node[1] for node in ring if node[0] == "group"]
+            for ring in nx.biconnected_components(meeting)
+        ]
+        rings = [ring for ring in rings if len(ring) > 1]
+        if not rings:
+            return joined
+        first_link = {index: name for name, index in sorted(group_of.items(), reverse=True)}
+        for ring in rings:
+            for a, b in pairwise(ring):
+                joined.add_edge(("link", first_link[a]), ("link", first_link[b]))
+
+
+def _forest(groups: Sequence[Sequence[Link]], injected: Mapping[str, AffineForm]) -> nx.Graph:
+    forest = nx.Graph()
+    forest.add_nodes_from(injected)
+    for index, group in enumerate(groups):
+        for island in sorted(_islands(group)):
+            forest.add_edge(index, island)
+    return forest
+
+
+def _balances(forest: nx.Graph, injected: Mapping[str, AffineForm]) -> Iterable[AffineForm]:
+    """The current driven into a whole connected part of the network sums to zero."""
+    for component in nx.connected_components(forest):
+        yield total_of(injected[node] for node in sorted(component & injected.keys()))
+
+
+def _flows(
+    groups: Sequence[Sequence[Link]], forest: nx.Graph, injected: Mapping[str, AffineForm]
+) -> dict[int, dict[str, AffineForm]]:
+    """What the network behind each island of a group drives into the group there.
+
+    Sums over subtrees of the forest, rooted at the island that most groups touch; the side
+    towards the root gets what all other sides leave.
+    """
+    into: dict[int, dict[str, AffineForm]] = {index: {} for index in range(len(groups))}
+    for component in nx.connected_components(forest):
+        islands = [node for node in component if isinstance(node, str)]
+        root = max(sorted(islands), key=forest.degree)
+        order = list(nx.dfs_preorder_nodes(forest, root))
+        parent = dict(nx.dfs_predecessors(forest, root))
+        below: dict[object, AffineForm] = {}
+        for node in reversed(order):
+            below[node] = below.get(node, AffineForm()) + injected.get(node, AffineForm())
+            above = parent.get(node)
+            if above is None:
+                continue
+            if above != root:
+                below[above] = below.get(above, AffineForm()) + below[node]
+            if isinstance(node, str):
+                into[above][node] = below[node]
+            else:
+                into[node][above] = -below[node]
+    return into

@@ -1,0 +1,225 @@
+"""Build the stage from the parts and the sheet: one named step after another."""
+
+import difflib
+from collections.abc import Iterable, Mapping
+from dataclasses import dataclass
+
+from rulecheck.parts import Kind, PartList
+from rulecheck.stage.branches import build_transformers, part_branches, port_branches
+from rulecheck.stage.gate_region import GateRegion, find_gate_region
+from rulecheck.stage.grouping import Grouping, group_devices
+from rulecheck.stage.layout import Layout, is_semiconductor, lay_out, main_nets
+from rulecheck.stage.orientation import mean_potentials
+from rulecheck.stage.peripheral import Peripheral, find_peripheral
+from rulecheck.stage.ports import Ports, resolve_ports, source_ports
+from rulecheck.stage.positions import build_positions
+from rulecheck.stage.power_path import find_live_nets, find_power_devices
+from rulecheck.stage.sheet import Sheet
+from rulecheck.stage.stage import Branch, BranchKind, Port, Role, Stage, Switching, Transformer
+from rulecheck.stage.wiring import merge_wires
+from rulecheck.values import Interval, Problem, error, natural_key
+
+
+@dataclass(frozen=True, slots=True)
+class StageReading:
+    """The stage, and the mistakes that only show when sheet and circuit meet."""
+
+    stage: Stage
+    problems: tuple[Problem, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class _Sorted:
+    """Who is who, before positions are formed."""
+
+    layout: Layout
+    region: GateRegion
+    peripheral: Peripheral
+    aside: frozenset[str]
+    live: frozenset[str]
+    switches: frozenset[str]
+
+
+def read_stage(parts: PartList, sheet: Sheet) -> StageReading:
+    """Find ports, roles, branches and positions of the power stage."""
+    wiring = merge_wires(parts, sheet)
+    layout = lay_out(parts, sheet, wiring)
+    known = _sort_parts(layout)
+    ports = _ports(known)
+    branches = _branches(known, ports.ports)
+    transformers = build_transformers(layout, known.live, known.region.cores)
+    grouping = _group(known, branches, transformers)
+    potentials = mean_potentials(branches, transformers, layout.net(parts.ground))
+    positions = build_positions(grouping.pieces, parts.by_name, layout.merged, potentials)
+    stage = Stage(
+        parts.file,
+        parts,
+        ports.ports,
+        branches,
+        transformers,
+        positions,
+        layout.merged,
+        _roles(known, branches, transformers),
+        known.peripheral.refers_to,
+        _given(parts, sheet),
+        layout.net(parts.ground),
+        sheet.switching,
+        _leg_switching(layout, sheet),
+        sheet.efficiency,
+        sheet.file,
+        (*parts.assumed, *wiring.assumed, *_kept_assumptions(known)),
+        _not_covered(known, grouping),
+    )
+    return StageReading(stage, (*ports.problems, *_unknown_names(parts, layout, sheet)))
+
+
+def _sort_parts(layout: Layout) -> _Sorted:
+    region = find_gate_region(layout)
+    peripheral = find_peripheral(layout, region.parts)
+    overridden = {
+        name: override.role
+        for part in layout.parts.parts
+        for name, override in ((part.name, layout.sheet.overrides.get(part.name.lower())),)
+        if override is not None and override.role is not None
+    }
+    put_aside = {Role.SNUBBER, Role.CLAMP, Role.BOOTSTRAP, Role.SHARING, Role.SENSE}
+    put_aside |= {Role.GATE_DRIVE, Role.SIGNAL, Role.IGNORED}
+    by_sheet = {name for name, role in overridden.items() if role in put_aside}
+    drives = {n for core in layout.parts.cores if core.name in region.cores for n in core.windings}
+    aside = frozenset(region.parts | set(peripheral.roles) | by_sheet | drives)
+    aside -= {name for name, role in overridden.items() if role not in put_aside}
+    live = find_live_nets(layout, aside)
+    bulk = frozenset(
+        part.name
+        for part in layout.parts.parts
+        if part.kind is Kind.CAPACITOR and part.name not in aside
+    )
+    switches = find_power_devices(layout, aside, live, bulk)
+    switches |= {name for name, role in overridden.items() if role is Role.SWITCH}
+    return _Sorted(layout, region, peripheral, aside, live, switches)
+
+
+def _ports(known: _Sorted) -> Ports:
+    if known.layout.sheet.ports:
+        return resolve_ports(known.layout.sheet, known.layout.merged)
+    return Ports(source_ports(known.layout, known.aside), ())
+
+
+def _branches(known: _Sorted, ports: Iterable[Port]) -> tuple[Branch, ...]:
+    ports = tuple(ports)
+    branches = [*port_branches(ports)]
+    branches += part_branches(known.layout, known.live, known.aside, ports)
+    return tuple(sorted(branches, key=lambda branch: natural_key(branch.name)))
+
+
+def _group(
+    known: _Sorted, branches: Iterable[Branch], transformers: Iterable[Transformer]
+) -> Grouping:
+    layout = known.layout
+    joints = {net for branch in branches for net in (branch.start, branch.end)}
+    joints |= {net for t in transformers for pair in t.windings for net in pair}
+    joints |= layout.port_nets | layout.grounds
+    joints |= {
+        layout.net(net)
+        for part in layout.parts.parts
+        if part.kind is Kind.CONNECTOR
+        for net in part.nets
+    }
+    ends: dict[str, tuple[str, str]] = {}
+    for part in layout.parts.parts:
+        nets = main_nets(layout, part)
+        if part.name in known.switches and len(nets) == 2:
+            ends[part.name] = (nets[0], nets[1])
+    return group_devices(ends, frozenset(joints))
+
+
+def _roles(
+    known: _Sorted, branches: Iterable[Branch], transformers: Iterable[Transformer]
+) -> Mapping[str, Role]:
+    by_kind = {
+        BranchKind.VOLTAGE: Role.BULK_CAPACITOR,
+        BranchKind.CURRENT: Role.INDUCTOR,
+        BranchKind.RESISTOR: Role.LOAD,
+    }
+    parts = known.layout.parts.by_name
+    roles: dict[str, Role] = {}
+    for branch in branches:
+        if branch.part:
+            source = parts[branch.part].kind in (Kind.VOLTAGE_SOURCE, Kind.CURRENT_SOURCE)
+            roles[branch.part] = Role.SOURCE if source else by_kind[branch.kind]
+    roles |= {name: Role.WINDING for t in transformers for name in t.parts}
+    roles |= {name: Role.WIRE for name in known.layout.wires}
+    roles |= {name: Role.GATE_DRIVE for name in known.region.parts}
+    roles |= known.peripheral.roles
+    roles |= {name: Role.SWITCH for name in known.switches}
+    overridden = {
+        name: known.layout.sheet.overrides[name.lower()].role
+        for name in parts
+        if name.lower() in known.layout.sheet.overrides
+    }
+    roles |= {name: role for name, role in overridden.items() if role is not None}
+    return {name: roles[name] for name in sorted(roles, key=natural_key)}
+
+
+def _given(parts: PartList, sheet: Sheet) -> dict[str, Interval]:
+    given = {}
+    for part in parts.parts:
+        override = sheet.overrides.get(part.name.lower())
+        stated = override and (override.current or override.voltage)
+        if stated:
+            given[part.name] = stated
+    return given
+
+
+def _leg_switching(layout: Layout, sheet: Sheet) -> dict[str, Switching]:
+    by_lower = {net.lower(): merged for net, merged in layout.merged.items()}
+    return {
+        by_lower[leg.midpoint.lower()]: leg.switching
+        for leg in sheet.legs
+        if leg.midpoint.lower() in by_lower
+    }
+
+
+def _kept_assumptions(known: _Sorted) -> tuple[str, ...]:
+    drives = sorted(
+        (
+            part.name
+            for part in known.layout.parts.parts
+            if is_semiconductor(part) and part.name in known.region.parts
+        ),
+        key=natural_key,
+    )
+    return (*known.peripheral.assumed, *(f"{name} read as part of a gate drive" for name in drives))
+
+
+def _not_covered(known: _Sorted, grouping: Grouping) -> tuple[str, ...]:
+    lines = []
+    for part in known.layout.parts.parts:
+        if not is_semiconductor(part) or part.name in known.aside:
+            continue
+        if len(main_nets(known.layout, part)) < 2:
+            lines.append(f"{part.name}: both its ends are on one net, so it is no switch position")
+        elif part.name not in known.switches or part.name in grouping.dangling:
+            lines.append(
+                f"{part.name}: no power current has a way through it and back; if it does carry "
+                f"power, state the port behind it or `set: {{{part.name}: {{role: switch}}}}`"
+            )
+    return tuple(lines)
+
+
+def _unknown_names(parts: PartList, layout: Layout, sheet: Sheet) -> Iterable[Problem]:
+    """Overrides and legs of the sheet that name nothing in the circuit."""
+    names = {part.name.lower(): part.name for part in parts.parts}
+    for lower, override in sheet.overrides.items():
+        if lower not in names:
+            close = difflib.get_close_matches(lower, names, n=1)
+            hint = f"did you mean '{names[close[0]]}'?" if close else "name a part of the netlist"
+            yield error(override.span, f"part '{override.name}' is not in the netlist", hint)
+    nets = {net.lower() for net in layout.merged}
+    for leg in sheet.legs:
+        if leg.midpoint.lower() not in nets:
+            yield error(
+                leg.span,
+                f"net '{leg.midpoint}' is not in the netlist",
+                "name the net of a leg's midpoint",
+            )

@@ -1,0 +1,133 @@
+"""Tell the devices in the power path from those of supplies, signals and indicators.
+
+Two tests decide, and both must pass. Live: both ends are reached from a port through what
+carries power, never through ground. Cycle: taking the device away would not cut the power
+graph in two, so a current can come back (a lone transistor on a sense net has no way back).
+"""
+
+from collections.abc import Iterable
+from itertools import pairwise
+
+import networkx as nx
+
+from rulecheck.parts import Kind, Part
+from rulecheck.stage.layout import SOURCES, Layout, is_semiconductor, main_nets
+from rulecheck.stage.sheet import SheetPort
+from rulecheck.values import Unknown
+
+LOAD_RESISTANCE = 10e3
+"""Ohm; from here on a resistor senses or bleeds (common practice)."""
+FEED_RESISTANCE = 1e3
+"""Ohm; a larger resistor does not carry power from one part of the stage to another."""
+
+
+def find_live_nets(layout: Layout, aside: frozenset[str]) -> frozenset[str]:
+    """Nets reached from the ports (or, without a sheet, from sources and inductors).
+
+    `aside` names the parts that are known to be no part of the power path.
+    """
+    graph = nx.Graph()
+    graph.add_nodes_from(layout.touches)
+    cores: dict[str, str] = {n: core.name for core in layout.parts.cores for n in core.windings}
+    for part in layout.parts.parts:
+        if part.name in aside or part.name in layout.wires:
+            continue
+        ends = _feeding_ends(layout, part)
+        for first, second in pairwise(ends):
+            graph.add_edge(first, second)
+        if part.name in cores and not set(ends) <= layout.grounds:
+            graph.add_edge(("core", cores[part.name]), next(e for e in ends))
+            graph.add_edge(("core", cores[part.name]), ends[-1])
+    graph.remove_nodes_from(layout.grounds)
+    seeds = [net for net in _seeds(layout, aside) if net in graph]
+    reached = set().union(*(nx.node_connected_component(graph, net) for net in seeds), set())
+    return frozenset(net for net in reached if isinstance(net, str)) | layout.grounds
+
+
+def _feeding_ends(layout: Layout, part: Part) -> tuple[str, ...]:
+    if is_semiconductor(part):
+        return main_nets(layout, part)
+    if part.kind is Kind.INDUCTOR:
+        return layout.ends(part)
+    if part.kind is Kind.RESISTOR and not isinstance(part.value, Unknown):
+        return layout.ends(part) if _feeds(layout, part, part.value) else ()
+    return ()
+
+
+def _feeds(layout: Layout, part: Part, ohm: float) -> bool:
+    """A small resistor feeds on what lies behind it only where a device or an inductor does."""
+    return ohm < FEED_RESISTANCE and all(
+        net in layout.port_nets
+        or net in layout.grounds
+        or any(
+            t.part.kind is Kind.INDUCTOR or is_semiconductor(t.part) for t in layout.touches[net]
+        )
+        for net in layout.ends(part)
+    )
+
+
+def _seeds(layout: Layout, aside: frozenset[str]) -> Iterable[str]:
+    if layout.sheet.ports:
+        return sorted(layout.port_nets)
+    kinds = {*SOURCES, Kind.INDUCTOR}
+    chosen = [
+        net
+        for part in layout.parts.parts
+        if part.kind in kinds and part.name not in aside and part.name not in layout.wires
+        for net in layout.ends(part)
+    ]
+    return chosen or sorted(layout.touches)
+
+
+def find_power_devices(
+    layout: Layout, aside: frozenset[str], live: frozenset[str], bulk: frozenset[str]
+) -> frozenset[str]:
+    """Names of the semiconductors through which power current can flow and come back.
+
+    `bulk` names the capacitors that count as a way back.
+    """
+    graph = nx.MultiGraph()
+    for part in layout.parts.parts:
+        if part.name in aside or part.name in layout.wires:
+            continue
+        ends = _carrying_ends(layout, part, bulk)
+        if ends and set(ends) <= live:
+            for first, second in pairwise(ends):
+                graph.add_edge(first, second, key=part.name)
+    for port in layout.sheet.ports:
+        _add_port(graph, layout, port)
+    bridges = set(nx.bridges(graph)) if graph else set()
+    cut = bridges | {(b, a) for a, b in bridges}
+    return frozenset(
+        name
+        for first, second, name in graph.edges(keys=True)
+        if (first, second) not in cut and name in _semiconductors(layout)
+    )
+
+
+def _semiconductors(layout: Layout) -> frozenset[str]:
+    return frozenset(part.name for part in layout.parts.parts if is_semiconductor(part))
+
+
+def _carrying_ends(layout: Layout, part: Part, bulk: frozenset[str]) -> tuple[str, ...]:
+    if is_semiconductor(part):
+        return main_nets(layout, part)
+    if part.kind is Kind.INDUCTOR or part.kind in SOURCES or part.name in bulk:
+        return layout.ends(part)
+    if part.kind is Kind.RESISTOR:
+        known = not isinstance(part.value, Unknown)
+        return layout.ends(part) if not known or _is_load(part) else ()
+    if part.kind is Kind.CONNECTOR:
+        return tuple(dict.fromkeys(layout.net(net) for net in part.nets))
+    return ()
+
+
+def _is_load(part: Part) -> bool:
+    return not isinstance(part.value, Unknown) and part.value < LOAD_RESISTANCE
+
+
+def _add_port(graph: nx.MultiGraph, layout: Layout, port: SheetPort) -> None:
+    by_lower = {net.lower(): merged for net, merged in layout.merged.items()}
+    nets = [by_lower[n.lower()] for n in (*port.nets, port.neutral) if n.lower() in by_lower]
+    for first, second in pairwise(nets):
+        graph.add_edge(first, second, key=f"port/{port.name}")

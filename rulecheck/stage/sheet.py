@@ -1,0 +1,280 @@
+"""Read a stage sheet: quantities checked for their units, every mistake located.
+
+`voltage: 230 V rms` of a two-net port becomes the range -325.27 V ... 325.27 V;
+`draws: 5 A` becomes a current of -5 A out of the port's first net into the stage.
+"""
+
+import math
+import re
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass, field
+from typing import TypeVar
+
+from rulecheck.reading import SourceText, YamlReading, read_yaml
+from rulecheck.reading.quantities import as_interval, as_number
+from rulecheck.stage.sheet_file import (
+    LegSwitchingEntry,
+    OverrideEntry,
+    PortEntry,
+    SheetFile,
+    SwitchingEntry,
+)
+from rulecheck.stage.stage import PortKind, Role, Switching
+from rulecheck.values import Dimension, Interval, Problem, Span, error
+
+Path = tuple[str | int, ...]
+Kept = TypeVar("Kept", float, Interval)
+_ALTERNATING = re.compile(r"\s*(.*?)\s+(peak|rms)\s*\Z", re.IGNORECASE)
+ROLES = {role.value.replace(" ", "-"): role for role in Role} | {
+    "bulk": Role.BULK_CAPACITOR,
+    "resistor": Role.LOAD,
+}
+
+
+@dataclass(frozen=True, slots=True)
+class SheetPort:
+    """A port with quantities read and nets as written; None is what the sheet leaves open."""
+
+    name: str
+    kind: PortKind
+    nets: tuple[str, ...]
+    neutral: str
+    voltage: Interval | None
+    current: Interval | None
+    power: Interval | None
+    frequency: Interval | None
+    least_amplitude: float
+    draws: bool
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class Override:
+    name: str
+    current: Interval | None
+    voltage: Interval | None
+    role: Role | None
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class LegSheet:
+    midpoint: str
+    switching: Switching
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class Sheet:
+    file: str = ""
+    ports: tuple[SheetPort, ...] = ()
+    switching: Switching = field(default_factory=Switching)
+    legs: tuple[LegSheet, ...] = ()
+    efficiency: float = 1.0
+    parts: tuple[str, ...] = ()
+    overrides: Mapping[str, Override] = field(default_factory=dict)
+    """By lower-case element name."""
+
+
+@dataclass(frozen=True, slots=True)
+class SheetReading:
+    """The sheet as far as it could be read, and every mistake in it."""
+
+    sheet: Sheet
+    problems: tuple[Problem, ...]
+
+
+EMPTY_SHEET = Sheet()
+
+
+@dataclass(slots=True)
+class _Reader:
+    """Collects the problems of one file while its entries are converted."""
+
+    marks: YamlReading[SheetFile]
+    problems: list[Problem] = field(default_factory=list)
+
+    def fail(self, path: Path, what: str, remedy: str) -> None:
+        self.problems.append(error(self.marks.span(path), what, remedy))
+
+    def number(self, raw: object, dimension: Dimension, path: Path) -> float | None:
+        if raw is None:
+            return None
+        value = as_number(raw, dimension, self.marks.span(path))
+        return self._kept(value)
+
+    def interval(self, raw: object, dimension: Dimension, path: Path) -> Interval | None:
+        if raw is None:
+            return None
+        value = as_interval(raw, dimension, self.marks.span(path))
+        return self._kept(value)
+
+    def _kept(self, value: Kept | Problem) -> Kept | None:
+        if isinstance(value, Problem):
+            self.problems.append(value)
+            return None
+        return value
+
+
+def read_sheet(source: SourceText) -> SheetReading:
+    """Read a `*.stage.yaml`; the sheet holds what could be read even where problems remain."""
+    marks = read_yaml(source, SheetFile)
+    if marks.value is None:
+        return SheetReading(Sheet(file=source.file), marks.problems)
+    reader = _Reader(marks)
+    sheet = _sheet(source.file, marks.value, reader)
+    return SheetReading(sheet, (*marks.problems, *reader.problems))
+
+
+def _sheet(file: str, entries: SheetFile, reader: _Reader) -> Sheet:
+    legs = {**entries.switching.legs, **entries.legs}
+    efficiency = reader.number(entries.efficiency, Dimension.NUMBER, ("efficiency",))
+    if efficiency is not None and not 0.0 < efficiency <= 1.0:
+        reader.fail(
+            ("efficiency",), f"efficiency {efficiency:g} is not above 0 and up to 1", "write 0.95"
+        )
+        efficiency = None
+    return Sheet(
+        file,
+        tuple(_port(name, entry, reader) for name, entry in entries.ports.items()),
+        _switching(entries.switching, ("switching",), reader),
+        tuple(_leg(net, entry, entries, reader) for net, entry in legs.items()),
+        efficiency or 1.0,
+        tuple(entries.parts),
+        {name.lower(): _override(name, entry, reader) for name, entry in entries.set.items()},
+    )
+
+
+def _leg(net: str, entry: LegSwitchingEntry, entries: SheetFile, reader: _Reader) -> LegSheet:
+    path: Path = ("legs", net) if net in entries.legs else ("switching", "legs", net)
+    return LegSheet(net, _switching(entry, path, reader), reader.marks.span(path))
+
+
+def _switching(entry: SwitchingEntry | LegSwitchingEntry, path: Path, reader: _Reader) -> Switching:
+    return Switching(
+        reader.number(entry.frequency, Dimension.FREQUENCY, (*path, "frequency")),
+        reader.number(entry.dead_time, Dimension.TIME, (*path, "dead-time")),
+        reader.number(entry.edge, Dimension.TIME, (*path, "edge")),
+    )
+
+
+def _override(name: str, entry: OverrideEntry, reader: _Reader) -> Override:
+    path: Path = ("set", name)
+    current, _ = _alternating(entry.current, Dimension.CURRENT, (*path, "current"), reader)
+    voltage, _ = _alternating(entry.voltage, Dimension.VOLTAGE, (*path, "voltage"), reader)
+    role = None
+    if entry.role is not None:
+        role = ROLES.get(entry.role.lower().replace(" ", "-"))
+        if role is None:
+            known = ", ".join(sorted(ROLES))
+            reader.fail((*path, "role"), f"role '{entry.role}' is not known", f"use one of {known}")
+    return Override(name, current, voltage, role, reader.marks.span(path))
+
+
+def _port(name: str, entry: PortEntry, reader: _Reader) -> SheetPort:
+    path: Path = ("ports", name)
+    nets = _port_nets(entry, path, reader)
+    voltage, alternating_voltage = _port_voltage(entry, path, reader)
+    current, alternating_current = _port_current(entry, path, reader)
+    frequency = reader.interval(entry.frequency, Dimension.FREQUENCY, (*path, "frequency"))
+    alternating = (
+        alternating_voltage or alternating_current or (frequency is not None and frequency.high > 0)
+    )
+    if entry.phases is not None:
+        kind = PortKind.PHASES
+    else:
+        kind = PortKind.AC if alternating else PortKind.DC
+    least = 0.0
+    if kind is not PortKind.DC:
+        least = max(voltage.low, 0.0) if voltage is not None else 0.0
+        voltage, current = _amplitude(voltage), _amplitude(current)
+    power = reader.interval(entry.power, Dimension.POWER, (*path, "power"))
+    power = -power if power is not None else None
+    span = reader.marks.span(path)
+    return SheetPort(
+        name,
+        kind,
+        nets,
+        "" if entry.neutral is None else str(entry.neutral),
+        voltage,
+        current,
+        power,
+        frequency,
+        least,
+        entry.draws is not None,
+        span,
+    )
+
+
+def _amplitude(value: Interval | None) -> Interval | None:
+    """An AC quantity takes every value up to its largest amplitude, both ways."""
+    return None if value is None else Interval(-value.magnitude, value.magnitude)
+
+
+def _port_nets(entry: PortEntry, path: Path, reader: _Reader) -> tuple[str, ...]:
+    if (entry.between is None) == (entry.phases is None):
+        reader.fail(
+            path,
+            f"port '{path[-1]}' needs either `between` or `phases`",
+            "write `between: [PLUS, MINUS]` or `phases: [U, V, W]`",
+        )
+        return ()
+    if entry.between is not None and len(entry.between) != 2:
+        reader.fail(
+            (*path, "between"), "`between` takes two nets", "write `between: [PLUS, MINUS]`"
+        )
+        return ()
+    if entry.phases is not None and len(entry.phases) < 2:
+        reader.fail((*path, "phases"), "`phases` takes two nets or more", "write [U, V, W]")
+        return ()
+    return tuple(str(net) for net in entry.between or entry.phases or ())
+
+
+def _port_voltage(entry: PortEntry, path: Path, reader: _Reader) -> tuple[Interval | None, bool]:
+    if entry.line_voltage is None:
+        return _alternating(entry.voltage, Dimension.VOLTAGE, (*path, "voltage"), reader)
+    where = (*path, "line-voltage")
+    if entry.voltage is not None:
+        reader.fail(where, "both `voltage` and `line-voltage` are given", "keep one of them")
+    if entry.phases is None:
+        reader.fail(where, "`line-voltage` belongs to a port with `phases`", "write `voltage`")
+    line, _ = _alternating(entry.line_voltage, Dimension.VOLTAGE, where, reader)
+    count = len(entry.phases or ()) or 3
+    # line to line of neighbouring phases of a symmetrical set of n: 2 sin(pi/n) times the phase
+    ratio = 2.0 * math.sin(math.pi / count)
+    return (None if line is None else line.scaled(1.0 / ratio)), True
+
+
+def _port_current(entry: PortEntry, path: Path, reader: _Reader) -> tuple[Interval | None, bool]:
+    if entry.supplies is not None and entry.draws is not None:
+        reader.fail(
+            (*path, "draws"),
+            "both `supplies` and `draws` are given",
+            "keep one; `supplies: [-80 A, 80 A]` says both directions",
+        )
+    key = "supplies" if entry.supplies is not None else "draws"
+    raw = entry.supplies if entry.supplies is not None else entry.draws
+    current, alternating = _alternating(raw, Dimension.CURRENT, (*path, key), reader)
+    if current is not None and key == "draws":
+        current = -current
+    return current, alternating
+
+
+def _alternating(
+    raw: object, dimension: Dimension, path: Path, reader: _Reader
+) -> tuple[Interval | None, bool]:
+    """A quantity or range in which `peak` or `rms` may stand; rms becomes its peak."""
+    if raw is None:
+        return None, False
+    items: Sequence[object] = raw if isinstance(raw, list) else [raw]
+    matches = [_ALTERNATING.match(item) if isinstance(item, str) else None for item in items]
+    if not any(matches):
+        return reader.interval(raw, dimension, path), False
+    values: list[float] = []
+    for item, match in zip(items, matches, strict=True):
+        number = reader.number(match[1] if match else item, dimension, path)
+        if number is None:
+            return None, True
+        rms = match is not None and match[2].lower() == "rms"
+        values.append(number * math.sqrt(2.0) if rms else number)
+    return Interval(min(values), max(values)), True

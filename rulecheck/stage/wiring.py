@@ -1,0 +1,97 @@
+"""Merge nets that are one node for topology.
+
+    BUS - R_shunt 5 mohm - BUS_R - Q1      becomes      BUS - Q1
+
+Zero-volt sources, fuses, beads, resistors of 0.1 ohm and less, and inductors of 50 nH and less
+are wires here, unless the sheet gives the part another role. They stay parts for the rules.
+"""
+
+from collections.abc import Iterable, Mapping
+from dataclasses import dataclass
+
+from rulecheck.parts import Kind, Part, PartList
+from rulecheck.stage.sheet import Sheet
+from rulecheck.stage.stage import Role
+from rulecheck.values import Unknown, natural_key, write_quantity
+
+WIRE_RESISTANCE = 0.1
+"""Ohm; common practice: shunts, jumpers and beads are below it, loads above."""
+WIRE_INDUCTANCE = 50e-9
+"""Henry; common practice: parasitics of leads and planes."""
+
+
+@dataclass(frozen=True, slots=True)
+class Wiring:
+    """Net -> the net that stands for it, the parts that act as wires, and why."""
+
+    merged: Mapping[str, str]
+    wires: tuple[str, ...]
+    assumed: tuple[str, ...]
+
+
+def merge_wires(parts: PartList, sheet: Sheet) -> Wiring:
+    wires: list[Part] = []
+    assumed: list[str] = []
+    for part in parts.parts:
+        reason = _why_wire(part, sheet)
+        if reason and len(part.nets) == 2:
+            wires.append(part)
+            assumed.append(f"{part.name} read as a wire ({reason})")
+    preferred = _preferred_nets(sheet, parts)
+    merged = _merge(parts, wires, preferred)
+    return Wiring(merged, tuple(p.name for p in wires), tuple(assumed))
+
+
+def _why_wire(part: Part, sheet: Sheet) -> str:
+    override = sheet.overrides.get(part.name.lower())
+    if override is not None and override.role is not None:
+        return "role of the stage sheet" if override.role is Role.WIRE else ""
+    if override is not None and (override.current or override.voltage):
+        return ""
+    if part.kind is Kind.FUSE:
+        return "fuse"
+    if isinstance(part.value, Unknown) or part.waveform is not None:
+        return ""
+    limits = {
+        Kind.RESISTOR: (WIRE_RESISTANCE, "ohm"),
+        Kind.INDUCTOR: (WIRE_INDUCTANCE, "H"),
+        Kind.VOLTAGE_SOURCE: (0.0, "V"),
+    }
+    limit, unit = limits.get(part.kind, (-1.0, ""))
+    if abs(part.value) > limit:
+        return ""
+    if part.kind is Kind.VOLTAGE_SOURCE:
+        return "zero-volt source"
+    return write_quantity(part.value, unit)
+
+
+def _preferred_nets(sheet: Sheet, parts: PartList) -> dict[str, int]:
+    """Rank of the nets whose names stay when nets merge: ports first, then ground."""
+    names = [net for port in sheet.ports for net in (*port.nets, port.neutral) if net]
+    names += [leg.midpoint for leg in sheet.legs]
+    ranks = {name.lower(): rank for rank, name in enumerate(names)}
+    ranks.setdefault(parts.ground.lower(), len(ranks))
+    return ranks
+
+
+def _merge(parts: PartList, wires: Iterable[Part], preferred: Mapping[str, int]) -> dict[str, str]:
+    usage: dict[str, int] = {}
+    for part in parts.parts:
+        for net in part.nets:
+            usage[net] = usage.get(net, 0) + 1
+    parent = {net: net for net in usage}
+
+    def root(net: str) -> str:
+        while parent[net] != net:
+            parent[net] = parent[parent[net]]
+            net = parent[net]
+        return net
+
+    def rank(net: str) -> tuple[object, ...]:
+        return (preferred.get(net.lower(), len(preferred)), -usage[net], natural_key(net))
+
+    for wire in wires:
+        kept, *others = sorted({root(net) for net in wire.nets}, key=rank)
+        for other in others:
+            parent[other] = kept
+    return {net: root(net) for net in sorted(usage)}
