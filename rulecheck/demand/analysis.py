@@ -1,10 +1,16 @@
 """The whole procedure on one stage, step by step: voltages, topology, states, currents, ranges."""
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, replace
 from itertools import product
 
-from rulecheck.demand.currents import CurrentRange, Means, derive_means, range_of_current
+from rulecheck.demand.currents import (
+    CurrentRange,
+    Means,
+    Surroundings,
+    derive_means,
+    range_of_current,
+)
 from rulecheck.demand.means import collect_unknowns, current_names
 from rulecheck.demand.power import PortCurrents, find_port_currents
 from rulecheck.demand.readings import Failure, Reading, failures, inequalities
@@ -43,7 +49,15 @@ class Worked:
     connecting: frozenset[int]
     """Clusters without a stiff current, whose states connect voltages."""
     means: Means
-    cases_of: Mapping[str, Sequence[Case]]
+
+
+@dataclass(frozen=True, slots=True)
+class _Routed:
+    """Carriers with their routes, and by carrier the variables and the cases that matter to it."""
+
+    routes: Sequence[tuple[Carrier, Route]]
+    local: Mapping[str, frozenset[str]]
+    cases: Mapping[str, Sequence[Case]]
 
 
 def work_out(stage: Stage) -> Worked:
@@ -62,9 +76,10 @@ def work_out(stage: Stage) -> Worked:
     box = replace(box, means=means.forms)
     names = _names_by_cluster(topology, states)
     local = {c.name: _names_of(c, r, names, box, means) for c, r in routes}
-    cases_of = {name: cases_for(found, by_port) for name, found in local.items()}
-    reading, failed = _choose_reading(topology, states, routes, box, cases_of, local)
-    currents = _currents(stage, routes, means, box, reading, cases_of, local)
+    cases = {name: cases_for(found, by_port) for name, found in local.items()}
+    routed = _Routed(routes, local, cases)
+    reading, failed = _choose_reading(topology, states, routed, box)
+    currents = _currents(stage, routed, means, box, reading)
     box = _with_currents(box, currents)
     return Worked(
         stage,
@@ -79,7 +94,6 @@ def work_out(stage: Stage) -> Worked:
         too_large,
         connecting,
         means,
-        cases_of,
     )
 
 
@@ -213,92 +227,81 @@ def _names_of(
 
 
 def _choose_reading(
-    topology: Topology,
-    states: Sequence[Sequence[RawState]],
-    routes: Sequence[tuple[Carrier, Route]],
-    box: Box,
-    cases_of: Mapping[str, Sequence[Case]],
-    local: Mapping[str, frozenset[str]],
+    topology: Topology, states: Sequence[Sequence[RawState]], routed: _Routed, box: Box
 ) -> tuple[Reading, list[Failure]]:
     """Free paths limit the control where the stage still works so; elsewhere all legal states."""
     reading = Reading(topology.clusters, states, frozenset(range(len(states))))
-    failed = _failures(reading, routes, box, cases_of, local)
+    failed = _failures(reading, routed, box)
     if failed:
         reading = reading.relaxed(index for failure in failed for index in failure.clusters)
-        failed = _failures(reading, routes, box, cases_of, local)
+        failed = _failures(reading, routed, box)
     return reading, failed
 
 
-def _failures(
-    reading: Reading,
-    routes: Sequence[tuple[Carrier, Route]],
-    box: Box,
-    cases_of: Mapping[str, Sequence[Case]],
-    local: Mapping[str, frozenset[str]],
-) -> list[Failure]:
+def _failures(reading: Reading, routed: _Routed, box: Box) -> list[Failure]:
     found = []
-    for carrier, route in routes:
+    for carrier, route in routed.routes:
         if carrier.port and not route.steps:
             continue
-        mine = box.only(local[carrier.name])
-        found += failures(reading, [(carrier, route)], mine, cases_of)
+        mine = box.only(routed.local[carrier.name])
+        found += failures(reading, [(carrier, route)], mine, routed.cases)
     return found
 
 
 def _currents(
-    stage: Stage,
-    routes: Sequence[tuple[Carrier, Route]],
-    means: Means,
-    box: Box,
-    reading: Reading,
-    cases_of: Mapping[str, Sequence[Case]],
-    local: Mapping[str, frozenset[str]],
+    stage: Stage, routed: _Routed, means: Means, box: Box, reading: Reading
 ) -> dict[str, CurrentRange]:
     given = {name_of(b): b.given for b in stage.branches if b.given is not None}
     alternating = alternating_parts(stage)
     found: dict[str, CurrentRange] = {}
-    for carrier, route in routes:
+    for carrier, route in routed.routes:
         stated = given.get(carrier.name)
         if stated is not None:
             found[carrier.name] = CurrentRange(stated, 0.0, "stated", True)
             continue
         if carrier.port:
             continue
-        found[carrier.name] = range_of_current(
-            carrier,
-            route,
-            means,
-            box.only(local[carrier.name]),
-            reading,
-            cases_of[carrier.name],
+        around = Surroundings(
             stage,
+            reading,
+            route,
+            box.only(routed.local[carrier.name]),
+            routed.cases[carrier.name],
             carrier.part in alternating,
         )
+        found[carrier.name] = range_of_current(carrier, means, around)
     return found
+
+
+_NO_DC = (["inductor", "winding"], ["capacitor", "inductor"])
+"""What stands alone on a net where an inductor ends, so that the inductor carries no DC."""
 
 
 def alternating_parts(stage: Stage) -> frozenset[str]:
     """Inductors in series with a winding or with a capacitor alone: they carry no DC."""
     at_net: dict[str, list[tuple[str, str]]] = {}
+    for kind, name, nets in _touching(stage):
+        for net in nets:
+            at_net.setdefault(net, []).append((kind, name))
+    return frozenset(
+        name
+        for touching in at_net.values()
+        if sorted(kind for kind, _ in touching) in _NO_DC
+        for kind, name in touching
+        if kind == "inductor"
+    )
+
+
+def _touching(stage: Stage) -> Iterator[tuple[str, str, tuple[str, str]]]:
+    kinds = {BranchKind.VOLTAGE: "capacitor", BranchKind.CURRENT: "inductor"}
     for branch in stage.branches:
-        kind = "capacitor" if branch.kind is BranchKind.VOLTAGE and branch.part else "other"
-        if branch.kind is BranchKind.CURRENT and branch.part:
-            kind = "inductor"
-        for net in (branch.start, branch.end):
-            at_net.setdefault(net, []).append((kind, branch.part))
+        kind = kinds.get(branch.kind, "load") if branch.part else "port"
+        yield kind, branch.part, (branch.start, branch.end)
     for core in stage.transformers:
         for pair in core.windings:
-            for net in pair:
-                at_net.setdefault(net, []).append(("winding", core.name))
+            yield "winding", core.name, pair
     for position in stage.positions:
-        for net in (position.start, position.end):
-            at_net.setdefault(net, []).append(("position", position.name))
-    found = set()
-    for touching in at_net.values():
-        kinds = sorted(kind for kind, _ in touching)
-        if kinds in (["inductor", "winding"], ["capacitor", "inductor"]):
-            found |= {name for kind, name in touching if kind == "inductor"}
-    return frozenset(found)
+        yield "position", position.name, (position.start, position.end)
 
 
 def _with_currents(box: Box, currents: Mapping[str, CurrentRange]) -> Box:

@@ -1,4 +1,4 @@
-"""Find the demand of every position: work the stage out, try other readings, assemble the answer."""
+"""Find the demand of every position: work the stage out, try other readings, assemble."""
 
 from collections.abc import Iterable
 from dataclasses import replace
@@ -54,7 +54,8 @@ def find_demands(stage: Stage) -> Demands:
 
 def _first_that_works(stage: Stage) -> tuple[Worked, tuple[str, ...]]:
     worked = work_out(stage)
-    best, assumed = worked, ()
+    best = worked
+    assumed: tuple[str, ...] = ()
     followers = _followers(worked)
     if followers:
         followed, sentences = without_followers(stage, followers)

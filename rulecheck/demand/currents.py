@@ -103,32 +103,41 @@ class CurrentRange:
     """False where not even the sign is known."""
 
 
-def range_of_current(
-    carrier: Carrier,
-    route: Route | None,
-    means: Means,
-    box: Box,
-    reading: Reading,
-    cases: Sequence[Case],
-    stage: Stage,
-    alternates: bool,
-) -> CurrentRange:
+@dataclass(frozen=True, slots=True)
+class Surroundings:
+    """What decides one carrier's range besides its mean."""
+
+    stage: Stage
+    reading: Reading
+    route: Route
+    box: Box
+    cases: Sequence[Case]
+    alternates: bool
+    """It carries no DC: a winding or a capacitor is in series with it."""
+
+    def keeps(self, name: str, span: Interval, positive: bool) -> bool:
+        """True where a current of that sign, within the span, can be kept."""
+        wide = self.box.with_ranges({name: span})
+        return bool(self.route.steps) and sustainable(
+            self.reading, self.route, wide, self.cases, name, positive
+        )
+
+
+def range_of_current(carrier: Carrier, means: Means, around: Surroundings) -> CurrentRange:
     """The whole instantaneous range of one carrier that nobody states."""
-    ripple, swing_note = _ripple(carrier, route, box, reading, cases, stage)
+    ripple, note = _ripple(carrier, around)
     form = means.forms.get(carrier.name)
     if form is not None:
-        mean = box.range_of(form)
+        mean = around.box.range_of(form)
         origin = means.origins[carrier.name]
     elif carrier.name in means.rectified:
-        mean = _hull(box, means.rectified[carrier.name])
+        mean = _hull(around.box, means.rectified[carrier.name])
         origin = f"mean, rectified: {means.rectified[carrier.name][0].text()} or its negative"
     else:
-        return _without_mean(carrier, route, box, reading, cases, ripple, alternates)
+        return _without_mean(carrier, ripple, around)
     span = Interval(mean.low - ripple, mean.high + ripple)
-    note = f", +- {write_quantity(ripple, 'A')} of ripple" if ripple else swing_note
-    return _clipped(
-        carrier, route, box, reading, cases, CurrentRange(span, ripple, origin + note, True)
-    )
+    note = f", +- {write_quantity(ripple, 'A')} of ripple" if ripple else note
+    return _clipped(carrier, around, CurrentRange(span, ripple, origin + note, True))
 
 
 def _hull(box: Box, forms: Sequence[AffineForm]) -> Interval:
@@ -138,92 +147,57 @@ def _hull(box: Box, forms: Sequence[AffineForm]) -> Interval:
     return span
 
 
-def _ripple(
-    carrier: Carrier,
-    route: Route | None,
-    box: Box,
-    reading: Reading,
-    cases: Sequence[Case],
-    stage: Stage,
-) -> tuple[float, str]:
+def _ripple(carrier: Carrier, around: Surroundings) -> tuple[float, str]:
     """Half the peak-to-peak ripple in amperes, or why none is included."""
-    if route is None or not route.steps:
+    if not around.route.steps:
         return 0.0, ""
-    frequency = _frequency(route, reading, stage)
+    frequency = _frequency(around)
     if not carrier.inductance or not frequency:
         missing = "inductance" if not carrier.inductance else "switching frequency"
         return 0.0, f", ripple not included: the {missing} is not stated"
-    volts = swing(reading, route, [case.narrow(box) for case in cases])
+    boxes = [case.narrow(around.box) for case in around.cases]
+    volts = swing(around.reading, around.route, boxes)
     return volts / (carrier.inductance * frequency) / 2, ""
 
 
-def _frequency(route: Route, reading: Reading, stage: Stage) -> float | None:
+def _frequency(around: Surroundings) -> float | None:
     """The lowest switching frequency of the legs on the route, which gives the largest ripple."""
     nets = {
         net
-        for step in route.steps
-        for link in reading.clusters[step.cluster].positions
+        for step in around.route.steps
+        for link in around.reading.clusters[step.cluster].positions
         if link.position
         for net in (link.position.start, link.position.end)
     }
     own = [
         switching.frequency
-        for net, switching in stage.leg_switching.items()
+        for net, switching in around.stage.leg_switching.items()
         if net in nets and switching.frequency
     ]
-    return min(own) if own else stage.switching.frequency
+    return min(own) if own else around.stage.switching.frequency
 
 
-def _without_mean(
-    carrier: Carrier,
-    route: Route | None,
-    box: Box,
-    reading: Reading,
-    cases: Sequence[Case],
-    ripple: float,
-    alternates: bool,
-) -> CurrentRange:
+def _without_mean(carrier: Carrier, ripple: float, around: Surroundings) -> CurrentRange:
     """A magnetising current is its ripple; another current may still have a known sign."""
-    wide = box.with_ranges({carrier.name: EVERYTHING})
-    signs = [
-        route is not None
-        and bool(route.steps)
-        and sustainable(reading, route, wide, cases, carrier.name, positive)
-        for positive in (True, False)
-    ]
-    if carrier.name.startswith("i(magnetising") and ripple > 0.0 and any(signs):
-        both = all(signs)
-        low = -ripple if both else 0.0 if signs[0] else -2 * ripple
-        high = ripple if both else 2 * ripple if signs[0] else 0.0
+    up, down = (around.keeps(carrier.name, EVERYTHING, positive) for positive in (True, False))
+    if carrier.name.startswith("i(magnetising") and ripple > 0.0 and (up or down):
+        low = -ripple if up and down else 0.0 if up else -2 * ripple
+        high = ripple if up and down else 2 * ripple if up else 0.0
         return CurrentRange(Interval(low, high), 0.0, "the ripple of a flux that balances", True)
-    if signs[0] != signs[1]:
-        half = Interval(0.0, EVERYTHING.high) if signs[0] else Interval(EVERYTHING.low, 0.0)
+    if up != down:
+        half = EVERYTHING.part_of_sign(up) or EVERYTHING
         return CurrentRange(half, 0.0, "only this sign can be kept; magnitude not stated", True)
-    why = "alternates; magnitude not stated" if alternates else "nobody states it"
-    return CurrentRange(EVERYTHING, 0.0, why, alternates)
+    why = "alternates; magnitude not stated" if around.alternates else "nobody states it"
+    return CurrentRange(EVERYTHING, 0.0, why, around.alternates)
 
 
-def _clipped(
-    carrier: Carrier,
-    route: Route | None,
-    box: Box,
-    reading: Reading,
-    cases: Sequence[Case],
-    found: CurrentRange,
-) -> CurrentRange:
+def _clipped(carrier: Carrier, around: Surroundings, found: CurrentRange) -> CurrentRange:
     """Discontinuous conduction: where no state can keep a sign, the current stops at zero."""
     span = found.range
-    if route is None or not route.steps or not span.low < 0.0 < span.high:
+    if not around.route.steps or not span.low < 0.0 < span.high:
         return found
-    wide = box.with_ranges({carrier.name: span})
-    up, down = (
-        sustainable(reading, route, wide, cases, carrier.name, positive)
-        for positive in (True, False)
-    )
-    if up and not down:
-        stopped = "; a diode stops it at zero"
-        return replace(found, range=Interval(0.0, span.high), origin=found.origin + stopped)
-    if down and not up:
-        stopped = "; a diode stops it at zero"
-        return replace(found, range=Interval(span.low, 0.0), origin=found.origin + stopped)
-    return found
+    up, down = (around.keeps(carrier.name, span, positive) for positive in (True, False))
+    half = span.part_of_sign(up)
+    if up == down or half is None:
+        return found
+    return replace(found, range=half, origin=f"{found.origin}; a diode stops it at zero")

@@ -162,7 +162,7 @@ def _free_edges(positions: Sequence[Link]) -> Iterator[tuple[str, str, Position]
 
 
 def _shorts_in(worked: Worked, positions: Sequence[Link]) -> Iterator[FreeShort]:
-    graph = nx.DiGraph()
+    graph: nx.DiGraph[str] = nx.DiGraph()
     for tail, head, position in _free_edges(positions):
         graph.add_edge(tail, head, position=position.name)
     for tail in sorted(graph):
@@ -175,7 +175,7 @@ def _shorts_in(worked: Worked, positions: Sequence[Link]) -> Iterator[FreeShort]
                 yield short
 
 
-def _short_along(worked: Worked, graph: nx.DiGraph, path: Sequence[str]) -> FreeShort | None:
+def _short_along(worked: Worked, graph: "nx.DiGraph[str]", path: Sequence[str]) -> FreeShort | None:
     voltage = worked.voltages.potentials.difference(path[0], path[-1])
     if voltage is None or voltage.is_zero:
         return None

@@ -87,7 +87,7 @@ def _midpoints(cluster: Cluster, worked: Worked) -> list[str]:
 
 
 def _leg(worked: Worked, index: int, cluster: Cluster, midpoint: str) -> Leg | None:
-    graph = nx.MultiGraph()
+    graph: nx.MultiGraph[str] = nx.MultiGraph()
     for link in cluster.positions:
         if link.position:
             graph.add_edge(link.position.start, link.position.end, key=link.name)
@@ -111,7 +111,7 @@ def rails_named(rails: Sequence[str], kind: str) -> tuple[str, ...]:
     return tuple(rails) if kind == "selector leg" else (rails[0], rails[-1])
 
 
-def _rails(worked: Worked, graph: nx.MultiGraph, midpoint: str) -> list[str]:
+def _rails(worked: Worked, graph: "nx.MultiGraph[str]", midpoint: str) -> list[str]:
     """Nets on one rigid island that positions lead to, highest mean potential first."""
     rigid = worked.voltages.potentials
     component = nx.node_connected_component(graph, midpoint)
@@ -134,7 +134,9 @@ def _rails(worked: Worked, graph: nx.MultiGraph, midpoint: str) -> list[str]:
     return sorted(most, key=lambda net: -mean(net))
 
 
-def _chain(graph: nx.MultiGraph, rail: str, midpoint: str, rails: Sequence[str]) -> tuple[str, ...]:
+def _chain(
+    graph: "nx.MultiGraph[str]", rail: str, midpoint: str, rails: Sequence[str]
+) -> tuple[str, ...]:
     """Positions between a rail and the midpoint that pass no other rail."""
     kept = graph.subgraph(set(graph.nodes) - (set(rails) - {rail}))
     if rail not in kept or not nx.has_path(kept, rail, midpoint):
@@ -144,7 +146,7 @@ def _chain(graph: nx.MultiGraph, rail: str, midpoint: str, rails: Sequence[str])
     return tuple(sorted(names, key=natural_key))
 
 
-def _exclusive(graph: nx.MultiGraph, midpoint: str, rails: Sequence[str]) -> set[str]:
+def _exclusive(graph: "nx.MultiGraph[str]", midpoint: str, rails: Sequence[str]) -> set[str]:
     """Positions of this midpoint: reached without passing a rail."""
     kept = graph.subgraph(set(graph.nodes) - set(rails))
     inner = nx.node_connected_component(kept, midpoint)
@@ -216,7 +218,7 @@ def _meeting(
 ) -> list[tuple[str, ...]]:
     rigid = worked.voltages.potentials
     barred = {rigid.root(net) for net in rails}
-    graph = nx.Graph()
+    graph: nx.Graph[str] = nx.Graph()
     graph.add_nodes_from(midpoints)
     stage = worked.stage
     pairs = [(b.start, b.end) for b in stage.branches]

@@ -86,13 +86,13 @@ def find_means(unknowns: Unknowns) -> Mapping[str, AffineForm]:
 
     Linear in the size of the graph: bridges, then sums over the tree of what they part.
     """
-    graph = nx.MultiGraph()
+    graph: nx.MultiGraph[str] = nx.MultiGraph()
     for name, start, end in unknowns.edges:
         graph.add_edge(start, end, key=name)
     for start, end, _ in unknowns.known:
         graph.add_nodes_from((start, end))
     cut = {frozenset(pair) for pair in nx.bridges(graph)}
-    solid = nx.Graph()
+    solid: nx.Graph[str] = nx.Graph()
     solid.add_nodes_from(graph)
     solid.add_edges_from(
         (a, b) for a, b in graph.edges() if frozenset((a, b)) not in cut and a != b
@@ -106,7 +106,7 @@ def find_means(unknowns: Unknowns) -> Mapping[str, AffineForm]:
     for start, end, form in unknowns.known:
         into.setdefault(block_of[start], []).append(-form)
         into.setdefault(block_of[end], []).append(form)
-    tree = nx.Graph()
+    tree: nx.Graph[int] = nx.Graph()
     tree.add_nodes_from(block_of.values())
     bridges = [edge for edge in unknowns.edges if frozenset(edge[1:]) in cut]
     tree.add_edges_from((block_of[start], block_of[end]) for _, start, end in bridges)
@@ -114,7 +114,7 @@ def find_means(unknowns: Unknowns) -> Mapping[str, AffineForm]:
 
 
 def _through_bridges(
-    tree: nx.Graph,
+    tree: "nx.Graph[int]",
     bridges: Sequence[tuple[str, str, str]],
     block: Callable[[str], int],
     into: Mapping[int, Sequence[AffineForm]],

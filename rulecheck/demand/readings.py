@@ -22,7 +22,7 @@ _NO_CURRENT = 1e-5
 
 @dataclass(frozen=True, slots=True)
 class Failure:
-    """A carrier that cannot see voltage of both signs in some case, so its current would run off."""
+    """A carrier that in some case sees voltage of one sign only: its current would run off."""
 
     carrier: Carrier
     case: Case

@@ -109,7 +109,7 @@ def _largest(levels: Sequence[Level], box: Box, neighbours: bool) -> float:
 def _repeats(levels: Sequence[Level], volts: Grid, up: Grid) -> Grid:
     """How many different gate patterns make the upper level: each comes once a period."""
     close = np.abs(volts - up) < 1e-6 * np.maximum(1.0, up)
-    first: Mapping[tuple[str, ...], int] = {l.gates: i for i, l in enumerate(levels)}
+    first: Mapping[tuple[str, ...], int] = {level.gates: i for i, level in enumerate(levels)}
     total = np.zeros(up.shape)
     for gates in first:
         mine = [i for i, level in enumerate(levels) if level.gates == gates]

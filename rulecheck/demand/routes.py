@@ -8,7 +8,7 @@ from dataclasses import dataclass, replace
 
 import networkx as nx
 
-from rulecheck.demand.topology import Topology, magnetising_name
+from rulecheck.demand.topology import Node, Topology, magnetising_name
 from rulecheck.demand.voltages import name_of
 from rulecheck.stage import Branch, BranchKind, Transformer
 from rulecheck.values import AffineForm
@@ -68,7 +68,7 @@ def find_carriers(
 class _Forest:
     """Parents and depths of the forest of islands and clusters, so that paths cost their length."""
 
-    def __init__(self, forest: nx.Graph) -> None:
+    def __init__(self, forest: "nx.Graph[Node]") -> None:
         self.parent: dict[object, object] = {}
         self.depth: dict[object, int] = {}
         self.tree: dict[object, object] = {}

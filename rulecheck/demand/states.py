@@ -46,9 +46,9 @@ def find_states(cluster: Cluster, laws: Laws) -> tuple[RawState, ...]:
     found = []
     for on in _without_shorts(cluster, laws):
         solution = solve_state(cluster, frozenset(on))
-        if all(laws.vanishes(form) for form in solution.contradictions):
-            if not _idle(on, solution, laws):
-                found.append(RawState(on, solution))
+        legal = all(laws.vanishes(form) for form in solution.contradictions)
+        if legal and not _idle(on, solution, laws):
+            found.append(RawState(on, solution))
     return tuple(found)
 
 

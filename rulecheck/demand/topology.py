@@ -9,14 +9,19 @@ Kirchhoff's law on the branches of that side.
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 from itertools import pairwise
+from typing import cast
 
 import networkx as nx
 
 from rulecheck.demand.offsets import Offsets
 from rulecheck.demand.ties import Ties, build_ties
+from rulecheck.demand.unions import Unions
 from rulecheck.demand.voltages import name_of
 from rulecheck.stage import Branch, BranchKind, Position, Transformer
 from rulecheck.values import AffineForm, natural_key, total_of, variable
+
+Node = str | int
+"""An island by its root net, or a cluster by its index."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -58,7 +63,7 @@ class Topology:
     ties: Ties
     tie_positions: tuple[Position, ...]
     """Positions whose ends stand on one rigid island."""
-    forest: nx.Graph
+    forest: "nx.Graph[Node]"
     """Islands (by name) and clusters (by index) that touch."""
     rigid: Offsets
 
@@ -143,52 +148,49 @@ def _islands(links: Iterable[Link]) -> set[str]:
 
 def _group(links: Sequence[Link]) -> list[list[Link]]:
     """Biconnected components of links, united by cores and until they form a forest."""
-    graph = nx.Graph()
+    graph: nx.Graph[str] = nx.Graph()
     for link in links:
         graph.add_edge(link.start, link.end)
     block_of: dict[frozenset[str], object] = {}
     for index, edges in enumerate(nx.biconnected_component_edges(graph)):
         block_of |= {frozenset(edge): index for edge in edges}
-    joined = nx.Graph()
+    united = Unions(link.name for link in links)
     for link in links:
-        block = ("block", block_of.get(frozenset((link.start, link.end)), link.name))
-        joined.add_edge(("link", link.name), block)
+        block = block_of.get(frozenset((link.start, link.end)), link.name)
+        united.join(link.name, ("block", block))
         if link.core:
-            joined.add_edge(block, ("core", link.core))
-    united = _without_cycles(joined, links)
+            united.join(link.name, ("core", link.core))
+    _close_rings(united, links)
     order = {link.name: i for i, link in enumerate(links)}
-    groups: list[list[Link]] = []
-    for component in nx.connected_components(united):
-        names = {node[1] for node in component if node[0] == "link"}
-        groups.append([links[i] for i in sorted(order[name] for name in names)])
+    groups = [
+        [links[i] for i in sorted(order[name] for name in names)] for names in united.classes()
+    ]
     return sorted(groups, key=lambda group: natural_key(group[0].name))
 
 
-def _without_cycles(joined: nx.Graph, links: Sequence[Link]) -> nx.Graph:
+def _close_rings(united: Unions, links: Sequence[Link]) -> None:
     """Unite groups that touch each other at two islands; a core may have closed such a ring."""
     while True:
-        group_of: dict[str, int] = {}
-        for index, component in enumerate(nx.connected_components(joined)):
-            group_of |= {node[1]: index for node in component if node[0] == "link"}
-        meeting = nx.Graph()
+        meeting: nx.Graph[tuple[str, object]] = nx.Graph()
         for link in links:
-            for island in (link.start, link.end):
-                meeting.add_edge(("group", group_of[link.name]), ("island", island))
-        rings = [
-            [node[1] for node in ring if node[0] == "group"]
-            for ring in nx.biconnected_components(meeting)
-        ]
-        rings = [ring for ring in rings if len(ring) > 1]
-        if not rings:
-            return joined
-        first_link = {index: name for name, index in sorted(group_of.items(), reverse=True)}
+            group = ("group", united.root(link.name))
+            meeting.add_edge(group, ("island", link.start))
+            meeting.add_edge(group, ("island", link.end))
+        closed = False
+        rings = cast("Iterable[set[tuple[str, object]]]", nx.biconnected_components(meeting))
         for ring in rings:
-            for a, b in pairwise(ring):
-                joined.add_edge(("link", first_link[a]), ("link", first_link[b]))
+            groups = sorted(str(node[1]) for node in ring if node[0] == "group")
+            for first, second in pairwise(groups):
+                united.join(first, second)
+                closed = True
+        if not closed:
+            return
 
 
-def _forest(groups: Sequence[Sequence[Link]], injected: Mapping[str, AffineForm]) -> nx.Graph:
-    forest = nx.Graph()
+def _forest(
+    groups: Sequence[Sequence[Link]], injected: Mapping[str, AffineForm]
+) -> "nx.Graph[Node]":
+    forest: nx.Graph[Node] = nx.Graph()
     forest.add_nodes_from(injected)
     for index, group in enumerate(groups):
         for island in sorted(_islands(group)):
@@ -196,14 +198,14 @@ def _forest(groups: Sequence[Sequence[Link]], injected: Mapping[str, AffineForm]
     return forest
 
 
-def _balances(forest: nx.Graph, injected: Mapping[str, AffineForm]) -> Iterable[AffineForm]:
+def _balances(forest: "nx.Graph[Node]", injected: Mapping[str, AffineForm]) -> Iterable[AffineForm]:
     """The current driven into a whole connected part of the network sums to zero."""
     for component in nx.connected_components(forest):
-        yield total_of(injected[node] for node in sorted(component & injected.keys()))
+        yield total_of(injected[net] for net in sorted(injected.keys() & component))
 
 
 def _flows(
-    groups: Sequence[Sequence[Link]], forest: nx.Graph, injected: Mapping[str, AffineForm]
+    groups: Sequence[Sequence[Link]], forest: "nx.Graph[Node]", injected: Mapping[str, AffineForm]
 ) -> dict[int, dict[str, AffineForm]]:
     """What the network behind each island of a group drives into the group there.
 
@@ -216,16 +218,16 @@ def _flows(
         root = max(sorted(islands), key=forest.degree)
         order = list(nx.dfs_preorder_nodes(forest, root))
         parent = dict(nx.dfs_predecessors(forest, root))
-        below: dict[object, AffineForm] = {}
+        below: dict[Node, AffineForm] = {}
         for node in reversed(order):
-            below[node] = below.get(node, AffineForm()) + injected.get(node, AffineForm())
-            above = parent.get(node)
-            if above is None:
-                continue
-            if above != root:
-                below[above] = below.get(above, AffineForm()) + below[node]
+            mine = below.get(node, AffineForm())
             if isinstance(node, str):
-                into[above][node] = below[node]
-            else:
-                into[node][above] = -below[node]
+                mine += injected.get(node, AffineForm())
+            above = parent.get(node)
+            if isinstance(above, int) and isinstance(node, str):
+                into[above][node] = mine
+            elif isinstance(above, str) and isinstance(node, int):
+                into[node][above] = -mine
+            if above is not None and above != root:
+                below[above] = below.get(above, AffineForm()) + mine
     return into

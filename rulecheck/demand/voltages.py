@@ -160,7 +160,7 @@ def _least_energy(looped: Sequence[Branch], rigid: Offsets) -> dict[str, AffineF
 
 def _in_loops(open_: Sequence[Branch], rigid: Offsets) -> frozenset[str]:
     """Capacitors whose removal would not part the islands: they close a loop."""
-    graph = nx.MultiGraph()
+    graph: nx.MultiGraph[str] = nx.MultiGraph()
     for branch in open_:
         graph.add_edge(rigid.root(branch.start), rigid.root(branch.end), key=branch.name)
     cut = {frozenset(pair) for pair in nx.bridges(graph)}

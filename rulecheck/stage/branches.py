@@ -71,8 +71,8 @@ def branch_kind(part: Part) -> BranchKind | None:
     if part.kind in (Kind.CURRENT_SOURCE, Kind.INDUCTOR):
         return BranchKind.CURRENT
     if part.kind is Kind.RESISTOR:
-        unknown = isinstance(part.value, Unknown)
-        return BranchKind.RESISTOR if unknown or part.value < LOAD_RESISTANCE else None
+        senses = not isinstance(part.value, Unknown) and part.value >= LOAD_RESISTANCE
+        return None if senses else BranchKind.RESISTOR
     return None
 
 

@@ -48,13 +48,12 @@ def find_gate_region(layout: Layout) -> GateRegion:
 
 
 def _passives_within(layout: Layout, nets: set[str]) -> set[str]:
-    touching = {
+    return {
         touch.part.name
         for net in nets
         for touch in layout.touches[net]
         if touch.part.kind in _PASSED
     }
-    return touching
 
 
 class _Search:

@@ -51,10 +51,10 @@ def _between_joints(
     ends: Mapping[str, tuple[str, str]], joints: frozenset[str]
 ) -> Iterable[tuple[str, ...]]:
     """Devices connected through interior nets; devices straight between two joints by pair."""
-    graph = nx.Graph()
+    graph: nx.Graph[tuple[str, ...]] = nx.Graph()
     for name, (first, second) in ends.items():
         interior = [net for net in (first, second) if net not in joints]
-        anchors: list[object] = [("net", net) for net in interior]
+        anchors = [("net", net) for net in interior]
         graph.add_edges_from((("device", name), anchor) for anchor in anchors)
         if not interior:
             graph.add_edge(("device", name), ("pair", *sorted((first, second))))
@@ -82,7 +82,7 @@ def _split(
 def _two_terminal_candidates(
     names: tuple[str, ...], ends: Mapping[str, tuple[str, str]], outer: frozenset[str]
 ) -> list[Piece]:
-    graph = nx.MultiGraph()
+    graph: nx.MultiGraph[str] = nx.MultiGraph()
     for name in names:
         graph.add_edge(*ends[name], key=name)
     found: list[Piece] = []

@@ -88,7 +88,7 @@ def _by_potential(
 
 
 def _reaches(edges: Sequence[Edge], start: str, end: str, how: set[Conduction]) -> bool:
-    graph = nx.DiGraph()
+    graph: nx.DiGraph[str] = nx.DiGraph()
     graph.add_nodes_from((start, end))
     graph.add_edges_from((e.tail, e.head) for e in edges if e.conduction in how)
     return bool(nx.has_path(graph, start, end))

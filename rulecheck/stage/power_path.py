@@ -26,7 +26,7 @@ def find_live_nets(layout: Layout, aside: frozenset[str]) -> frozenset[str]:
 
     `aside` names the parts that are known to be no part of the power path.
     """
-    graph = nx.Graph()
+    graph: nx.Graph[object] = nx.Graph()
     graph.add_nodes_from(layout.touches)
     cores: dict[str, str] = {n: core.name for core in layout.parts.cores for n in core.windings}
     for part in layout.parts.parts:
@@ -86,7 +86,7 @@ def find_power_devices(
 
     `bulk` names the capacitors that count as a way back.
     """
-    graph = nx.MultiGraph()
+    graph: nx.MultiGraph[str] = nx.MultiGraph()
     for part in layout.parts.parts:
         if part.name in aside or part.name in layout.wires:
             continue
@@ -96,12 +96,12 @@ def find_power_devices(
                 graph.add_edge(first, second, key=part.name)
     for port in layout.sheet.ports:
         _add_port(graph, layout, port)
-    bridges = set(nx.bridges(graph)) if graph else set()
-    cut = bridges | {(b, a) for a, b in bridges}
+    cut = {frozenset(pair) for pair in nx.bridges(graph)} if graph else set()
+    semiconductors = _semiconductors(layout)
     return frozenset(
         name
         for first, second, name in graph.edges(keys=True)
-        if (first, second) not in cut and name in _semiconductors(layout)
+        if frozenset((first, second)) not in cut and name in semiconductors
     )
 
 
@@ -126,7 +126,7 @@ def _is_load(part: Part) -> bool:
     return not isinstance(part.value, Unknown) and part.value < LOAD_RESISTANCE
 
 
-def _add_port(graph: nx.MultiGraph, layout: Layout, port: SheetPort) -> None:
+def _add_port(graph: "nx.MultiGraph[str]", layout: Layout, port: SheetPort) -> None:
     by_lower = {net.lower(): merged for net, merged in layout.merged.items()}
     nets = [by_lower[n.lower()] for n in (*port.nets, port.neutral) if n.lower() in by_lower]
     for first, second in pairwise(nets):
