@@ -1,0 +1,175 @@
+"""The arguments of every command, as argparse knows them."""
+
+import argparse
+from collections.abc import Sequence
+from typing import Any
+
+from rulecheck import __version__
+from rulecheck.cli.formats import LINT, QUADRANTS
+from rulecheck.cli.request import Output, Request
+
+STEPS = ("circuit", "parts", "stage", "capability", "demand", "facts")
+SCHEMAS = ("sheet", "parts", "rules", "project")
+LEVELS = ("error", "warning", "note")
+
+
+class _Format(argparse.Action):
+    """`--format X` opens an output; a later `-o FILE` gives it its file."""
+
+    def __call__(
+        self,
+        parser: argparse.ArgumentParser,
+        namespace: argparse.Namespace,
+        values: str | Sequence[Any] | None,
+        option_string: str | None = None,
+    ) -> None:
+        namespace.outputs = [*(namespace.outputs or []), Output(str(values), None)]
+
+
+class _File(argparse.Action):
+    def __call__(
+        self,
+        parser: argparse.ArgumentParser,
+        namespace: argparse.Namespace,
+        values: str | Sequence[Any] | None,
+        option_string: str | None = None,
+    ) -> None:
+        outputs: list[Output] = list(namespace.outputs or [])
+        waiting = outputs.pop() if outputs and outputs[-1].file is None else Output(None, None)
+        namespace.outputs = [*outputs, Output(waiting.format, str(values))]
+
+
+def read_arguments(argv: Sequence[str] | None) -> Request:
+    """Parse the command line; a mistake in it prints one line and exits with 2."""
+    parser = _parser()
+    values = vars(parser.parse_args(argv))
+    outputs = tuple(values.pop("outputs", None) or [Output(None, None)])
+    if sum(output.file is None for output in outputs) > 1:
+        parser.error("two formats for standard output; give each but one a file with -o FILE")
+    known = {name: _frozen(value) for name, value in values.items() if value is not None}
+    request = Request(outputs=outputs, **known)
+    if request.command == "lint" and request.stage and len(request.names) != 1:
+        parser.error("--stage is the sheet of one netlist; name that netlist alone")
+    return request
+
+
+def _frozen(value: object) -> Any:
+    return tuple(value) if isinstance(value, list) else value
+
+
+def _parser() -> argparse.ArgumentParser:
+    parser = argparse.ArgumentParser(
+        prog="rulecheck",
+        description="Checks the netlist of a power stage: what every switch position must block"
+        " and carry, and whether the drawn devices can.",
+        epilog="Exit status: 0 nothing broken, 1 something broken, 2 the input could not be used.",
+    )
+    parser.add_argument("--version", action="version", version=f"rulecheck {__version__}")
+    commands = parser.add_subparsers(dest="command", required=True, metavar="COMMAND")
+    _lint(commands)
+    _quadrants(commands)
+    _explain(commands)
+    _rules(commands)
+    _schema(commands)
+    _demo(commands)
+    return parser
+
+
+def _lint(commands: Any) -> None:
+    command = commands.add_parser("lint", allow_abbrev=False, help="check and print the findings and what is open")
+    command.add_argument("names", nargs="*", metavar="NETLIST", help="default: rulecheck.yaml's")
+    _add_inputs(command)
+    _add_packs(command)
+    _add_outputs(command, tuple(LINT))
+    command.add_argument("--fail-at", choices=LEVELS, help="lowest level that fails the run")
+    command.add_argument(
+        "--undecided", choices=("pass", "fail"), help="whether undecided checks fail the run"
+    )
+    command.add_argument("--jobs", type=_jobs, metavar="N", help="netlists at once; 0: all cores")
+    command.add_argument("--record", metavar="FILE", help="write today's broken findings there")
+    command.add_argument("--since", metavar="FILE", help="fail only on what this record lacks")
+
+
+def _quadrants(commands: Any) -> None:
+    command = commands.add_parser("quadrants", help="what each position must cover and covers")
+    command.add_argument("names", nargs=1, metavar="NETLIST")
+    _add_inputs(command)
+    _add_outputs(command, tuple(QUADRANTS))
+
+
+def _explain(commands: Any) -> None:
+    command = commands.add_parser("explain", help="why: the derivation for a name, or a step")
+    command.add_argument("names", nargs="+", metavar="NETLIST [NAME]")
+    command.add_argument("--step", choices=STEPS, help="print what this step found instead")
+    _add_inputs(command)
+    _add_outputs(command, ())
+
+
+def _rules(commands: Any) -> None:
+    command = commands.add_parser("rules", help="list the rules in force, or explain one")
+    command.add_argument("names", nargs="*", metavar="ID", help="a rule; with --try a pack")
+    command.add_argument(
+        "--try", dest="try_packs", action="store_true", help="run the examples that packs carry"
+    )
+    command.add_argument(
+        "--facts", action="store_true", help="print every subject and field a rule may ask for"
+    )
+    _add_project(command)
+    _add_packs(command)
+    _add_outputs(command, ())
+
+
+def _schema(commands: Any) -> None:
+    command = commands.add_parser("schema", help="print a JSON Schema for an editor")
+    command.add_argument("names", nargs=1, choices=SCHEMAS, metavar="|".join(SCHEMAS))
+    _add_outputs(command, ())
+
+
+def _demo(commands: Any) -> None:
+    command = commands.add_parser("demo", help="write the demo stage into a folder")
+    command.add_argument("names", nargs=1, metavar="DIR")
+    command.add_argument("--quiet", action="store_true", help="print nothing")
+
+
+def _add_inputs(command: argparse.ArgumentParser) -> None:
+    command.add_argument("--stage", metavar="FILE", help="the stage sheet; default: beside it")
+    command.add_argument(
+        "--parts", action="append", metavar="FILE", help="part data; may be given again"
+    )
+    _add_project(command)
+
+
+def _add_project(command: argparse.ArgumentParser) -> None:
+    command.add_argument(
+        "--project", metavar="FILE", help="the project file; default: rulecheck.yaml if there"
+    )
+
+
+def _add_packs(command: argparse.ArgumentParser) -> None:
+    command.add_argument(
+        "--rules", action="append", metavar="PACK", help="one more pack of rules, name or file"
+    )
+
+
+def _add_outputs(command: argparse.ArgumentParser, formats: tuple[str, ...]) -> None:
+    if formats:
+        command.add_argument(
+            "--format", action=_Format, dest="outputs", choices=formats, help="form of the report"
+        )
+    command.add_argument(
+        "-o", action=_File, dest="outputs", metavar="FILE", help="write the report there"
+    )
+    command.add_argument(
+        "--color", choices=("auto", "always", "never"), help="default auto; NO_COLOR is honoured"
+    )
+    command.add_argument("--ascii", action="store_true", help="seven-bit signs only")
+    command.add_argument(
+        "--quiet", action="store_true", help="only what is broken or open, and the tally"
+    )
+
+
+def _jobs(text: str) -> int:
+    count = int(text)
+    if count < 0:
+        raise argparse.ArgumentTypeError(f"{text} is less than 0")
+    return count

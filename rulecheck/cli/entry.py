@@ -1,0 +1,59 @@
+"""`rulecheck`: read the arguments, hand them to the command's module, answer with its status."""
+
+import importlib
+import os
+import sys
+import traceback
+from collections.abc import Callable, Sequence
+
+from rulecheck.cli.arguments import read_arguments
+from rulecheck.cli.request import Request
+
+UNUSABLE = 2
+INTERRUPTED = 130
+TRACE_VARIABLE = "RULECHECK_TRACEBACK"
+
+# named, not imported: a command loads what it needs when it is called
+COMMANDS = {
+    "lint": "rulecheck.cli.lint_command",
+    "quadrants": "rulecheck.cli.quadrants_command",
+    "explain": "rulecheck.cli.explain_command",
+    "rules": "rulecheck.cli.rules_command",
+    "schema": "rulecheck.cli.schema_command",
+    "demo": "rulecheck.cli.demo_command",
+}
+
+
+def main(argv: Sequence[str] | None = None) -> int:
+    """Exit status 0: nothing broken; 1: something broken; 2: the input could not be used."""
+    request = read_arguments(argv)
+    try:
+        status = _run(request)
+        sys.stdout.flush()
+    except BrokenPipeError:
+        # the reader has left (`| head`): no complaint, and none at interpreter exit either
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        return 0
+    except KeyboardInterrupt:
+        return INTERRUPTED
+    except Exception as failure:
+        return _own_fault(failure)
+    return status
+
+
+def _run(request: Request) -> int:
+    run: Callable[[Request], int] = importlib.import_module(COMMANDS[request.command]).run
+    return run(request)
+
+
+def _own_fault(failure: Exception) -> int:
+    """One line that owns up to the bug; the traceback is kept for whoever asks."""
+    if os.environ.get(TRACE_VARIABLE):
+        traceback.print_exception(failure)
+    kind, words = type(failure).__name__, " ".join(str(failure).split())
+    print(
+        f"rulecheck: internal error: {kind}: {words}; this is a fault of rulecheck, not of your"
+        f" files: report it with the output of a run with {TRACE_VARIABLE}=1",
+        file=sys.stderr,
+    )
+    return UNUSABLE

@@ -1,0 +1,34 @@
+"""What the user asked for, read from the arguments; light, so that `--version` costs nothing."""
+
+from dataclasses import dataclass
+
+
+@dataclass(frozen=True, slots=True)
+class Output:
+    """One report: its format (None: the default) and its file (None: standard output)."""
+
+    format: str | None
+    file: str | None
+
+
+@dataclass(frozen=True, slots=True)
+class Request:
+    command: str
+    names: tuple[str, ...] = ()
+    """The positional arguments of the command."""
+    outputs: tuple[Output, ...] = (Output(None, None),)
+    stage: str | None = None
+    parts: tuple[str, ...] = ()
+    rules: tuple[str, ...] = ()
+    project: str | None = None
+    fail_at: str | None = None
+    undecided: str | None = None
+    jobs: int = 1
+    color: str = "auto"
+    ascii: bool = False
+    quiet: bool = False
+    step: str | None = None
+    record: str | None = None
+    since: str | None = None
+    try_packs: bool = False
+    facts: bool = False
