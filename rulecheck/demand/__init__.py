@@ -15,6 +15,7 @@ from rulecheck.demand.demands import (
     Variable,
     Witness,
 )
+from rulecheck.demand.text import demands_text
 
 __all__ = [
     "Bridge",
@@ -29,5 +30,6 @@ __all__ = [
     "Undetermined",
     "Variable",
     "Witness",
+    "demands_text",
     "find_demands",
 ]

@@ -27,10 +27,11 @@ def find_interrupted(
     """
     found: dict[tuple[str, str], InterruptedCurrent] = {}
     noted: list[str] = []
+    carriers = {carrier.name: carrier for carrier, _ in worked.routes}
     for index, cluster in enumerate(worked.topology.clusters):
         if not cluster.gated or index in worked.connecting or not worked.reading.states[index]:
             continue
-        for item in _interrupted_in(worked, index):
+        for item in _interrupted_in(worked, index, carriers):
             if _could_freewheel(item.positions, demands):
                 before = found.get((item.carrier, item.direction))
                 more = before.positions if before else ()
@@ -45,12 +46,15 @@ def find_interrupted(
     return list(found.values()), list(dict.fromkeys(noted))
 
 
-def _interrupted_in(worked: Worked, index: int) -> Iterator[InterruptedCurrent]:
+def _interrupted_in(
+    worked: Worked, index: int, carriers: Mapping[str, Carrier]
+) -> Iterator[InterruptedCurrent]:
     cluster = worked.topology.clusters[index]
     names = {n for form in cluster.into.values() for n in form.names}
     box = worked.box.only((names | _all_names(cluster, worked, index)) & worked.box.ranges.keys())
-    for carrier, _ in worked.routes:
-        if carrier.name not in names or carrier.name.startswith("i(magnetising"):
+    for name in sorted(names & carriers.keys(), key=natural_key):
+        carrier = carriers[name]
+        if carrier.name.startswith("i(magnetising"):
             continue
         for positive in (True, False):
             item = _interrupted(worked, index, box, carrier, positive)

@@ -4,8 +4,9 @@ Names come last, as labels; nothing before this step knows one.
 """
 
 import math
-from collections.abc import Iterable, Sequence
-from itertools import pairwise
+from collections.abc import Iterable, Mapping, Sequence
+from dataclasses import dataclass
+from itertools import pairwise, product
 
 import networkx as nx
 
@@ -24,47 +25,50 @@ def find_legs(worked: Worked) -> tuple[Leg, ...]:
             leg = _leg(worked, index, cluster, midpoint)
             if leg is not None:
                 legs.append(leg)
-    nested = [_nested(leg, worked) for leg in legs]
+    outer = _outer_pairs(worked)
+    nested = [_nested(leg, outer) for leg in legs]
     return tuple(sorted(nested, key=lambda leg: natural_key(leg.name)))
 
 
-def _nested(leg: Leg, worked: Worked) -> Leg:
-    """Flying capacitors: a leg whose rails are themselves switched, each by one of a pair."""
-    inner_pairs = 1
-    while True:
-        pair = _outer_pair(leg, worked)
-        if pair is None:
-            return leg
-        upper, lower, rails = pair
-        inner_pairs += 1
-        high = tuple(sorted((*leg.high, upper), key=natural_key))
-        low = tuple(sorted((*leg.low, lower), key=natural_key))
-        leg = Leg(
-            leg.name, "multilevel leg", leg.midpoint, rails, high, low, leg.others, inner_pairs + 1
-        )
+@dataclass(frozen=True, slots=True)
+class _OuterPair:
+    """Two positions that join a pair of nets, by net, each to a further net."""
+
+    joining: Mapping[str, str]
+    further: Mapping[str, str]
 
 
-def _outer_pair(leg: Leg, worked: Worked) -> tuple[str, str, tuple[str, str]] | None:
-    known = {*leg.high, *leg.low}
+def _outer_pairs(worked: Worked) -> Mapping[frozenset[str], _OuterPair]:
+    """By the two nets inside: groups of two positions that meet at none of their nets."""
+    pairs: dict[frozenset[str], _OuterPair] = {}
     for cluster in worked.topology.clusters:
-        links = cluster.positions
-        if len(links) != 2 or known & {link.name for link in links}:
+        positions = [link.position for link in cluster.positions if link.position]
+        if len(positions) != 2:
             continue
-        ends: dict[str, str] = {}
-        outer: dict[str, str] = {}
-        for link in links:
-            position = link.position
-            assert position is not None
-            for near, far in (
-                (position.start, position.end),
-                (position.end, position.start),
-            ):
-                if near in leg.rails:
-                    ends[near], outer[near] = link.name, far
-        if len(set(ends.values())) == 2 and set(ends) == set(leg.rails):
-            top, bottom = leg.rails
-            return ends[top], ends[bottom], (outer[top], outer[bottom])
-    return None
+        first, second = (((p.start, p.end), (p.end, p.start)) for p in positions)
+        for (near, far), (other_near, other_far) in product(first, second):
+            if len({near, far, other_near, other_far}) == 4:
+                pairs[frozenset((near, other_near))] = _OuterPair(
+                    {near: positions[0].name, other_near: positions[1].name},
+                    {near: far, other_near: other_far},
+                )
+    return pairs
+
+
+def _nested(leg: Leg, outer: Mapping[frozenset[str], _OuterPair]) -> Leg:
+    """Flying capacitors: a leg whose rails are themselves switched, each by one of a pair."""
+    levels = 2
+    while True:
+        pair = outer.get(frozenset(leg.rails))
+        if pair is None or {*leg.high, *leg.low} & set(pair.joining.values()):
+            return leg
+        top, bottom = leg.rails[0], leg.rails[-1]
+        levels += 1
+        high = tuple(sorted((*leg.high, pair.joining[top]), key=natural_key))
+        low = tuple(sorted((*leg.low, pair.joining[bottom]), key=natural_key))
+        rails = (pair.further[top], pair.further[bottom])
+        kind = "multilevel leg"
+        leg = Leg(leg.name, kind, leg.midpoint, rails, high, low, leg.others, levels)
 
 
 def _midpoints(cluster: Cluster, worked: Worked) -> list[str]:

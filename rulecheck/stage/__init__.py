@@ -14,6 +14,7 @@ from rulecheck.stage.stage import (
     Switching,
     Transformer,
 )
+from rulecheck.stage.text import stage_text
 
 __all__ = [
     "EMPTY_SHEET",
@@ -32,4 +33,5 @@ __all__ = [
     "Transformer",
     "read_sheet",
     "read_stage",
+    "stage_text",
 ]
