@@ -2,5 +2,6 @@
 
 from rulecheck.capability.capabilities import Capabilities, Capability, Direction
 from rulecheck.capability.find import find_capabilities
+from rulecheck.capability.text import capabilities_text
 
-__all__ = ["Capabilities", "Capability", "Direction", "find_capabilities"]
+__all__ = ["Capabilities", "Capability", "Direction", "capabilities_text", "find_capabilities"]

@@ -48,9 +48,23 @@ def read_arguments(argv: Sequence[str] | None) -> Request:
         parser.error("two formats for standard output; give each but one a file with -o FILE")
     known = {name: _frozen(value) for name, value in values.items() if value is not None}
     request = Request(outputs=outputs, **known)
-    if request.command == "lint" and request.stage and len(request.names) != 1:
-        parser.error("--stage is the sheet of one netlist; name that netlist alone")
+    fault = _fault(request)
+    if fault:
+        parser.error(fault)
     return request
+
+
+def _fault(request: Request) -> str | None:
+    """What argparse cannot see: arguments that do not go together."""
+    if request.command == "lint" and request.stage and len(request.names) != 1:
+        return "--stage is the sheet of one netlist; name that netlist alone"
+    if request.command == "explain" and request.step and len(request.names) != 1:
+        return "--step explains a whole netlist; leave the name out"
+    if request.command == "explain" and not request.step and len(request.names) != 2:
+        return "name what to explain: a position, leg, part or port; or a step with --step"
+    if request.command == "rules" and len(request.names) > 1 and not request.try_packs:
+        return "one rule at a time"
+    return None
 
 
 def _frozen(value: object) -> Any:
@@ -76,7 +90,9 @@ def _parser() -> argparse.ArgumentParser:
 
 
 def _lint(commands: Any) -> None:
-    command = commands.add_parser("lint", allow_abbrev=False, help="check and print the findings and what is open")
+    command = commands.add_parser(
+        "lint", allow_abbrev=False, help="check and print the findings and what is open"
+    )
     command.add_argument("names", nargs="*", metavar="NETLIST", help="default: rulecheck.yaml's")
     _add_inputs(command)
     _add_packs(command)

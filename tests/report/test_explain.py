@@ -9,7 +9,7 @@ from tests.report.stage_example import battery_leg
 
 
 def explained(name: str, look: Look | None = None) -> str:
-    look = look or Look(100)
+    look = look or Look(140)
     explanation = explain(name, *battery_leg(), look)
     assert explanation is not None
     return rendered(explain_text.render, explanation, look)

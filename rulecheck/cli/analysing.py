@@ -1,0 +1,46 @@
+"""What the commands on netlists share: find the companions, analyse, answer with a status."""
+
+from pathlib import Path
+
+from rulecheck.cli.complaints import complain
+from rulecheck.cli.output import Document, refused, write_documents
+from rulecheck.cli.project import Project, find_project
+from rulecheck.cli.request import Request
+from rulecheck.pipeline import Analysis, Sources, Unusable, analyse
+from rulecheck.values import Problem, errors_of
+
+
+def sources_for(netlist: Path, request: Request, project: Project) -> Sources:
+    """The sheet and the part data of a netlist, from the arguments and the project file."""
+    sheet = Path(request.stage) if request.stage else _project_sheet(netlist, project)
+    return Sources(sheet, (*project.parts, *(Path(name) for name in request.parts)))
+
+
+def analyse_one(request: Request) -> Analysis | Unusable:
+    """The netlist that the command names first."""
+    project = find_project(request.project)
+    if errors_of(project.problems):
+        return Unusable(project.problems)
+    netlist = Path(request.names[0])
+    return analyse(netlist, sources_for(netlist, request, project))
+
+
+def finish(
+    documents: list[Document],
+    inputs: tuple[str, ...],
+    problems: tuple[Problem, ...],
+    status: int = 0,
+) -> int:
+    """Write the reports, print every error, and return 2 where there is one."""
+    files = [document.file for document in documents if document.file not in (None, "-")]
+    blocked = refused([file for file in files if file is not None], inputs)
+    written = () if blocked else write_documents(documents)
+    errors = errors_of((*problems, *blocked, *written))
+    return complain(errors) if errors else status
+
+
+def _project_sheet(netlist: Path, project: Project) -> Path | None:
+    wanted = netlist.resolve()
+    return next(
+        (sheet for named, sheet in project.sheets.items() if named.resolve() == wanted), None
+    )

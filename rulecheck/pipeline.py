@@ -1,0 +1,134 @@
+"""The whole analysis as one list of named steps."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass, field
+from pathlib import Path
+
+from rulecheck.capability import Capabilities, find_capabilities
+from rulecheck.demand import Demands, find_demands
+from rulecheck.facts import Facts, collect_facts
+from rulecheck.netlist import Circuit, read_circuit_text
+from rulecheck.parts import PartList, identify_parts, read_part_data
+from rulecheck.reading import SourceText, read_text
+from rulecheck.stage import EMPTY_SHEET, SheetReading, Stage, read_sheet, read_stage
+from rulecheck.values import Problem, Span, error, errors_of
+
+SHEET_SUFFIX = ".stage.yaml"
+NO_SHEET = SheetReading(EMPTY_SHEET, ())
+
+
+@dataclass(frozen=True, slots=True)
+class Analysis:
+    """Every product of the steps for one netlist, and every problem met on the way."""
+
+    netlist: str
+    circuit: Circuit
+    parts: PartList
+    stage: Stage
+    capabilities: Capabilities
+    demands: Demands
+    facts: Facts
+    problems: tuple[Problem, ...]
+    """Errors here are cards that could not be read; the analysis names their elements."""
+    inputs: tuple[str, ...]
+    """Every file that was read."""
+
+
+@dataclass(frozen=True, slots=True)
+class Unusable:
+    """No analysis: a file could not be read, or sheet or part data are at fault."""
+
+    problems: tuple[Problem, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Sources:
+    """Where a netlist's companions are; no sheet named means the one beside it, if any."""
+
+    sheet: Path | None = None
+    parts: tuple[Path, ...] = field(default=())
+
+
+BESIDE = Sources()
+
+
+def analyse(path: Path, sources: Sources = BESIDE) -> Analysis | Unusable:
+    """Read the files and analyse them; the sheet's own part data come before those named here."""
+    netlist = read_text(path)
+    sheet_path = sources.sheet or sheet_beside(path)
+    sheet = read_text(sheet_path) if sheet_path is not None else None
+    reading = read_sheet(sheet) if isinstance(sheet, SourceText) else NO_SHEET
+    parts = [read_text(file) for file in part_files(reading, sources)]
+    failed = tuple(text for text in (netlist, sheet, *parts) if isinstance(text, Problem))
+    if isinstance(netlist, Problem) or failed:
+        return Unusable((*failed, *reading.problems))
+    return _run_steps(netlist, reading, [text for text in parts if isinstance(text, SourceText)])
+
+
+def analyse_text(
+    netlist: SourceText, sheet: SourceText | None = None, parts: Sequence[SourceText] = ()
+) -> Analysis | Unusable:
+    """The same on texts at hand; nothing but the netlist's includes is read from disk."""
+    return _run_steps(netlist, read_sheet(sheet) if sheet is not None else NO_SHEET, parts)
+
+
+def sheet_beside(netlist: Path) -> Path | None:
+    """`hut.stage.yaml` for `hut.cir`, where it is there."""
+    sheet = netlist.with_name(netlist.stem + SHEET_SUFFIX)
+    return sheet if sheet.is_file() else None
+
+
+def part_files(sheet: SheetReading, sources: Sources) -> tuple[Path, ...]:
+    """The sheet's part data, relative to the sheet, then those named besides; each once."""
+    folder = Path(sheet.sheet.file).parent
+    listed = tuple(folder / name for name in sheet.sheet.parts)
+    return tuple(dict.fromkeys((*listed, *sources.parts)))
+
+
+def _run_steps(
+    netlist: SourceText, sheet: SheetReading, parts: Sequence[SourceText]
+) -> Analysis | Unusable:
+    part_data = read_part_data(parts)
+    circuit = read_circuit_text(netlist)
+    problems = (*circuit.problems, *sheet.problems, *part_data.problems)
+    if errors_of((*sheet.problems, *part_data.problems)) or not circuit.elements:
+        return Unusable(_with_reason(netlist.file, problems))
+    part_list = identify_parts(circuit, part_data)
+    stage, stage_problems = _stage(part_list, sheet)
+    if errors_of(stage_problems):
+        return Unusable((*problems, *stage_problems))
+    capabilities = find_capabilities(stage.positions)
+    demands = find_demands(stage)
+    facts = collect_facts(stage, capabilities, demands)
+    return Analysis(
+        netlist.file,
+        circuit,
+        part_list,
+        stage,
+        capabilities,
+        demands,
+        facts,
+        (*problems, *stage_problems),
+        _inputs(netlist, sheet, parts, circuit),
+    )
+
+
+def _stage(parts: PartList, sheet: SheetReading) -> tuple[Stage, tuple[Problem, ...]]:
+    reading = read_stage(parts, sheet.sheet)
+    return reading.stage, reading.problems
+
+
+def _inputs(
+    netlist: SourceText, sheet: SheetReading, parts: Sequence[SourceText], circuit: Circuit
+) -> tuple[str, ...]:
+    own = (netlist.file, sheet.sheet.file, *(source.file for source in parts))
+    included = (element.span.file for element in circuit.elements)
+    models = (element.model.span.file for element in circuit.elements if element.model)
+    return tuple(dict.fromkeys(file for file in (*own, *included, *models) if file))
+
+
+def _with_reason(file: str, problems: tuple[Problem, ...]) -> tuple[Problem, ...]:
+    """An empty file is an error too, whether or not the reader saw one."""
+    if errors_of(problems):
+        return problems
+    return (*problems, error(Span(file, 1), "no element in this netlist", "export it again"))
