@@ -1,5 +1,25 @@
 """What each element is: kind, pins by role, ratings, edges."""
 
+from rulecheck.parts.identify import identify_parts
 from rulecheck.parts.part import Conduction, Core, Datum, Edge, Kind, Part, PartList, Pin
+from rulecheck.parts.part_data import NO_PART_DATA, PartData
+from rulecheck.parts.part_data_file import PartDataFile
+from rulecheck.parts.read_data import read_part_data
+from rulecheck.parts.text import parts_text
 
-__all__ = ["Conduction", "Core", "Datum", "Edge", "Kind", "Part", "PartList", "Pin"]
+__all__ = [
+    "NO_PART_DATA",
+    "Conduction",
+    "Core",
+    "Datum",
+    "Edge",
+    "Kind",
+    "Part",
+    "PartData",
+    "PartDataFile",
+    "PartList",
+    "Pin",
+    "identify_parts",
+    "parts_text",
+    "read_part_data",
+]

@@ -5,12 +5,23 @@
 'Q1'
 """
 
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from dataclasses import replace
 
 from rulecheck.capability import Capability, find_capabilities
-from rulecheck.parts import Datum, Kind, Part, Pin
+from rulecheck.netlist import Circuit, Element, Model, Subcircuit
+from rulecheck.parts import (
+    Datum,
+    Kind,
+    Part,
+    PartList,
+    Pin,
+    identify_parts,
+    read_part_data,
+)
+from rulecheck.parts.check import check_parts
 from rulecheck.parts.edges import ROWS, find_edges
+from rulecheck.reading import SourceText
 from rulecheck.stage import Position
 from rulecheck.values import Dimension, Span, Unknown
 
@@ -50,3 +61,45 @@ def position(start: str, end: str, *devices: Part) -> Position:
 def capability(start: str, end: str, *devices: Part) -> Capability:
     """What the devices can do as one position from `start` to `end`."""
     return find_capabilities([position(start, end, *devices)]).positions[devices[0].name]
+
+
+def model(name: str, kind: str, **parameters: float | str) -> Model:
+    return Model(name, kind, parameters, Span("hut.cir", 99))
+
+
+def card(
+    name: str,
+    nets: str,
+    text: str = "",
+    value: float | None = None,
+    kind: Model | None = None,
+    **parameters: float | str,
+) -> Element:
+    """A hand-made element; `nets` with blanks between, the letter from the name."""
+    number = Unknown(f"value of {name}", "the card") if value is None else value
+    instance, _, local = name.rpartition(".")
+    return Element(
+        name,
+        local[0].upper(),
+        tuple(nets.split()),
+        number,
+        text,
+        HERE,
+        parameters,
+        kind,
+        instance=instance,
+    )
+
+
+def circuit(elements: Iterable[Element], **subcircuits: str) -> Circuit:
+    """A circuit of hand-made elements; subcircuits by name with their ports."""
+    defined = {n.lower(): Subcircuit(n, tuple(p.split()), HERE) for n, p in subcircuits.items()}
+    return Circuit("hut.cir", "", tuple(elements), defined, (), (), ())
+
+
+def identified(elements: Iterable[Element], parts_yaml: str = "", **subcircuits: str) -> PartList:
+    """The part list of hand-made elements, checked for soundness."""
+    sources = [SourceText("hut.parts.yaml", parts_yaml)] if parts_yaml else []
+    found = identify_parts(circuit(elements, **subcircuits), read_part_data(sources))
+    assert check_parts(found) == ()
+    return found

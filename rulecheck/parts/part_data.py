@@ -1,0 +1,66 @@
+"""Part data as read: patterns over model, subcircuit or value texts, and what each states.
+
+"SW-N100-*": {kind: mosfet, ratings: {blocking: 100 V}}      fits SW-N100-7, sw-n100-12
+"SW-N100-7": {kind: mosfet, ratings: {blocking: 150 V}}      fits better: more literal text
+"""
+
+import fnmatch
+from collections.abc import Iterable, Mapping
+from dataclasses import dataclass
+
+from rulecheck.parts.part import Datum, Kind
+from rulecheck.values import Problem, Span
+
+_WILD = frozenset("*?[]")
+
+
+@dataclass(frozen=True, slots=True)
+class StatedDevice:
+    """One inner device of a module."""
+
+    name: str
+    kind: Kind
+    pins: Mapping[str, str]
+    """Role -> pin of the module, as written."""
+    data: Mapping[str, Datum]
+    facts: Mapping[str, str]
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class StatedPart:
+    """One entry of a parts file."""
+
+    key: str
+    kind: Kind
+    pins: tuple[str, ...]
+    """Roles in netlist order; empty where the entry leaves them to the kind."""
+    pins_by_name: Mapping[str, str]
+    """Role -> port or number of the pin; empty where `pins` is a list or is left out."""
+    data: Mapping[str, Datum]
+    facts: Mapping[str, str]
+    devices: tuple[StatedDevice, ...]
+    span: Span
+
+    @property
+    def literal_length(self) -> int:
+        return sum(character not in _WILD for character in self.key)
+
+    def fits(self, text: str) -> bool:
+        return fnmatch.fnmatchcase(text.casefold(), self.key.casefold())
+
+
+@dataclass(frozen=True, slots=True)
+class PartData:
+    """All parts files together, in the order in which they were given."""
+
+    parts: tuple[StatedPart, ...] = ()
+    problems: tuple[Problem, ...] = ()
+
+    def best_fit(self, texts: Iterable[str]) -> StatedPart | None:
+        """The entry with the longest literal text that fits; the first of equals."""
+        fitting = [part for text in texts if text for part in self.parts if part.fits(text)]
+        return max(fitting, key=lambda part: part.literal_length, default=None)
+
+
+NO_PART_DATA = PartData()
