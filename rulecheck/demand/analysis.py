@@ -101,6 +101,7 @@ def _first_box(stage: Stage, voltages: Voltages) -> tuple[Box, PortCurrents]:
     """Ranges of voltages and of port currents; every other current may be anything as yet."""
     ranges: dict[str, Interval] = {}
     unsettled: set[str] = set()
+    stated = {name_of(b) for b in stage.branches if b.given is not None}
     for branch in stage.branches:
         name = name_of(branch)
         if branch.kind is BranchKind.VOLTAGE or branch.kind is BranchKind.CURRENT:
@@ -116,7 +117,7 @@ def _first_box(stage: Stage, voltages: Voltages) -> tuple[Box, PortCurrents]:
     for port in stage.ports:
         known = found.ranges.get(port.name)
         for name in current_names(port):
-            if known is not None:
+            if known is not None and name not in stated:
                 ranges[name] = known
                 unsettled.discard(name)
     sets = tuple(_phase_sets(stage.ports, found.ranges))

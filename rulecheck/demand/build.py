@@ -13,9 +13,11 @@ from rulecheck.demand.demands import (
     Undetermined,
     Variable,
 )
+from rulecheck.demand.duty import with_duty
 from rulecheck.demand.evaluate import demand_of
 from rulecheck.demand.gates_off import find_free_shorts, find_interrupted
 from rulecheck.demand.legs import find_bridges, find_hard_commutations, find_legs
+from rulecheck.demand.peak_charged import with_peaks
 from rulecheck.demand.readings import feasible
 from rulecheck.demand.states import RawState
 from rulecheck.demand.topology import magnetising_name
@@ -54,30 +56,32 @@ def find_demands(stage: Stage) -> Demands:
 
 def _first_that_works(stage: Stage) -> tuple[Worked, tuple[str, ...]]:
     worked = work_out(stage)
-    best = worked
-    assumed: tuple[str, ...] = ()
-    followers = _followers(worked)
-    if followers:
-        followed, sentences = without_followers(stage, followers)
-        tried = work_out(followed)
-        if _better(tried, best):
-            stage, best, assumed = followed, tried, sentences
-    if not best.failures:
-        return best, assumed
-    for reading in (wire_leakages, without_magnetising):
-        other, sentences = reading(stage)
+    stage, assumed = with_duty(worked)
+    best = work_out(stage) if assumed else worked
+    for reading in (_following, _wired, _clamped):
+        if not _unclear(best):
+            break
+        other, sentences = reading(best, stage)
         if not sentences:
             continue
         tried = work_out(other)
-        if _better(tried, best):
+        if _unclear(tried) < _unclear(best):
             best, assumed = tried, assumed + sentences
-        if not tried.failures:
-            break
-    return best, assumed
+            stage = other if reading is _following else stage
+    stage, peaks = with_peaks(best, best.stage, work_out)
+    return (work_out(stage), assumed + peaks) if peaks else (best, assumed)
 
 
-def _better(tried: Worked, best: Worked) -> bool:
-    return _unclear(tried) < _unclear(best)
+def _following(worked: Worked, stage: Stage) -> tuple[Stage, tuple[str, ...]]:
+    return without_followers(stage, _followers(worked))
+
+
+def _wired(worked: Worked, stage: Stage) -> tuple[Stage, tuple[str, ...]]:
+    return wire_leakages(stage) if worked.failures else (stage, ())
+
+
+def _clamped(worked: Worked, stage: Stage) -> tuple[Stage, tuple[str, ...]]:
+    return without_magnetising(stage) if worked.failures else (stage, ())
 
 
 def _unclear(worked: Worked) -> int:

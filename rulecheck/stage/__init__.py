@@ -1,6 +1,7 @@
 """The power stage: ports, part roles, branches and switch positions."""
 
 from rulecheck.stage.build import StageReading, read_stage
+from rulecheck.stage.gate_pulse import GatePulse
 from rulecheck.stage.position import Position
 from rulecheck.stage.sheet import EMPTY_SHEET, Sheet, SheetReading, read_sheet
 from rulecheck.stage.sheet_file import SheetFile
@@ -20,6 +21,7 @@ __all__ = [
     "EMPTY_SHEET",
     "Branch",
     "BranchKind",
+    "GatePulse",
     "Port",
     "PortKind",
     "Position",

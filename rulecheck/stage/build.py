@@ -2,11 +2,13 @@
 
 import difflib
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from rulecheck.parts import Kind, PartList
 from rulecheck.stage.branches import build_transformers, part_branches, port_branches
+from rulecheck.stage.gate_pulse import GatePulse
 from rulecheck.stage.gate_region import GateRegion, find_gate_region
+from rulecheck.stage.gate_timing import find_gate_pulses
 from rulecheck.stage.grouping import Grouping, group_devices
 from rulecheck.stage.layout import Layout, is_semiconductor, lay_out, main_nets
 from rulecheck.stage.orientation import mean_potentials
@@ -51,6 +53,7 @@ def read_stage(parts: PartList, sheet: Sheet) -> StageReading:
     grouping = _group(known, branches, transformers)
     potentials = mean_potentials(branches, transformers, layout.net(parts.ground))
     positions = build_positions(grouping.pieces, parts.by_name, layout.merged, potentials)
+    pulses = find_gate_pulses(layout)
     stage = Stage(
         parts.file,
         parts,
@@ -63,8 +66,9 @@ def read_stage(parts: PartList, sheet: Sheet) -> StageReading:
         known.peripheral.refers_to,
         _given(parts, sheet),
         layout.net(parts.ground),
-        sheet.switching,
+        _switching(sheet.switching, pulses),
         _leg_switching(layout, sheet),
+        pulses,
         sheet.efficiency,
         sheet.file,
         (*parts.assumed, *wiring.assumed, *_kept_assumptions(known)),
@@ -169,6 +173,13 @@ def _given(parts: PartList, sheet: Sheet) -> dict[str, Interval]:
         if stated:
             given[part.name] = stated
     return given
+
+
+def _switching(stated: Switching, pulses: Mapping[str, GatePulse]) -> Switching:
+    """Where the sheet states no frequency, the slowest gate source of the netlist gives it."""
+    if stated.frequency is not None or not pulses:
+        return stated
+    return replace(stated, frequency=1.0 / max(pulse.period for pulse in pulses.values()))
 
 
 def _leg_switching(layout: Layout, sheet: Sheet) -> dict[str, Switching]:

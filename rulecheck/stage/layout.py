@@ -8,7 +8,7 @@ from rulecheck.stage.sheet import Sheet
 from rulecheck.stage.wiring import Wiring
 from rulecheck.values import natural_key
 
-CONTROL_ROLES = frozenset({"gate", "base", "kelvin", "body", "control-plus", "control-minus"})
+_CONTROLS = ("gate", "base", "control-plus")
 DIODES = frozenset({Kind.DIODE, Kind.ZENER})
 SOURCES = frozenset({Kind.VOLTAGE_SOURCE, Kind.CURRENT_SOURCE})
 CIRCUITS = frozenset(
@@ -90,7 +90,7 @@ def main_nets(layout: Layout, part: Part) -> tuple[str, ...]:
 
 def control_nets(layout: Layout, part: Part) -> tuple[str, ...]:
     """The merged nets on a device's gates or bases."""
-    return tuple(layout.net(pin.net) for pin in part.pins if pin.role in ("gate", "base"))
+    return tuple(layout.net(pin.net) for pin in part.pins if pin.role in _CONTROLS)
 
 
 def is_semiconductor(part: Part) -> bool:

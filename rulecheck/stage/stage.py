@@ -5,6 +5,7 @@ from dataclasses import dataclass, field
 from enum import StrEnum
 
 from rulecheck.parts import PartList
+from rulecheck.stage.gate_pulse import GatePulse
 from rulecheck.stage.position import Position
 from rulecheck.values import Interval, Span
 
@@ -136,6 +137,8 @@ class Stage:
     switching: Switching = field(default_factory=Switching)
     leg_switching: Mapping[str, Switching] = field(default_factory=dict)
     """By midpoint net."""
+    gate_pulses: Mapping[str, GatePulse] = field(default_factory=dict)
+    """By device name: the pulse source of the netlist that drives its gate."""
     efficiency: float = 1.0
     sheet: str = ""
     """The sheet's file name; empty where there is none."""

@@ -69,9 +69,8 @@ def _preferred_nets(sheet: Sheet, parts: PartList) -> dict[str, int]:
     """Rank of the nets whose names stay when nets merge: ports first, then ground."""
     names = [net for port in sheet.ports for net in (*port.nets, port.neutral) if net]
     names += [leg.midpoint for leg in sheet.legs]
-    ranks = {name.lower(): rank for rank, name in enumerate(names)}
-    ranks.setdefault(parts.ground.lower(), len(ranks))
-    return ranks
+    names.append(parts.ground)
+    return {name: rank for rank, name in enumerate(dict.fromkeys(n.lower() for n in names))}
 
 
 def _merge(parts: PartList, wires: Iterable[Part], preferred: Mapping[str, int]) -> dict[str, str]:
