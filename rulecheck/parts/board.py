@@ -144,7 +144,7 @@ PREFIXES: Mapping[str, Maker] = {
     **dict.fromkeys(("RV", "VDR", "MOV", "TVS"), _clamp),
     **dict.fromkeys(("NTC", "PTC", "RT", "TH"), _thermistor),
     **dict.fromkeys(("BT", "BAT"), _battery),
-    **dict.fromkeys(("CR", "BR", "RL", "RLY", "K", "T", "TR", "U", "IC"), not_understood),
+    **dict.fromkeys(("CR", "BR", "RL", "RLY", "IC"), not_understood),
     "FB": _bead,
     "LED": _diode,
     "SW": _switch,

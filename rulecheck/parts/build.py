@@ -32,7 +32,8 @@ def build_part(
     element: Element, reading: PartReading, stated: StatedPart | None, multiplicity: float
 ) -> Built:
     """The part of an element; behind a module's part, the parts of its devices."""
-    figures = gather(element, reading.kind, stated, reading.figures)
+    applied = stated if stated and reading.kind is stated.kind else None
+    figures = gather(element, reading.kind, applied, reading.figures)
     part = Part(
         name=element.name,
         kind=reading.kind,
@@ -49,8 +50,7 @@ def build_part(
         instance_chain=element.instance_chain,
     )
     part = replace(part, edges=find_edges(part))
-    devices = stated.devices if stated else ()
-    inner = tuple(_inner(part, device, stated) for device in devices if stated)
+    inner = [_inner(part, device, applied) for device in applied.devices] if applied else []
     return Built((part, *inner), figures.problems)
 
 

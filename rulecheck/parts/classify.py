@@ -36,7 +36,8 @@ def _diode(element: Element) -> PartReading:
     by_words = read_by_words(element)
     if by_words is not None:
         return by_words
-    assumed = f"read with its pins in the order anode cathode (no data on '{element.text}')"
+    lack = f"no data on '{element.text}'" if element.text else "no model"
+    assumed = f"read with pins in the order anode cathode ({lack})"
     return read_as(element, Kind.DIODE, assumed)
 
 

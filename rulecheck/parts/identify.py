@@ -6,7 +6,7 @@ are read in its place.
 """
 
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 
 from rulecheck.netlist import GROUND, Circuit, Element, Subcircuit
 from rulecheck.parts.assumptions import Assumptions
@@ -71,6 +71,7 @@ class _Search:
         self.bodies = _bodies(self.circuit.elements)
 
     def read(self, element: Element) -> None:
+        element = _with_control_pair(element)
         if element.letter == "X":
             self.instances[element.name] = element
         if element.instance in self.opaque:
@@ -145,6 +146,13 @@ class _Search:
         while name in self.instances:
             yield self.instances[name]
             name = self.instances[name].instance
+
+
+def _with_control_pair(element: Element) -> Element:
+    """A switch's controlling nets are its gate: pins like the others."""
+    if element.letter != "S" or not element.controls or len(element.nets) != 2:
+        return element
+    return replace(element, nets=(*element.nets, *element.controls[:2]))
 
 
 def _texts(element: Element) -> tuple[str, str]:
