@@ -49,6 +49,8 @@ class Worked:
     connecting: frozenset[int]
     """Clusters without a stiff current, whose states connect voltages."""
     means: Means
+    pulsed: frozenset[str]
+    """Diodes that only carry the charging pulses of a capacitor."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -60,15 +62,15 @@ class _Routed:
     cases: Mapping[str, Sequence[Case]]
 
 
-def work_out(stage: Stage) -> Worked:
-    """Analyse the stage as its branches stand."""
+def work_out(stage: Stage, pulsed: frozenset[str] = frozenset()) -> Worked:
+    """Analyse the stage as its branches stand; `pulsed` names diodes that carry only pulses."""
     voltages = derive_voltages(stage.branches, stage.transformers, stage.positions)
     topology = build_topology(
         stage.positions, stage.branches, stage.transformers, voltages.potentials
     )
     box, port_currents = _first_box(stage, voltages)
     laws = Laws(topology.ties, box)
-    states, too_large, connecting = _all_states(topology, laws)
+    states, too_large, connecting = _all_states(topology, laws, pulsed)
     carriers = find_carriers(stage.branches, stage.transformers)
     routes = find_routes(carriers, topology)
     by_port = [port_cases(port, box) for port in stage.ports]
@@ -94,6 +96,7 @@ def work_out(stage: Stage) -> Worked:
         too_large,
         connecting,
         means,
+        pulsed,
     )
 
 
@@ -140,7 +143,7 @@ def _phase_sets(
 
 
 def _all_states(
-    topology: Topology, laws: Laws
+    topology: Topology, laws: Laws, pulsed: frozenset[str]
 ) -> tuple[list[Sequence[RawState]], frozenset[int], frozenset[int]]:
     states: list[Sequence[RawState]] = []
     too_large, connecting = set(), set()
@@ -149,7 +152,7 @@ def _all_states(
             too_large.add(index)
             states.append(())
             continue
-        found = find_states(cluster, laws)
+        found = find_states(cluster, laws, pulsed)
         if not any(state.on for state in found) and cluster.positions:
             connecting.add(index)
             found = find_connecting_states(cluster, laws)

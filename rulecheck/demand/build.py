@@ -17,7 +17,7 @@ from rulecheck.demand.duty import with_duty
 from rulecheck.demand.evaluate import demand_of
 from rulecheck.demand.gates_off import find_free_shorts, find_interrupted
 from rulecheck.demand.legs import find_bridges, find_hard_commutations, find_legs
-from rulecheck.demand.peak_charged import with_peaks
+from rulecheck.demand.peak_charged import find_peaks, with_peaks
 from rulecheck.demand.readings import feasible
 from rulecheck.demand.states import RawState
 from rulecheck.demand.topology import magnetising_name
@@ -68,8 +68,12 @@ def _first_that_works(stage: Stage) -> tuple[Worked, tuple[str, ...]]:
         if _unclear(tried) < _unclear(best):
             best, assumed = tried, assumed + sentences
             stage = other if reading is _following else stage
-    stage, peaks = with_peaks(best, best.stage, work_out)
-    return (work_out(stage), assumed + peaks) if peaks else (best, assumed)
+    peaks = find_peaks(best, work_out)
+    if not peaks:
+        return best, assumed
+    pulsed = frozenset(name for peak in peaks for name in peak.diodes)
+    stage = with_peaks(best.stage, peaks)
+    return work_out(stage, pulsed), (*assumed, *(peak.sentence for peak in peaks))
 
 
 def _following(worked: Worked, stage: Stage) -> tuple[Stage, tuple[str, ...]]:
@@ -116,7 +120,7 @@ def _positions(
                 found[link.name] = _not_analysed(link.name, _why_not(worked, index))
                 continue
             demand = demand_of(link.position, worked.reading, index, box, settle)
-            if index in worked.connecting:
+            if index in worked.connecting or link.name in worked.pulsed:
                 demand = _pulsed(demand)
             found[link.name] = demand
     for position in worked.topology.tie_positions:

@@ -90,8 +90,13 @@ def _extremes(samples: Sequence[Sample]) -> tuple[Interval, Witness | None, Witn
         return point(0.0), None, None
     low = min(samples, key=lambda s: s.range.low)
     high = max(samples, key=lambda s: s.range.high)
-    span = Interval(low.range.low, high.range.high)
-    return span, _witness(low, low.range.low, False), _witness(high, high.range.high, True)
+    span = Interval(_settled(low.range.low), _settled(high.range.high))
+    return span, _witness(low, span.low, False), _witness(high, span.high, True)
+
+
+def _settled(value: float) -> float:
+    """What rounding leaves of a zero is zero; other values keep twelve digits."""
+    return 0.0 if abs(value) < 1e-9 else float(f"{value:.12g}")
 
 
 def _witness(sample: Sample, value: float, high: bool) -> Witness:

@@ -7,8 +7,8 @@ The stage must work without the diode and its capacitor; then what stands before
 known in every state, and the capacitor settles at the largest.
 """
 
-from collections.abc import Callable
-from dataclasses import replace
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass, replace
 
 from rulecheck.demand.analysis import Worked
 from rulecheck.demand.readings import feasible
@@ -19,27 +19,42 @@ from rulecheck.values import Interval
 WorkOut = Callable[[Stage], Worked]
 
 
-def with_peaks(worked: Worked, stage: Stage, work_out: WorkOut) -> tuple[Stage, tuple[str, ...]]:
-    """The stage with such capacitors' voltages stated, and what was assumed."""
-    sentences: tuple[str, ...] = ()
+@dataclass(frozen=True, slots=True)
+class Peak:
+    """A capacitor that its diodes charge to the largest voltage before them."""
+
+    capacitor: str
+    diodes: tuple[str, ...]
+    voltage: Interval
+
+    @property
+    def sentence(self) -> str:
+        low, high = self.voltage.low, self.voltage.high
+        ends = f"{low:.4g} V" if high - low < 1e-6 * high else f"{low:.4g} V ... {high:.4g} V"
+        names = " and ".join(self.diodes)
+        return f"{self.capacitor}: {ends}, the largest voltage that {names} can charge it to"
+
+
+def find_peaks(worked: Worked, work_out: WorkOut) -> tuple[Peak, ...]:
+    """The undetermined capacitors that settle so; `work_out` analyses a stage."""
+    found = []
     for capacitor in worked.voltages.undetermined:
-        diodes = _charging(stage, capacitor)
+        diodes = _charging(worked.stage, capacitor)
         if not diodes:
             continue
-        rest = _without(stage, capacitor, diodes)
-        peak = _peak(work_out(rest), capacitor, diodes)
-        if peak is None:
-            continue
-        branches = tuple(
-            replace(b, given=peak) if b.name == capacitor.name else b for b in stage.branches
-        )
-        stage = replace(stage, branches=branches)
-        names = " and ".join(p.name for p in diodes)
-        sentences += (
-            f"{capacitor.name}: {peak.low:.4g} V ... {peak.high:.4g} V, the largest voltage "
-            f"that {names} can charge it to",
-        )
-    return stage, sentences
+        rest = _without(worked.stage, capacitor, diodes)
+        voltage = _peak(work_out(rest), capacitor, diodes)
+        if voltage is not None:
+            found.append(Peak(capacitor.name, tuple(p.name for p in diodes), voltage))
+    return tuple(found)
+
+
+def with_peaks(stage: Stage, peaks: Sequence[Peak]) -> Stage:
+    given = {peak.capacitor: peak.voltage for peak in peaks}
+    branches = tuple(
+        replace(b, given=given[b.name]) if b.name in given else b for b in stage.branches
+    )
+    return replace(stage, branches=branches)
 
 
 def _charging(stage: Stage, capacitor: Branch) -> tuple[Position, ...]:

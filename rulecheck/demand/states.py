@@ -41,10 +41,16 @@ class RawState:
     """Forms that must be zero in this state: voltages that it connects."""
 
 
-def find_states(cluster: Cluster, laws: Laws) -> tuple[RawState, ...]:
-    """All legal, not idle states, in the order of the positions."""
+def find_states(
+    cluster: Cluster, laws: Laws, never_on: frozenset[str] = frozenset()
+) -> tuple[RawState, ...]:
+    """All legal, not idle states, in the order of the positions.
+
+    `never_on` names diodes that only carry charging pulses, which no state shows.
+    """
     found = []
-    for on in _without_shorts(cluster, laws):
+    candidates = [link for link in cluster.positions if link.name not in never_on]
+    for on in _without_shorts(candidates, laws):
         solution = solve_state(cluster, frozenset(on))
         legal = all(laws.vanishes(form) for form in solution.contradictions)
         if legal and not _idle(on, solution, laws):
@@ -73,7 +79,7 @@ def _idle(on: Sequence[str], solution: Solution, laws: Laws) -> bool:
     return any(laws.vanishes(solution.on_currents[name]) for name in on)
 
 
-def _without_shorts(cluster: Cluster, laws: Laws) -> Iterator[tuple[str, ...]]:
+def _without_shorts(candidates: Sequence[Link], laws: Laws) -> Iterator[tuple[str, ...]]:
     def closes_no_short(chosen: Sequence[Link]) -> bool:
         ties = Offsets()
         for link in chosen:
@@ -84,7 +90,7 @@ def _without_shorts(cluster: Cluster, laws: Laws) -> Iterator[tuple[str, ...]]:
                 return False
         return True
 
-    return _combinations(cluster.positions, closes_no_short)
+    return _combinations(candidates, closes_no_short)
 
 
 def _combinations(
