@@ -1,0 +1,136 @@
+"""What the facts are collected from, with the look-ups that several subjects need."""
+
+from collections.abc import Iterable, Mapping
+from dataclasses import dataclass
+
+from rulecheck.capability import Capabilities
+from rulecheck.demand import Demands, Group
+from rulecheck.facts.facts import Bounds, Value
+from rulecheck.parts import Datum, Part
+from rulecheck.stage import Position, Stage
+from rulecheck.values import Interval, Span, Unknown, natural_key
+
+
+@dataclass(frozen=True, slots=True)
+class Inputs:
+    """The three products and their indexes; nothing in it is a decision."""
+
+    stage: Stage
+    capabilities: Capabilities
+    demands: Demands
+    part_by_name: Mapping[str, Part]
+    position_by_name: Mapping[str, Position]
+    positions_of_part: Mapping[str, tuple[str, ...]]
+    legs_of_position: Mapping[str, tuple[str, ...]]
+    group_of_position: Mapping[str, Group]
+    devices_at_gate: Mapping[str, tuple[str, ...]]
+    """By merged net of a gate or base: the gated devices driven from it."""
+    parts_at_net: Mapping[str, tuple[str, ...]]
+    """By merged net: everything with a pin there."""
+    voltage_between: Mapping[tuple[str, str], Interval | Unknown]
+    """By merged nets: the first over the second, where a stiff voltage stands between them."""
+    branch_parts: frozenset[str]
+    """The parts that are power branches."""
+    ports_at_net: Mapping[str, tuple[str, ...]]
+
+    def merged(self, net: str) -> str:
+        return self.stage.merged.get(net, net)
+
+    def span_of_parts(self, names: Iterable[str]) -> Span:
+        """The place of the first part that has one; else the netlist's first line."""
+        for name in names:
+            if name in self.part_by_name:
+                return self.part_by_name[name].span
+        return Span(self.stage.netlist, 1)
+
+    def related_spans(self, names: Iterable[str]) -> tuple[Span, ...]:
+        """The places of all parts but the first."""
+        spans = [self.part_by_name[name].span for name in names if name in self.part_by_name]
+        return tuple(dict.fromkeys(spans[1:]))
+
+    def parts_of_positions(self, names: Iterable[str]) -> tuple[str, ...]:
+        known = (self.position_by_name[name] for name in names if name in self.position_by_name)
+        return tuple(dict.fromkeys(part for position in known for part in position.parts))
+
+
+def gather(stage: Stage, capabilities: Capabilities, demands: Demands) -> Inputs:
+    """Index the three products."""
+    parts = {part.name: part for part in stage.parts.parts}
+    positions = {position.name: position for position in stage.positions}
+    return Inputs(
+        stage,
+        capabilities,
+        demands,
+        parts,
+        positions,
+        _grouped((part, p.name) for p in stage.positions for part in p.parts),
+        _grouped(
+            (name, leg.name) for leg in demands.legs for name in (*leg.high, *leg.low, *leg.others)
+        ),
+        {name: group for group in demands.groups for name in group.positions},
+        _grouped(
+            (stage.merged.get(pin.net, pin.net), part.name)
+            for part in stage.parts.parts
+            if part.gated
+            for pin in part.pins
+            if pin.role in ("gate", "base")
+        ),
+        _grouped(
+            (stage.merged.get(pin.net, pin.net), part.name)
+            for part in stage.parts.parts
+            for pin in part.pins
+        ),
+        _stiff_voltages(stage, demands),
+        frozenset(branch.part for branch in stage.branches if branch.part),
+        _grouped(
+            (net, port.name) for port in stage.ports for net in (*port.nets, port.neutral) if net
+        ),
+    )
+
+
+def _stiff_voltages(stage: Stage, demands: Demands) -> dict[tuple[str, str], Interval | Unknown]:
+    ranges = {variable.name: variable.range for variable in demands.variables}
+    found: dict[tuple[str, str], Interval | Unknown] = {}
+    for branch in stage.branches:
+        span = ranges.get(f"v({branch.name.removeprefix('port/')})")
+        if span is not None:
+            found.setdefault((branch.start, branch.end), span)
+            turned = span if isinstance(span, Unknown) else -span
+            found.setdefault((branch.end, branch.start), turned)
+    return found
+
+
+def group_name(positions: Iterable[str]) -> str:
+    """A group is named after its first position, in natural order."""
+    return min(positions, key=natural_key, default="")
+
+
+def _grouped(pairs: Iterable[tuple[str, str]]) -> dict[str, tuple[str, ...]]:
+    found: dict[str, dict[str, None]] = {}
+    for key, value in pairs:
+        found.setdefault(key, {})[value] = None
+    return {key: tuple(values) for key, values in found.items()}
+
+
+def stated_number(part: Part, path: str) -> Value:
+    """A stated figure as one number; of a range the larger magnitude."""
+    datum = part.datum(path)
+    if isinstance(datum, Unknown):
+        return datum
+    return datum.value.magnitude if isinstance(datum.value, Interval) else datum.value
+
+
+def stated_range(part: Part, path: str) -> Value:
+    """A stated figure as a range; a single number is a range of one."""
+    datum = part.datum(path)
+    if isinstance(datum, Datum):
+        value = datum.value
+        return value if isinstance(value, Interval) else Interval(value, value)
+    return datum
+
+
+def at_least(low: float, value: float | Unknown, missing: tuple[Unknown, ...]) -> Value:
+    """A number known exactly, or from below with what is missing."""
+    if not isinstance(value, Unknown):
+        return value
+    return Bounds(Interval(low, float("inf")), missing or (value,))

@@ -1,0 +1,56 @@
+"""Facts of ports: where the stage meets the world."""
+
+from rulecheck.facts.facts import Subject, Value
+from rulecheck.facts.inputs import Inputs
+from rulecheck.facts.terms import SubjectTerm, link, span_of, text, yes_no
+from rulecheck.stage import Port
+from rulecheck.values import Dimension, Interval, Unknown
+
+PORT = SubjectTerm(
+    "port",
+    "Where the stage meets the world, from the sheet or from a source of the netlist.",
+    (
+        text("sort", "`dc`, `ac` or `phases`."),
+        text("stated-in", "`sheet`, or the element of the netlist that serves."),
+        yes_no("voltage-stated", "Somebody fixes its voltage."),
+        yes_no("current-stated", "Somebody fixes its current."),
+        span_of("voltage", Dimension.VOLTAGE, "First net over second; phases: phase to neutral."),
+        span_of("current", Dimension.CURRENT, "Mean or amplitude, out of the first net inwards."),
+        span_of("power", Dimension.POWER, "Power into the stage."),
+        span_of("frequency", Dimension.FREQUENCY, "Its frequency."),
+    ),
+    (link("nets", "net", "Its nets."),),
+)
+
+
+def collect(inputs: Inputs) -> tuple[Subject, ...]:
+    return tuple(_port(inputs, port) for port in inputs.stage.ports)
+
+
+def _port(inputs: Inputs, port: Port) -> Subject:
+    values: dict[str, Value] = {
+        "sort": port.kind.value,
+        "stated-in": port.stated_in,
+        "voltage-stated": port.voltage is not None,
+        "current-stated": port.current is not None,
+        "voltage": _or_derived(inputs, port, "v", "voltage", port.voltage),
+        "current": _or_derived(inputs, port, "i", "draws", port.current),
+        "power": _stated(port, "power", port.power),
+        "frequency": _stated(port, "frequency", port.frequency),
+    }
+    nets = tuple(dict.fromkeys(net for net in (*port.nets, port.neutral) if net))
+    return Subject("port", port.name, values, {"nets": nets}, (), nets, port.span)
+
+
+def _or_derived(
+    inputs: Inputs, port: Port, letter: str, key: str, stated: Interval | None
+) -> Interval | Unknown:
+    if stated is not None:
+        return stated
+    name = f"{letter}({port.name})"
+    found = next((v.range for v in inputs.demands.variables if v.name == name), None)
+    return _stated(port, key, None) if found is None else found
+
+
+def _stated(port: Port, key: str, value: Interval | None) -> Interval | Unknown:
+    return value or Unknown(f"{key} of port {port.name}", f"ports: {{{port.name}: {{{key}: ...}}}}")

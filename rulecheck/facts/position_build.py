@@ -1,0 +1,93 @@
+"""How a position is put together: devices in series and side by side, diodes that shield.
+
+Q1 | Q2 between BUS and SW, both SW-N100-7       parallel-devices 2, parallel-alike yes
+Q1 then D1 from BUS to SW, D2 across both        series-diode yes
+"""
+
+from collections.abc import Mapping, Sequence
+
+from rulecheck.facts.facts import Bounds, Value
+from rulecheck.facts.inputs import Inputs
+from rulecheck.parts import Conduction, Kind, Part
+from rulecheck.stage import Role
+from rulecheck.values import Interval, Unknown
+
+
+def main_ends(inputs: Inputs, part: Part) -> frozenset[str]:
+    """The merged nets between which a device conducts."""
+    return frozenset(inputs.merged(net) for edge in part.edges for net in (edge.tail, edge.head))
+
+
+def shared_voltage(inputs: Inputs, chain: Sequence[str]) -> bool:
+    """True where every device of the chain has a part of role sharing or snubber across it."""
+    across = [
+        frozenset(inputs.merged(net) for net in inputs.part_by_name[name].nets)
+        for name, role in inputs.stage.roles.items()
+        if role in (Role.SHARING, Role.SNUBBER) and name in inputs.part_by_name
+    ]
+    return all(
+        any(len(ends) == 2 and ends == nets for nets in across)
+        for ends in (main_ends(inputs, inputs.part_by_name[name]) for name in chain)
+    )
+
+
+def parallel_devices(inputs: Inputs, devices: Sequence[Part]) -> int:
+    """The most gated devices between the same two nets."""
+    return max((len(side) for side in _side_by_side(inputs, devices)), default=0)
+
+
+def parallel_alike(inputs: Inputs, devices: Sequence[Part]) -> bool:
+    return all(
+        len({(part.kind, part.text.casefold()) for part in side}) == 1
+        for side in _side_by_side(inputs, devices)
+    )
+
+
+def _side_by_side(inputs: Inputs, devices: Sequence[Part]) -> list[list[Part]]:
+    groups: dict[tuple[frozenset[str], bool], list[Part]] = {}
+    for part in devices:
+        key = (main_ends(inputs, part), part.gated)
+        groups.setdefault(key, []).append(part)
+    return list(groups.values())
+
+
+def peak_current(devices: Sequence[Part]) -> Value:
+    """The sum of the peak ratings of gated devices, which assumes that they share.
+
+    Devices in series make the sum too large, so a position with them has no peak rating here
+    unless all state one; then the smallest counts once.
+    """
+    gated = [device for device in devices if device.gated]
+    ends = {frozenset((edge.tail, edge.head)) for device in gated for edge in device.edges}
+    stated = [device.datum("ratings.peak-current") for device in gated]
+    known = [item.value for item in stated if not isinstance(item, Unknown)]
+    numbers = [value.magnitude if isinstance(value, Interval) else value for value in known]
+    total = sum(numbers) if len(ends) <= 1 else min(numbers, default=0.0)
+    missing = tuple(item for item in stated if isinstance(item, Unknown))
+    if not missing:
+        return total
+    return Bounds(Interval(total if len(ends) <= 1 else 0.0, float("inf")), missing)
+
+
+def series_diode(path: Sequence[str], parts: Mapping[str, Part]) -> bool:
+    """True where current through a gate's device also has to pass a diode."""
+    on_path = [parts[name] for name in path]
+    return any(part.gated for part in on_path) and any(part.kind is Kind.DIODE for part in on_path)
+
+
+def free_path_doubled(inputs: Inputs, devices: Sequence[Part]) -> bool:
+    """True where a diode lies across a transistor whose own free path runs the same way."""
+    diodes = {_free_ends(inputs, part) for part in devices if part.kind is Kind.DIODE}
+    return any(part.gated and bool(_free_ends(inputs, part) & _all(diodes)) for part in devices)
+
+
+def _free_ends(inputs: Inputs, part: Part) -> frozenset[tuple[str, str]]:
+    return frozenset(
+        (inputs.merged(edge.tail), inputs.merged(edge.head))
+        for edge in part.edges
+        if edge.conduction is Conduction.FREE
+    )
+
+
+def _all(sets: set[frozenset[tuple[str, str]]]) -> frozenset[tuple[str, str]]:
+    return frozenset().union(*sets) if sets else frozenset()

@@ -1,0 +1,53 @@
+"""The vocabulary: every kind of subject that a rule may judge, in one literal table."""
+
+from collections.abc import Mapping
+
+from rulecheck.facts.free_path_facts import FREE_PATH
+from rulecheck.facts.gate_drive_facts import GATE_DRIVE
+from rulecheck.facts.leg_facts import BRIDGE, LEG
+from rulecheck.facts.net_facts import NET, STAGE
+from rulecheck.facts.part_facts import PART
+from rulecheck.facts.passive_facts import CAPACITOR, INDUCTOR, RESISTOR
+from rulecheck.facts.port_facts import PORT
+from rulecheck.facts.position_terms import POSITION
+from rulecheck.facts.state_facts import GROUP, SWITCH_STATE
+from rulecheck.facts.terms import SubjectTerm
+
+VOCABULARY: Mapping[str, SubjectTerm] = {
+    term.name: term
+    for term in (
+        STAGE,
+        NET,
+        PART,
+        POSITION,
+        LEG,
+        BRIDGE,
+        GROUP,
+        SWITCH_STATE,
+        GATE_DRIVE,
+        INDUCTOR,
+        CAPACITOR,
+        RESISTOR,
+        PORT,
+        FREE_PATH,
+    )
+}
+
+EVERY_SUBJECT = ("name", "Its name.")
+"""The field that every subject has besides its own."""
+
+
+def vocabulary_text() -> str:
+    """The whole vocabulary as a listing: subject, fields with unit and sentence, links."""
+    return "\n".join(_subject_text(term) for term in VOCABULARY.values())
+
+
+def _subject_text(term: SubjectTerm) -> str:
+    lines = [f"{term.name}: {term.sentence}"]
+    lines += [_row(field.name, field.unit, field.sentence) for field in term.fields]
+    lines += [_row(link.name, f"-> {link.to}", link.sentence) for link in term.links]
+    return "\n".join(lines) + "\n"
+
+
+def _row(name: str, what: str, sentence: str) -> str:
+    return f"  {name:<24} {what:<12} {sentence}"
