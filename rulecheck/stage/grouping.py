@@ -43,8 +43,19 @@ def group_devices(ends: Mapping[str, tuple[str, str]], joints: frozenset[str]) -
             pieces.append(Piece((outer[0], outer[1]), names))
         else:
             pieces += _split(names, ends, frozenset(outer))
-    pieces.sort(key=lambda piece: natural_key(piece.parts[0]))
-    return Grouping(tuple(pieces), tuple(sorted(dangling, key=natural_key)))
+    return Grouping(_in_parallel(pieces), tuple(sorted(dangling, key=natural_key)))
+
+
+def _in_parallel(pieces: Iterable[Piece]) -> tuple[Piece, ...]:
+    """Pieces between the same two nets act as one switch."""
+    by_pair: dict[tuple[str, ...], list[str]] = {}
+    for piece in pieces:
+        by_pair.setdefault(tuple(sorted(piece.terminals)), []).extend(piece.parts)
+    merged = [
+        Piece((pair[0], pair[1]), tuple(sorted(parts, key=natural_key)))
+        for pair, parts in by_pair.items()
+    ]
+    return tuple(sorted(merged, key=lambda piece: natural_key(piece.parts[0])))
 
 
 def _between_joints(
