@@ -1,6 +1,7 @@
 """Whole netlists through the public interface, for checks against published figures.
 
->>> study = Study("M1 IN g SW SW FET\\nD1 0 SW DX\\nL1 SW OUT 1m", sheet(dc("in", "IN", voltage=48)))
+>>> cards = "M1 IN g SW SW FET\\nD1 0 SW DX\\nL1 SW OUT 1m"
+>>> study = Study(cards, sheet(dc("in", "IN", voltage=48)))
 >>> study.expect("M1", off=(48, 48), quadrants="I")
 
 A card list needs no title, no models and no `.end`; `sheet` joins ports written with `dc`, `ac`
