@@ -10,8 +10,8 @@ from dataclasses import dataclass, replace
 
 from rulecheck.netlist import Element
 from rulecheck.parts.edges import find_edges
-from rulecheck.parts.part import Kind, Part, Pin
-from rulecheck.parts.part_data import StatedDevice, StatedPart
+from rulecheck.parts.part import Core, Kind, Part, Pin
+from rulecheck.parts.part_data import StatedDevice, StatedPart, StatedWinding
 from rulecheck.parts.reading import PartReading
 from rulecheck.parts.roles import pair_up
 from rulecheck.parts.stated import gather, multiplied
@@ -25,7 +25,8 @@ _UNNAMED = frozenset("RCLVI")
 @dataclass(frozen=True, slots=True)
 class Built:
     parts: tuple[Part, ...]
-    problems: tuple[Problem, ...] = ()
+    problems: tuple[Problem, ...]
+    cores: tuple[Core, ...] = ()
 
 
 def build_part(
@@ -50,32 +51,68 @@ def build_part(
         instance_chain=element.instance_chain,
     )
     part = replace(part, edges=find_edges(part))
-    inner = [_inner(part, device, applied) for device in applied.devices] if applied else []
-    return Built((part, *inner), figures.problems)
+    if applied is None:
+        return Built((part,), figures.problems)
+    inner = [_device(part, device, applied) for device in applied.devices]
+    wound = [_winding(part, winding, applied) for winding in applied.windings]
+    return Built((part, *inner, *wound), figures.problems, _core(part, applied))
 
 
-def _inner(module: Part, device: StatedDevice, stated: StatedPart) -> Part:
+def _device(module: Part, device: StatedDevice, stated: StatedPart) -> Part:
     nets = {pin.role: pin.net for pin in module.pins}
-    pins = tuple(
-        Pin(role, nets[pin.lower()]) for role, pin in device.pins.items() if pin.lower() in nets
-    )
-    name = f"{module.name}.{device.name}"
-    part = Part(
-        name=name,
+    pins = tuple(Pin(role, nets[pin]) for role, pin in device.pins.items() if pin in nets)
+    part = replace(
+        _inside(module, device.name, stated),
         kind=device.kind,
         pins=pins,
-        span=module.span,
-        value=_no_value(name),
-        text=module.text,
         data=multiplied(device.data, module.multiplicity),
         facts=device.facts,
-        settle_in=f"device {device.name} of {_settled_by(stated)}",
-        multiplicity=module.multiplicity,
-        module=module.name,
-        instance=module.instance,
-        instance_chain=module.instance_chain,
     )
     return replace(part, edges=find_edges(part))
+
+
+def _winding(whole: Part, winding: StatedWinding, stated: StatedPart) -> Part:
+    """Inductances on one core are as the squares of their turns."""
+    nets = {pin.role: pin.net for pin in whole.pins}
+    ends = (("plus", winding.dot), ("minus", winding.other))
+    part = _inside(whole, winding.name, stated)
+    ratio = winding.turns / stated.windings[0].turns
+    henry = None if stated.inductance is None else stated.inductance * ratio**2
+    return replace(
+        part,
+        kind=Kind.INDUCTOR,
+        pins=tuple(Pin(role, nets[pin]) for role, pin in ends if pin in nets),
+        value=Unknown(f"inductance of {part.name}", f"inductance of {_settled_by(stated)}")
+        if henry is None
+        else henry,
+    )
+
+
+def _core(whole: Part, stated: StatedPart) -> tuple[Core, ...]:
+    windings = stated.windings
+    if not windings:
+        return ()
+    names = tuple(f"{whole.name}.{winding.name}" for winding in windings)
+    turns = tuple(winding.turns / windings[0].turns for winding in windings)
+    return (Core(whole.name, names, turns, whole.span),)
+
+
+def _inside(whole: Part, name: str, stated: StatedPart) -> Part:
+    """A part inside another one, before its kind and pins are given."""
+    full = f"{whole.name}.{name}"
+    return Part(
+        name=full,
+        kind=Kind.OTHER,
+        pins=(),
+        span=whole.span,
+        value=_no_value(full),
+        text=whole.text,
+        settle_in=f"{name} of {_settled_by(stated)}",
+        multiplicity=whole.multiplicity,
+        module=whole.name,
+        instance=whole.instance,
+        instance_chain=whole.instance_chain,
+    )
 
 
 def _value(element: Element, reading: PartReading, multiplicity: float) -> float | Unknown:

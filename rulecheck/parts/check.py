@@ -28,9 +28,9 @@ def _check_list(parts: PartList) -> Iterator[str]:
         if len(wound) < 2 or any(p is None or p.kind is not Kind.INDUCTOR for p in wound):
             yield f"core {core.name} is not wound of inductors"
     yield from (
-        f"{part.name} is of module {part.module}, which is no module"
+        f"{part.name} is inside {part.module}, which has no inside"
         for part in parts.parts
-        if part.module and parts.by_name[part.module].kind is not Kind.MODULE
+        if part.module and parts.by_name[part.module].kind not in (Kind.MODULE, Kind.WINDING_SET)
     )
 
 

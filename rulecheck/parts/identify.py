@@ -15,7 +15,7 @@ from rulecheck.parts.classify import classify
 from rulecheck.parts.cores import find_cores
 from rulecheck.parts.macro import read_macro
 from rulecheck.parts.models import read_as_stated
-from rulecheck.parts.part import Kind, Part, PartList
+from rulecheck.parts.part import Core, Kind, Part, PartList
 from rulecheck.parts.part_data import NO_PART_DATA, PartData, StatedPart
 from rulecheck.parts.pinning import find_roles, split_nets
 from rulecheck.parts.reading import PartReading, not_understood
@@ -41,7 +41,7 @@ def identify_parts(circuit: Circuit, part_data: PartData = NO_PART_DATA) -> Part
     return PartList(
         file=circuit.file,
         parts=tuple(search.parts),
-        cores=cores.cores,
+        cores=(*search.cores, *cores.cores),
         ground=GROUND,
         grounds=circuit.grounds,
         not_understood=(*unknown, *circuit.unread),
@@ -59,6 +59,8 @@ class _Search:
     part_data: PartData
     parts: list[Part] = field(default_factory=list)
     couplings: list[Element] = field(default_factory=list)
+    cores: list[Core] = field(default_factory=list)
+    """Of winding sets that part data describes."""
     problems: list[Problem] = field(default_factory=list)
     assumed: Assumptions = field(default_factory=Assumptions)
     instances: dict[str, Element] = field(default_factory=dict)
@@ -137,6 +139,7 @@ class _Search:
         built = build_part(element, reading, stated, times)
         self.parts += built.parts
         self.problems += built.problems
+        self.cores += built.cores
         self.assumed.add(element.name, reading.assumed)
         if times != 1.0:
             self.assumed.add(element.name, f"read as {times:g} devices in parallel (m)")

@@ -21,10 +21,20 @@ class StatedDevice:
     name: str
     kind: Kind
     pins: Mapping[str, str]
-    """Role -> pin of the module, as written."""
+    """Role -> pin of the module, in lower case."""
     data: Mapping[str, Datum]
     facts: Mapping[str, str]
     span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class StatedWinding:
+    """One winding of a winding set between two of its pins, in lower case; the dot comes first."""
+
+    name: str
+    dot: str
+    other: str
+    turns: float
 
 
 @dataclass(frozen=True, slots=True)
@@ -39,8 +49,11 @@ class StatedPart:
     """Role -> port or number of the pin; empty where `pins` is a list or is left out."""
     data: Mapping[str, Datum]
     facts: Mapping[str, str]
-    devices: tuple[StatedDevice, ...]
     span: Span
+    devices: tuple[StatedDevice, ...] = ()
+    windings: tuple[StatedWinding, ...] = ()
+    inductance: float | None = None
+    """Henry, of the first winding."""
 
     @property
     def literal_length(self) -> int:

@@ -13,6 +13,8 @@ from rulecheck.reading.quantities import (
     Capacitance,
     Charge,
     Current,
+    Inductance,
+    Plain,
     Power,
     Resistance,
     Temperature,
@@ -97,6 +99,13 @@ class DeviceEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, renam
     diode: DiodeEntry | None = None
 
 
+class WindingEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename="kebab"):
+    """A winding of a winding set: the pin with the dot, the other pin, and the turns."""
+
+    pins: list[str | int]
+    turns: Plain
+
+
 class PartEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename="kebab"):
     """A part; `pins` is the roles in netlist order, or the port or pin number of each role."""
 
@@ -107,6 +116,8 @@ class PartEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename=
     diode: DiodeEntry | None = None
     driver: DriverEntry | None = None
     devices: dict[str, DeviceEntry] | None = None
+    windings: dict[str, WindingEntry] | None = None
+    inductance: Inductance | None = None
 
 
 class PartDataFile(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename="kebab"):

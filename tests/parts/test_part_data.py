@@ -106,7 +106,20 @@ MISTAKES = {
     "module pin that is none": (
         'parts:\n  "A": {kind: module, pins: [plus, minus], devices: {d: {kind: diode, '
         "pins: {anode: minus, cathode: pluss}}}}\n",
-        "error: module 'A' has no pin 'pluss'; did you mean 'plus'?",
+        "error: part 'A' has no pin 'pluss'; did you mean 'plus'?",
+    ),
+    "winding set without windings": (
+        'parts:\n  "A": {kind: winding-set, pins: [a, b]}\n',
+        ":2:3: error: winding-set 'A' lists no windings; list them under windings:",
+    ),
+    "winding of one pin": (
+        'parts:\n  "A": {kind: winding-set, pins: [a, b], windings: {p: {pins: [a], turns: 1}}}\n',
+        "error: a winding has two pins; here are 1; name the pin with the dot, then the other",
+    ),
+    "winding without turns": (
+        'parts:\n  "A": {kind: winding-set, pins: [a, b], windings: '
+        "{p: {pins: [a, b], turns: 0}}}\n",
+        "error: turns are above zero",
     ),
     "devices of no module": (
         'parts:\n  "A": {kind: diode, devices: {d: {kind: diode, pins: {}}}}\n',

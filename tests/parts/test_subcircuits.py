@@ -129,7 +129,7 @@ def test_a_module_becomes_its_devices_between_its_pins() -> None:
 def test_what_is_missing_in_a_module_names_the_device() -> None:
     blocks = module().by_name["X1.low"].edges[0].blocks
     assert getattr(blocks, "settle", "") == (
-        "ratings.blocking of device low of part HB-1200-* (in hut.parts.yaml)"
+        "ratings.blocking of low of part HB-1200-* (in hut.parts.yaml)"
     )
 
 
@@ -141,3 +141,33 @@ def test_a_module_with_too_few_nets_is_an_error() -> None:
     found = identified([card("X1", "BUS SW PGND", "HB-1200-200")], MODULE)
     assert found.by_name["X1"].kind is Kind.UNKNOWN
     assert "lists 5 pins" in found.problems[0].what
+
+
+TRANSFORMER = """\
+parts:
+  "TX-48-*":
+    kind: winding-set
+    pins: [p1, p2, s1, s2, s3]
+    windings:
+      primary: {pins: [p1, p2], turns: 4}
+      upper: {pins: [s1, s2], turns: 32}
+      lower: {pins: [s2, s3], turns: 32}
+    inductance: 40 uH
+    ratings: {current: 90 A}
+"""
+
+
+def test_a_winding_set_becomes_inductors_on_a_core() -> None:
+    found = identified([card("T1", "A B C D E", "TX-48-400")], TRANSFORMER)
+    (core,) = found.cores
+    assert (core.name, core.turns) == ("T1", (1.0, 8.0, 8.0))
+    upper = found.by_name["T1.upper"]
+    assert (core.windings[1], upper.kind, upper.nets) == ("T1.upper", Kind.INDUCTOR, ("C", "D"))
+    assert (found.by_name["T1.primary"].value, upper.value) == (40e-6, 64 * 40e-6)
+
+
+def test_a_winding_set_without_inductance_says_what_is_missing() -> None:
+    entry = TRANSFORMER.replace("    inductance: 40 uH\n", "")
+    found = identified([card("T1", "A B C D E", "TX-48-400")], entry)
+    value = found.by_name["T1.upper"].value
+    assert getattr(value, "settle", "") == "inductance of part TX-48-* (in hut.parts.yaml)"
