@@ -283,6 +283,9 @@ def _undetermined(worked: Worked) -> tuple[Undetermined, ...]:
         for name in form.names
         if worked.topology.clusters[index].positions
     }
+    means = worked.box.means
+    used |= {name for known in used & means.keys() for name in means[known].names}
+    used -= means.keys()
     alternating = {f"i({part})" for part in alternating_parts(worked.stage)}
     found = []
     for name, what, line in _lines(worked.stage):

@@ -111,8 +111,9 @@ def _leg(worked: Worked, index: int, cluster: Cluster, midpoint: str) -> Leg | N
 
 
 def rails_named(rails: Sequence[str], kind: str) -> tuple[str, ...]:
-    """A selector leg has all its lines as rails, other legs the outer two."""
-    return tuple(rails) if kind == "selector leg" else (rails[0], rails[-1])
+    """A leg among lines has all of them as rails, other legs the outer two."""
+    lines = kind in ("selector leg", "rectifier leg")
+    return tuple(rails) if lines else (rails[0], rails[-1])
 
 
 def _rails(worked: Worked, graph: "nx.MultiGraph[str]", midpoint: str) -> list[str]:
@@ -178,11 +179,11 @@ def _levels(worked: Worked, index: int, midpoint: str, rails: Sequence[str]) -> 
 def _kind(
     worked: Worked, ends: Sequence[Position], rails: Sequence[str], others: Sequence[str]
 ) -> str:
+    gated = sum(position.gated for position in ends)
     if len(rails) > 2 and _alternate(worked, rails):
-        return "selector leg"
+        return "selector leg" if gated else "rectifier leg"
     if others or len(rails) > 2 or len(ends) > 2:
         return "multilevel leg"
-    gated = sum(position.gated for position in ends)
     return {2: "half-bridge leg", 1: "chopper cell"}.get(gated, "rectifier leg")
 
 

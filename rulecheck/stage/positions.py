@@ -15,6 +15,10 @@ from rulecheck.stage.position import Position
 from rulecheck.values import natural_key
 
 
+_CONDUCTING = frozenset({Conduction.FREE, Conduction.GATED})
+_FREE = frozenset({Conduction.FREE})
+
+
 def build_positions(
     pieces: Iterable[Piece],
     parts: Mapping[str, Part],
@@ -48,8 +52,8 @@ def _position(
         end,
         edges,
         any(part.gated for part in devices),
-        _reaches(edges, start, end, {Conduction.FREE}),
-        _reaches(edges, end, start, {Conduction.FREE}),
+        _reaches(edges, start, end, _FREE),
+        _reaches(edges, end, start, _FREE),
         named.span,
     )
 
@@ -62,14 +66,13 @@ def _direction(
     potentials: Mapping[str, float],
 ) -> tuple[str, str]:
     first, second = terminals
-    conducting = {Conduction.FREE, Conduction.GATED}
-    free = [_reaches(edges, a, b, {Conduction.FREE}) for a, b in ((first, second), (second, first))]
-    carries = [_reaches(edges, a, b, conducting) for a, b in ((first, second), (second, first))]
-    gated = any(edge.conduction is Conduction.GATED for edge in edges)
-    if gated and free[0] != free[1]:
-        return (second, first) if free[0] else (first, second)
+    ways = ((first, second), (second, first))
+    gated = [_follows_gate(edges, a, b) for a, b in ways]
+    if gated[0] != gated[1]:
+        return ways[0] if gated[0] else ways[1]
+    carries = [_reaches(edges, a, b, _CONDUCTING) for a, b in ways]
     if carries[0] != carries[1]:
-        return (first, second) if carries[0] else (second, first)
+        return ways[0] if carries[0] else ways[1]
     return _by_potential(first, second, named, merged, potentials)
 
 
@@ -87,7 +90,21 @@ def _by_potential(
     return (second, first) if second in own and first not in own[:1] else (first, second)
 
 
-def _reaches(edges: Sequence[Edge], start: str, end: str, how: set[Conduction]) -> bool:
+def _follows_gate(edges: Sequence[Edge], start: str, end: str) -> bool:
+    """True where a current from start to end can flow through some gated edge."""
+    inward = [edge for edge in edges if end not in (edge.tail, edge.head)]
+    outward = [edge for edge in edges if start not in (edge.tail, edge.head)]
+    return any(
+        edge.conduction is Conduction.GATED
+        and edge.tail != end
+        and edge.head != start
+        and _reaches(inward, start, edge.tail, _CONDUCTING)
+        and _reaches(outward, edge.head, end, _CONDUCTING)
+        for edge in edges
+    )
+
+
+def _reaches(edges: Sequence[Edge], start: str, end: str, how: frozenset[Conduction]) -> bool:
     graph: nx.DiGraph[str] = nx.DiGraph()
     graph.add_nodes_from((start, end))
     graph.add_edges_from((e.tail, e.head) for e in edges if e.conduction in how)
