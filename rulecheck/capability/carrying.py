@@ -42,8 +42,9 @@ class _Lane:
 
 def find_carrying(edges: Sequence[Edge], start: str, end: str) -> Carrying:
     """What can flow from `start` to `end`: with all gates on, and with none on; in amperes."""
-    conducting = [edge for edge in edges if edge.conduction is not Conduction.NEVER]
-    free = [edge for edge in edges if edge.conduction is Conduction.FREE]
+    onward = [edge for edge in edges if edge.head != start and edge.tail != end]
+    conducting = [edge for edge in onward if edge.conduction is not Conduction.NEVER]
+    free = [edge for edge in onward if edge.conduction is Conduction.FREE]
     carried_by = _path(conducting, start, end)
     if not carried_by:
         return Carrying(False, False, 0.0, 0.0, (), ())
@@ -96,6 +97,8 @@ def _flow(lanes: Mapping[Pair, _Lane], start: str, end: str, wide: frozenset[Pai
     reaches it.
     """
     limit = 1.0 + sum(lane.amperes for lane in lanes.values())
+    if list(lanes) == [(start, end)]:
+        return limit if wide else lanes[start, end].amperes
     graph: nx.DiGraph[str] = nx.DiGraph()
     for pair, lane in lanes.items():
         graph.add_edge(*pair, capacity=limit if pair in wide else lane.amperes)
@@ -111,10 +114,10 @@ def _missing(lanes: Mapping[Pair, _Lane], start: str, end: str) -> tuple[Unknown
     decisive: set[Pair] = set()
     for path in _paths(lanes, start, end):
         ample = frozenset(pair for pair in path if lanes[pair].missing)
-        for pair in ample - decisive:
-            without = _flow(lanes, start, end, ample - {pair})
-            if _flow(lanes, start, end, ample) > without:
-                decisive.add(pair)
+        flow = _flow(lanes, start, end, ample)
+        decisive |= {
+            pair for pair in ample - decisive if flow > _flow(lanes, start, end, ample - {pair})
+        }
     found = {rating for pair in decisive or lanes for rating in lanes[pair].missing}
     return tuple(sorted(found, key=lambda rating: natural_key(rating.what)))
 

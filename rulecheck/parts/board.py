@@ -67,6 +67,7 @@ KIND_WORDS: Mapping[str, tuple[Kind, Mapping[str, str]]] = {
     "THYRISTOR": (Kind.THYRISTOR, {}),
     "TRIAC": (Kind.TRIAC, {}),
     "ZENER": (Kind.ZENER, {}),
+    "TVS": (Kind.ZENER, {}),
     "DIODE": (Kind.DIODE, {}),
     "SCHOTTKY": (Kind.DIODE, {}),
     "LED": (Kind.DIODE, {}),

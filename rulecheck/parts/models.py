@@ -39,8 +39,9 @@ MODEL_KINDS: Mapping[str, Mapping[str, Kind]] = {
 """By element letter, then by model type."""
 
 CLAMP_VOLTAGE = 60.0
-"""Volts; a diode with a lower breakdown and a name that says so is read as a zener diode."""
-_SAYS_CLAMP = re.compile(r"ZENER|TVS|(?:^|[^A-Z])D?ZD?\d|^Z|_Z|-Z")
+"""Volts; a diode with a lower breakdown and a name that hints at it is read as a zener diode."""
+_SAYS_CLAMP = re.compile(r"ZENER|TVS")
+_HINTS_CLAMP = re.compile(r"(?:^|[^A-Z])D?ZD?\d|^Z|_Z|-Z")
 
 
 def read_by_model(element: Element, model: Model) -> PartReading:
@@ -60,11 +61,13 @@ def read_by_model(element: Element, model: Model) -> PartReading:
 
 
 def _is_clamp(element: Element, model: Model) -> bool:
-    """By name and breakdown together: the breakdown of a rectifier's model is its rating."""
+    """By name, or by a hint in it and a breakdown too low for the rating of a rectifier."""
     breakdown = model.parameters.get("bv")
     names = (model.name.upper(), element.name.rpartition(".")[2].upper())
+    if any(_SAYS_CLAMP.search(name) for name in names):
+        return True
     low = isinstance(breakdown, float | int) and 0.0 < breakdown < CLAMP_VOLTAGE
-    return low and any(_SAYS_CLAMP.search(name) for name in names)
+    return low and any(_HINTS_CLAMP.search(name) for name in names)
 
 
 def _with_bulk(element: Element, kind: Kind) -> PartReading:

@@ -20,6 +20,10 @@ MODELS = {
         card("D1", "A K", "ZD12", kind=model("ZD12", "D", bv=12.0)),
         "zener",
     ),
+    "surge clamp by name": (
+        card("D1", "A K", "TVS-400", kind=model("TVS-400", "D", bv=400.0)),
+        "zener",
+    ),
     "NPN": (card("Q1", "C B E", "T", kind=model("T", "NPN")), "bjt"),
     "NPN with substrate": (card("Q1", "C B E 0", "T", kind=model("T", "NPN")), "bjt"),
     "PNP": (card("Q1", "C B E", "T", kind=model("T", "PNP")), "bjt"),
