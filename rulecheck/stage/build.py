@@ -4,7 +4,7 @@ import difflib
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, replace
 
-from rulecheck.parts import Kind, PartList
+from rulecheck.parts import Kind, Part, PartList
 from rulecheck.stage.branches import build_transformers, part_branches, port_branches
 from rulecheck.stage.gate_pulse import GatePulse
 from rulecheck.stage.gate_region import GateRegion, find_gate_region
@@ -192,21 +192,32 @@ def _leg_switching(layout: Layout, sheet: Sheet) -> dict[str, Switching]:
 
 
 def _kept_assumptions(known: _Sorted) -> tuple[str, ...]:
-    drives = sorted(
-        (
-            part.name
-            for part in known.layout.parts.parts
-            if is_semiconductor(part) and part.name in known.region.parts
-        ),
-        key=natural_key,
+    lines = list(known.peripheral.assumed)
+    for part in sorted(known.layout.parts.parts, key=lambda p: natural_key(p.name)):
+        if not is_semiconductor(part):
+            continue
+        if part.name in known.region.parts:
+            lines.append(f"{part.name} read as part of a gate drive")
+        elif _is_signal(known, part):
+            lines.append(f"{part.name} read as a signal part (no port feeds its ends)")
+    return tuple(lines)
+
+
+def _is_signal(known: _Sorted, part: Part) -> bool:
+    """Neither end is reached from a port, ground left out."""
+    ends = set(main_nets(known.layout, part)) - known.layout.grounds
+    return (
+        part.name not in known.switches
+        and part.name not in known.aside
+        and bool(ends)
+        and not ends & known.live
     )
-    return (*known.peripheral.assumed, *(f"{name} read as part of a gate drive" for name in drives))
 
 
 def _not_covered(known: _Sorted, grouping: Grouping) -> tuple[str, ...]:
     lines = []
     for part in known.layout.parts.parts:
-        if not is_semiconductor(part) or part.name in known.aside:
+        if not is_semiconductor(part) or part.name in known.aside or _is_signal(known, part):
             continue
         if len(main_nets(known.layout, part)) < 2:
             lines.append(f"{part.name}: both its ends are on one net, so it is no switch position")

@@ -14,7 +14,6 @@ from rulecheck.stage.grouping import Piece
 from rulecheck.stage.position import Position
 from rulecheck.values import natural_key
 
-
 _CONDUCTING = frozenset({Conduction.FREE, Conduction.GATED})
 _FREE = frozenset({Conduction.FREE})
 
