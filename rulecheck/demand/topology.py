@@ -125,13 +125,12 @@ def _injections(
     branches: Sequence[Branch], transformers: Sequence[Transformer], rigid: Offsets
 ) -> dict[str, AffineForm]:
     """Current that current branches and magnetising inductances drive into each island."""
-    into: dict[str, AffineForm] = {}
+    driven: dict[str, list[AffineForm]] = {}
 
     def drive(name: str, start: str, end: str) -> None:
         form = variable(name)
-        for net, signed in ((start, -form), (end, form)):
-            root = rigid.root(net)
-            into[root] = into.get(root, AffineForm()) + signed
+        driven.setdefault(rigid.root(start), []).append(-form)
+        driven.setdefault(rigid.root(end), []).append(form)
 
     for branch in branches:
         if branch.kind is BranchKind.CURRENT:
@@ -139,7 +138,7 @@ def _injections(
     for core in transformers:
         if not core.ideal:
             drive(magnetising_name(core), *core.windings[0])
-    return into
+    return {root: total_of(forms) for root, forms in driven.items()}
 
 
 def _islands(links: Iterable[Link]) -> set[str]:
