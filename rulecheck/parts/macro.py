@@ -12,6 +12,7 @@ from dataclasses import dataclass
 
 from rulecheck.netlist import Element, Subcircuit
 from rulecheck.parts.edges import POLARITY
+from rulecheck.parts.models import is_p_channel
 from rulecheck.parts.part import Kind
 from rulecheck.parts.reading import PartReading
 from rulecheck.parts.roles import PINOUTS, role_of
@@ -84,11 +85,7 @@ _Settled = tuple[Kind, Mapping[str, str], str]
 
 
 def _field_effect(macro: _Macro) -> _Settled:
-    p_channel = any(
-        e.model is not None
-        and (e.model.type == "PMOS" or (e.model.type == "VDMOS" and "pchan" in e.model.parameters))
-        for e in macro.body
-    )
+    p_channel = any(e.model is not None and is_p_channel(e.model) for e in macro.body)
     if p_channel or macro.has_diode("drain", "source"):
         return Kind.P_MOSFET, {}, ""
     if macro.has_model("NMOS", "VDMOS") or macro.has_diode("source", "drain"):

@@ -49,7 +49,7 @@ def read_by_model(element: Element, model: Model) -> PartReading:
     kind = MODEL_KINDS.get(element.letter, {}).get(model.type)
     if kind is None:
         return not_understood(element)
-    if model.type == "VDMOS" and "pchan" in model.parameters:
+    if is_p_channel(model):
         kind = Kind.P_MOSFET
     if kind is Kind.DIODE and _is_clamp(element, model):
         return read_as(element, Kind.ZENER, f"read as a zener diode ({model.name})")
@@ -58,6 +58,11 @@ def read_by_model(element: Element, model: Model) -> PartReading:
     if model.type in ("NMOS", "PMOS"):
         return _with_bulk(element, kind)
     return read_as(element, kind)
+
+
+def is_p_channel(model: Model) -> bool:
+    """A vertical MOSFET's model says so by a bare word among its parameters."""
+    return model.type == "PMOS" or (model.type == "VDMOS" and "pchan" in model.parameters)
 
 
 def _is_clamp(element: Element, model: Model) -> bool:

@@ -78,18 +78,32 @@ SIGNAL_ROLES: Roles = (
 """Roles of drivers, isolators and controllers that a later step looks for."""
 
 
+_DRIVER_PINS: Mapping[str, str] = {
+    **dict.fromkeys(("vcc", "vdd"), "supply"),
+    **dict.fromkeys(("gnd", "com", "vss"), "ground"),
+    **dict.fromkeys(("in", "pwm"), "input"),
+    **dict.fromkeys(("hin", "inh"), "input-high"),
+    **dict.fromkeys(("lin", "inl"), "input-low"),
+    "out": "output",
+    "ho": "output-high",
+    "lo": "output-low",
+    **dict.fromkeys(("vb", "hb"), "bootstrap"),
+    **dict.fromkeys(("vs", "hs"), "return-high"),
+}
+"""Usual names of a gate driver's pins (common practice)."""
+
 _BY_KIND: Mapping[tuple[Kind, str], str] = {
     **{(kind, word): "body" for kind in _FETS for word in ("b", "bulk", "sub")},
     **{(kind, "c"): "cathode" for kind in _DIODE_LIKE},
+    **{(Kind.DRIVER, word): role for word, role in _DRIVER_PINS.items()},
 }
 
 
 def role_of(spelling: str, kind: Kind) -> str:
     """The role that a pin's spelling stands for; of kinds without fixed roles, its own name."""
     word = spelling.strip().lower().replace("_", "-")
-    if kind not in PINOUTS:
-        return word
-    return _BY_KIND.get((kind, word)) or SPELLINGS.get(word, word)
+    known = SPELLINGS if kind in PINOUTS else {}
+    return _BY_KIND.get((kind, word)) or known.get(word, word)
 
 
 def required(kind: Kind) -> Roles:

@@ -252,3 +252,20 @@ def test_part_data_of_a_mosfet_includes_its_body_diode_wherever_the_bulk_is_draw
     found = identified([card("M1", "D G S 0", "SW-N100-7")], FULL)
     assert found.parts[0].edges[1].conduction == "free"
     assert found.assumed == ("M1 with bulk on 0: read with the body diode of part data's mosfet",)
+
+
+def test_usual_names_of_driver_pins_are_roles() -> None:
+    pins = "pins: [VCC, HIN, LIN, COM, LO, VS, HO, VB]"
+    entry = f'parts:\n  "DR": {{kind: driver, {pins}}}\n'
+    found = identified([card("U1", "1 2 3 4 5 6 7 8", "DR")], entry)
+    assert [pin.role for pin in found.parts[0].pins] == [
+        *("supply", "input-high", "input-low", "ground"),
+        *("output-low", "return-high", "output-high", "bootstrap"),
+    ]
+    assert found.problems == ()
+
+
+def test_pins_of_connectors_and_controllers_keep_their_names() -> None:
+    entry = 'parts:\n  "HDR": {kind: connector, pins: [A, K, C]}\n'
+    found = identified([card("J1", "1 2 3", "HDR")], entry).parts[0]
+    assert [pin.role for pin in found.pins] == ["a", "k", "c"]
