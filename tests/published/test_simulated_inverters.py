@@ -16,7 +16,7 @@ from numpy.typing import NDArray
 from tests.kit.published import Study, ac, dc, phases, sheet
 
 Array = NDArray[np.float64]
-GRID, PULSES, PERIODS = 60, 120, 4
+GRID, PULSES = 60, 120
 ENCLOSED, TIGHT = 0.005, 0.05
 
 
@@ -43,34 +43,33 @@ def draw(
 
 
 def angles(p: Drawn, shift: float = 0.0) -> Array:
-    steps = np.arange(PERIODS * PULSES * GRID)
+    steps = np.arange(PULSES * GRID)
     return 2 * np.pi * (steps + 0.5) / (PULSES * GRID) - shift
 
 
 def triangle() -> Array:
     """From 0 to 1 and back, once a pulse."""
-    ramp = (np.arange(PERIODS * PULSES * GRID) + 0.5) % GRID / GRID
+    ramp = (np.arange(PULSES * GRID) + 0.5) % GRID / GRID
     return np.asarray(1 - np.abs(2 * ramp - 1))
 
 
 def current(p: Drawn, voltage: Array) -> Array:
-    """Through the coil and the load from a staircase voltage, at each grid point."""
-    step = 1 / (p.carrier * GRID)
-    decay = np.exp(-step * p.load / p.coil)
-    result = np.zeros(len(voltage) + 1)
+    """Through coil and load from a staircase voltage that repeats, at each grid point."""
+    decay = np.exp(-p.load / p.coil / (p.carrier * GRID))
+    first = _follow(p, voltage, decay, 0.0)[-1] / (1 - decay ** len(voltage))
+    return _follow(p, voltage, decay, first)[:-1]
+
+
+def _follow(p: Drawn, voltage: Array, decay: float, start: float) -> Array:
+    result = np.full(len(voltage) + 1, start)
     for index, volts in enumerate(voltage):
         result[index + 1] = volts / p.load + (result[index] - volts / p.load) * decay
-    return result[:-1]
-
-
-def last(values: Array) -> Array:
-    return values[-PULSES * GRID :]
+    return result
 
 
 def amplitude(values: Array) -> float:
-    """Of the fundamental over the last period."""
-    wave = last(values)
-    return float(2 * np.abs(np.fft.rfft(wave)[1]) / len(wave))
+    """Of the fundamental."""
+    return float(2 * np.abs(np.fft.rfft(values)[1]) / len(values))
 
 
 def check(study: Study, off: Mapping[str, Array], on: Mapping[str, Array]) -> None:
@@ -92,8 +91,7 @@ def test_half_bridge(number: int) -> None:
     p = draw(1, number)
     high = p.index * np.sin(angles(p)) > 2 * triangle() - 1
     flowing = current(p, np.where(high, p.bus / 2, -p.bus / 2))
-    high, flow = last(high), last(flowing)
-    on = {"M1": flow[high], "M2": -flow[~high]}
+    on = {"M1": flowing[high], "M2": -flowing[~high]}
     off = {name: np.array([p.bus]) for name in ("M1", "M2")}
     peak = amplitude(flowing)
     load = ac("load", "OUT", "M", voltage=f"{peak * p.load:.6g} V peak", draws=f"{peak:.6g} A peak")
@@ -110,8 +108,8 @@ def test_three_phase_bridge(number: int) -> None:
     flows = [current(p, volts) for volts in legs - legs.mean(axis=0)]
     on: dict[str, Array] = {}
     for k, (high, flow) in enumerate(zip(highs, flows, strict=True)):
-        on[f"M{2 * k + 1}"] = last(flow)[last(high)]
-        on[f"M{2 * k + 2}"] = -last(flow)[~last(high)]
+        on[f"M{2 * k + 1}"] = flow[high]
+        on[f"M{2 * k + 2}"] = -flow[~high]
     off = {name: np.array([p.bus]) for name in on}
     cards = "".join(
         f"M{2 * k + 1} P h{k} A{k} A{k} FET\nM{2 * k + 2} A{k} l{k} 0 0 FET\n"
@@ -134,8 +132,7 @@ def test_clamped_leg(number: int) -> None:
     p = draw(3, number, (5.0, 8.0))
     sine = p.index * np.sin(angles(p))
     level = (sine > triangle()).astype(int) - (-sine > triangle()).astype(int)
-    flowing = current(p, level * p.bus / 2)
-    level, flow = last(level), last(flowing)
+    flow = current(p, level * p.bus / 2)
     up, middle, down = level > 0, level == 0, level < 0
     forward, backward = middle & (flow > 0), middle & (flow < 0)
     on = {
@@ -148,7 +145,7 @@ def test_clamped_leg(number: int) -> None:
     }
     half = np.array([p.bus / 2])
     off = {name: half for name in ("M1", "M2", "M3", "M4")} | {"D1": -half, "D2": -half}
-    peak = amplitude(flowing)
+    peak = amplitude(flow)
     load = ac("load", "OUT", "M", voltage=f"{peak * p.load:.6g} V peak", draws=f"{peak:.6g} A peak")
     cards = f"""
     C1 P M 1m
