@@ -1,9 +1,10 @@
 """The whole procedure on one stage, step by step: voltages, topology, states, currents, ranges."""
 
-from collections.abc import Iterator, Mapping, Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, replace
 from itertools import product
 
+from rulecheck.demand.alternating import alternating_parts
 from rulecheck.demand.currents import (
     CurrentRange,
     Means,
@@ -11,11 +12,12 @@ from rulecheck.demand.currents import (
     derive_means,
     range_of_current,
 )
-from rulecheck.demand.means import collect_unknowns, current_names
-from rulecheck.demand.power import PortCurrents, find_port_currents
+from rulecheck.demand.first_box import first_box
+from rulecheck.demand.means import collect_unknowns
+from rulecheck.demand.power import PortCurrents
 from rulecheck.demand.readings import Failure, Reading, failures, inequalities
 from rulecheck.demand.routes import Carrier, Route, find_carriers, find_routes
-from rulecheck.demand.sign_cases import Case, cases_for, port_cases, voltage_names
+from rulecheck.demand.sign_cases import Case, cases_for, port_cases
 from rulecheck.demand.states import (
     MOST_POSITIONS,
     Laws,
@@ -23,11 +25,10 @@ from rulecheck.demand.states import (
     find_connecting_states,
     find_states,
 )
-from rulecheck.demand.stiff import EVERYTHING, Box, PhaseSet
-from rulecheck.demand.topology import Topology, build_topology, magnetising_name
+from rulecheck.demand.stiff import Box
+from rulecheck.demand.topology import Topology, build_topology
 from rulecheck.demand.voltages import Voltages, derive_voltages, name_of
-from rulecheck.stage import BranchKind, Port, PortKind, Stage
-from rulecheck.values import Interval
+from rulecheck.stage import Stage
 
 _MOST_RECTIFIER_STATES = 32
 
@@ -68,7 +69,7 @@ def work_out(stage: Stage, pulsed: frozenset[str] = frozenset()) -> Worked:
     topology = build_topology(
         stage.positions, stage.branches, stage.transformers, voltages.potentials
     )
-    box, port_currents = _first_box(stage, voltages)
+    box, port_currents = first_box(stage, voltages)
     laws = Laws(topology.ties, box)
     states, too_large, connecting = _all_states(topology, laws, pulsed)
     carriers = find_carriers(stage.branches, stage.transformers)
@@ -98,48 +99,6 @@ def work_out(stage: Stage, pulsed: frozenset[str] = frozenset()) -> Worked:
         means,
         pulsed,
     )
-
-
-def _first_box(stage: Stage, voltages: Voltages) -> tuple[Box, PortCurrents]:
-    """Ranges of voltages and of port currents; every other current may be anything as yet."""
-    ranges: dict[str, Interval] = {}
-    unsettled: set[str] = set()
-    stated = {name_of(b) for b in stage.branches if b.given is not None}
-    for branch in stage.branches:
-        name = name_of(branch)
-        if branch.kind is BranchKind.VOLTAGE or branch.kind is BranchKind.CURRENT:
-            ranges[name] = branch.given or EVERYTHING
-        if branch.kind is not BranchKind.RESISTOR and branch.given is None:
-            unsettled.add(name)
-    for core in stage.transformers:
-        ranges[magnetising_name(core)] = EVERYTHING
-        unsettled.add(magnetising_name(core))
-    sets = tuple(_phase_sets(stage.ports))
-    box = Box(ranges, phase_sets=sets, unsettled=frozenset(unsettled))
-    found = find_port_currents(stage.ports, stage.branches, voltages, box, stage.efficiency)
-    for port in stage.ports:
-        known = found.ranges.get(port.name)
-        for name in current_names(port):
-            if known is not None and name not in stated:
-                ranges[name] = known
-                unsettled.discard(name)
-    sets = tuple(_phase_sets(stage.ports, found.ranges))
-    return Box(ranges, phase_sets=sets, unsettled=frozenset(unsettled)), found
-
-
-def _phase_sets(
-    ports: Sequence[Port], currents: Mapping[str, Interval] | None = None
-) -> list[PhaseSet]:
-    sets = []
-    for port in ports:
-        if port.kind is not PortKind.PHASES:
-            continue
-        if port.voltage is not None:
-            sets.append(PhaseSet(voltage_names(port), port.voltage.magnitude))
-        known = (currents or {}).get(port.name)
-        if known is not None:
-            sets.append(PhaseSet(current_names(port), known.magnitude))
-    return sets
 
 
 def _all_states(
@@ -275,37 +234,6 @@ def _currents(
         )
         found[carrier.name] = range_of_current(carrier, means, around)
     return found
-
-
-_NO_DC = (["inductor", "winding"], ["capacitor", "inductor"])
-"""What stands alone on a net where an inductor ends, so that the inductor carries no DC."""
-
-
-def alternating_parts(stage: Stage) -> frozenset[str]:
-    """Inductors in series with a winding or with a capacitor alone: they carry no DC."""
-    at_net: dict[str, list[tuple[str, str]]] = {}
-    for kind, name, nets in _touching(stage):
-        for net in nets:
-            at_net.setdefault(net, []).append((kind, name))
-    return frozenset(
-        name
-        for touching in at_net.values()
-        if sorted(kind for kind, _ in touching) in _NO_DC
-        for kind, name in touching
-        if kind == "inductor"
-    )
-
-
-def _touching(stage: Stage) -> Iterator[tuple[str, str, tuple[str, str]]]:
-    kinds = {BranchKind.VOLTAGE: "capacitor", BranchKind.CURRENT: "inductor"}
-    for branch in stage.branches:
-        kind = kinds.get(branch.kind, "load") if branch.part else "port"
-        yield kind, branch.part, (branch.start, branch.end)
-    for core in stage.transformers:
-        for pair in core.windings:
-            yield "winding", core.name, pair
-    for position in stage.positions:
-        yield "position", position.name, (position.start, position.end)
 
 
 def _with_currents(box: Box, currents: Mapping[str, CurrentRange]) -> Box:

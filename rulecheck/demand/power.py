@@ -119,5 +119,5 @@ def _current(port: Port, volts: Interval | None, power: Interval) -> Interval | 
         return Interval(-amplitude, amplitude) if math.isfinite(amplitude) else None
     if volts.low <= 0.0 <= volts.high:
         return None
-    corners = [p / v for p in (power.low, power.high) for v in (volts.low, volts.high)]
+    corners = [p / v + 0.0 for p in (power.low, power.high) for v in (volts.low, volts.high)]
     return Interval(min(corners), max(corners))
