@@ -20,7 +20,7 @@ from pathlib import Path
 from typing import Any
 
 from rulecheck.cli import main
-from rulecheck.pipeline import Analysis, analyse_text
+from rulecheck.pipeline import Analysis, Unusable, analyse_text
 from rulecheck.reading import SourceText
 from rulecheck.values import Interval
 
@@ -94,12 +94,22 @@ class Study:
         return self._run("lint", "--format", "json")
 
     @cached_property
+    def result(self) -> Analysis | Unusable:
+        sheet = SourceText("hut.stage.yaml", self.sheet) if self.sheet else None
+        parts = [SourceText("hut.parts.yaml", self.parts)]
+        return analyse_text(SourceText("hut.cir", self.netlist), sheet, parts)
+
+    @property
     def analysis(self) -> Analysis:
         """The products of the steps, for the quantities that the table does not print."""
-        texts = [SourceText("hut.stage.yaml", self.sheet), SourceText("hut.parts.yaml", self.parts)]
-        result = analyse_text(SourceText("hut.cir", self.netlist), texts[0], texts[1:])
+        result = self.result
         assert isinstance(result, Analysis), result.problems
         return result
+
+    @property
+    def usable(self) -> bool:
+        """Whether sheet and netlist can be analysed at all."""
+        return isinstance(self.result, Analysis)
 
     def position(self, name: str) -> dict[str, Any]:
         found = [entry for entry in self.table["positions"] if entry["name"] == name]
