@@ -30,19 +30,25 @@ def demand_of(
     position: Position, reading: Reading, index: int, box: Box, settle: Mapping[str, str]
 ) -> PositionDemand:
     """Over all possible states: the range of voltage while off and of current while on."""
-    off: list[Sample] = []
+    off = off_samples(position, reading, index, box)
     on: list[Sample] = []
-    strict = index in reading.strict
     for state, narrowed in feasible(reading, index, box):
         if position.name in state.on:
             form = state.solution.on_currents[position.name]
-            clip = _carried(position)
-            on.append(Sample(state, form, _clip(narrowed.range_of(form), clip), narrowed))
-        else:
-            form = state.solution.off_voltages[position.name]
-            clip = _withstood(position, strict)
-            off.append(Sample(state, form, _clip(narrowed.range_of(form), clip), narrowed))
+            span = _clip(narrowed.range_of(form), _carried(position))
+            on.append(Sample(state, form, span, narrowed))
     return from_samples(position, off, on, settle)
+
+
+def off_samples(position: Position, reading: Reading, index: int, box: Box) -> list[Sample]:
+    """The off voltage in every possible state that leaves the position off."""
+    limits = _withstood(position, index in reading.strict)
+    samples = []
+    for state, narrowed in feasible(reading, index, box):
+        if position.name not in state.on:
+            form = state.solution.off_voltages[position.name]
+            samples.append(Sample(state, form, _clip(narrowed.range_of(form), limits), narrowed))
+    return samples
 
 
 def _carried(position: Position) -> Interval:

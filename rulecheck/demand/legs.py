@@ -180,7 +180,7 @@ def _kind(
     worked: Worked, ends: Sequence[Position], rails: Sequence[str], others: Sequence[str]
 ) -> str:
     gated = sum(position.gated for position in ends)
-    if len(rails) > 2 and _alternate(worked, rails):
+    if _alternate(worked, rails):
         return "selector leg" if gated else "rectifier leg"
     if others or len(rails) > 2 or len(ends) > 2:
         return "multilevel leg"

@@ -115,7 +115,8 @@ def failures(
             continue
         controlled = any(reading.clusters[index].gated for index in clusters)
         for case in _instants(cases_of[carrier.name], box, controlled):
-            why = _why_not(reach(reading, route, case.narrow(box)))
+            span = reach(reading, route, case.narrow(box))
+            why = _why_not_fed(carrier, span, box) if carrier.feeds else _why_not(span)
             if why:
                 found.append(Failure(carrier, case, clusters, why))
                 break
@@ -138,6 +139,23 @@ def _why_not(span: Interval | None) -> str:
     if span.low >= -scale:
         return "no state gives it negative voltage"
     return ""
+
+
+def _why_not_fed(carrier: Carrier, span: Interval | None, stated: Box) -> str:
+    """A DC current port needs the sign of voltage that takes its power the stated way.
+
+    Its current leaves its first net, its voltage is first over second net; the branch runs from
+    the second to the first. A port that both draws and supplies says nothing of its voltage.
+    """
+    if span is None:
+        return "no state is possible"
+    current = stated.ranges[carrier.name]
+    out = 0.0 if current.low < 0.0 < current.high or not current.bounded else current.middle
+    positive = (out > 0.0) == (carrier.feeds == "supplies")
+    reached = -span.low if positive else span.high
+    if out == 0.0 or reached > _VOLT_SECOND:
+        return ""
+    return f"no state gives port {carrier.port} {'positive' if positive else 'negative'} voltage"
 
 
 def sustainable(

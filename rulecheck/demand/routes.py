@@ -10,7 +10,7 @@ import networkx as nx
 
 from rulecheck.demand.topology import Node, Topology, magnetising_name
 from rulecheck.demand.voltages import name_of
-from rulecheck.stage import Branch, BranchKind, Transformer
+from rulecheck.stage import Branch, BranchKind, Port, PortKind, Transformer
 from rulecheck.values import AffineForm
 
 
@@ -25,6 +25,8 @@ class Carrier:
     inductance: float | None
     part: str
     port: str
+    feeds: str = ""
+    """Of a DC port: `draws` or `supplies`, the way in which it handles power."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -48,10 +50,15 @@ class Route:
 
 
 def find_carriers(
-    branches: Sequence[Branch], transformers: Sequence[Transformer]
+    branches: Sequence[Branch], transformers: Sequence[Transformer], ports: Sequence[Port]
 ) -> tuple[Carrier, ...]:
+    feeds = {
+        port.name: "draws" if port.draws else "supplies"
+        for port in ports
+        if port.kind is PortKind.DC
+    }
     found = [
-        Carrier(name_of(b), b.start, b.end, b.value, b.part, b.port)
+        Carrier(name_of(b), b.start, b.end, b.value, b.part, b.port, feeds.get(b.port, ""))
         for b in branches
         if b.kind is BranchKind.CURRENT
     ]
