@@ -19,9 +19,7 @@ from rulecheck.demand.evaluate import demand_of
 from rulecheck.demand.gates_off import find_free_shorts, find_interrupted
 from rulecheck.demand.groups import forms_of, group_of, why_not_analysed
 from rulecheck.demand.legs import find_bridges, find_hard_commutations, find_legs
-from rulecheck.demand.readings import Reading
-from rulecheck.demand.states import Laws, find_resting_states
-from rulecheck.demand.topology import Link
+from rulecheck.demand.resting import with_rest
 from rulecheck.stage import Stage
 from rulecheck.values import Interval, QuadrantSet, Unknown
 
@@ -67,7 +65,8 @@ def _positions(
             if index in worked.too_large or index in failed or not _states(worked, index):
                 found[link.name] = _not_analysed(link.name, why_not_analysed(worked, index))
                 continue
-            demand = demand_of(link.position, _with_rest(worked, index, link), index, box, settle)
+            demand = demand_of(link.position, worked.reading, index, box, settle)
+            demand = with_rest(demand, link.position, worked)
             if index in worked.connecting or link.name in worked.pulsed:
                 demand = _pulsed(demand)
             found[link.name] = demand
@@ -76,18 +75,6 @@ def _positions(
         assumed += [sentence] if sentence else []
     ordered = {p.name: found[p.name] for p in worked.stage.positions}
     return ordered, tuple(assumed)
-
-
-def _with_rest(worked: Worked, index: int, link: Link) -> Reading:
-    """Where no state leaves a position off, the states in which its current rests at zero."""
-    reading = worked.reading
-    if any(link.name not in state.on for state in reading.states[index]):
-        return reading
-    laws = Laws(worked.topology.ties, worked.box)
-    resting = find_resting_states(worked.topology.clusters[index], laws, link.name)
-    states = [*reading.states]
-    states[index] = (*states[index], *resting)
-    return replace(reading, states=states)
 
 
 def _states(worked: Worked, index: int) -> bool:

@@ -75,21 +75,6 @@ def find_connecting_states(cluster: Cluster, laws: Laws) -> tuple[RawState, ...]
     return tuple(found)
 
 
-def find_resting_states(cluster: Cluster, laws: Laws, name: str) -> tuple[RawState, ...]:
-    """States with the position off that only a current of zero allows.
-
-    For positions that carry their current whenever it flows, such as a static AC switch.
-    """
-    candidates = [link for link in cluster.positions if link.name != name]
-    found = []
-    for on in _without_shorts(candidates, laws):
-        solution = solve_state(cluster, frozenset(on))
-        if all(laws.vanishes(form) for form in solution.voltage_contradictions):
-            stopped = tuple(f for f in solution.current_contradictions if not laws.vanishes(f))
-            found.append(RawState(on, solution, stopped))
-    return tuple(found)
-
-
 def _idle(on: Sequence[str], solution: Solution, laws: Laws) -> bool:
     return any(laws.vanishes(solution.on_currents[name]) for name in on)
 
