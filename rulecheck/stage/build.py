@@ -104,9 +104,15 @@ def _sort_parts(layout: Layout) -> _Sorted:
 
 
 def _ports(known: _Sorted) -> Ports:
-    if known.layout.sheet.ports:
-        return resolve_ports(known.layout.sheet, known.layout.merged)
-    return Ports(source_ports(known.layout, known.aside), ())
+    """The sheet's ports; sources of the netlist that it leaves out serve beside them."""
+    stated = resolve_ports(known.layout.sheet, known.layout.merged)
+    pairs = {frozenset(port.nets) for port in stated.ports}
+    beside = tuple(
+        port
+        for port in source_ports(known.layout, known.aside)
+        if frozenset(port.nets) not in pairs and set(port.nets) <= known.live
+    )
+    return Ports((*stated.ports, *beside), stated.problems)
 
 
 def _branches(known: _Sorted, ports: Iterable[Port]) -> tuple[Branch, ...]:
