@@ -1,0 +1,48 @@
+"""Packs of rules, the condition language, verdicts in three values, deviations."""
+
+from rulecheck.rulebook.deviation_file import DeviationEntry
+from rulecheck.rulebook.deviations import (
+    Deviation,
+    apply_deviations,
+    read_deviations,
+    unused_deviations,
+)
+from rulecheck.rulebook.examples import Trial, try_examples
+from rulecheck.rulebook.judge import judge
+from rulecheck.rulebook.load import load_packs
+from rulecheck.rulebook.pack_file import PackFile
+from rulecheck.rulebook.record import new_since, read_record, record_text
+from rulecheck.rulebook.rulebook import Rule, Rulebook, SwitchedOff
+from rulecheck.rulebook.rules_text import rule_text, rules_text
+from rulecheck.rulebook.shipped import IN_FORCE, PROFILES, packs_in_force, shipped_pack
+from rulecheck.rulebook.verdicts import Excuse, Tally, Verdict, Verdicts, Waiting
+
+__all__ = [
+    "IN_FORCE",
+    "PROFILES",
+    "Deviation",
+    "DeviationEntry",
+    "Excuse",
+    "PackFile",
+    "Rule",
+    "Rulebook",
+    "SwitchedOff",
+    "Tally",
+    "Trial",
+    "Verdict",
+    "Verdicts",
+    "Waiting",
+    "apply_deviations",
+    "judge",
+    "load_packs",
+    "new_since",
+    "packs_in_force",
+    "read_deviations",
+    "read_record",
+    "record_text",
+    "rule_text",
+    "rules_text",
+    "shipped_pack",
+    "try_examples",
+    "unused_deviations",
+]

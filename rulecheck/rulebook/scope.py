@@ -1,0 +1,91 @@
+"""What the names in a condition stand for, and what a bound condition is run on."""
+
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, field, replace
+from typing import Any
+
+from rulecheck.facts import VOCABULARY, Facts, FieldTerm, Form, LinkTerm, Subject
+from rulecheck.rulebook.tree import Flaw
+from rulecheck.rulebook.units import OF_DIMENSION, PLAIN, Unit
+from rulecheck.values import Dimension, Span
+
+NAME_FIELD = FieldTerm("name", Form.TEXT, "Its name.")
+OWN = ""
+"""The word under which the rule's own subject is known: none."""
+
+
+@dataclass(frozen=True, slots=True)
+class Parameter:
+    """A number that packs set, or a table of numbers by word with a row `other`."""
+
+    name: str
+    value: float | Mapping[str, float]
+    dimension: Dimension
+    source: str
+    meaning: str
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class Scene:
+    """The facts and the subjects that the bound words stand for at the moment."""
+
+    facts: Facts
+    subjects: Mapping[str, Subject]
+
+    def with_subject(self, name: str, subject: Subject) -> "Scene":
+        return Scene(self.facts, {**self.subjects, name: subject})
+
+
+@dataclass(frozen=True, slots=True)
+class Bound:
+    """A checked expression: its form, its unit, and how to compute it."""
+
+    form: Form
+    run: Callable[[Scene], Any]
+    unit: Unit = PLAIN
+
+
+@dataclass(frozen=True, slots=True)
+class Scope:
+    """The kinds of the bound words, the parameters in force, and the flaws found so far."""
+
+    kinds: Mapping[str, str]
+    parameters: Mapping[str, Parameter]
+    flaws: list[Flaw] = field(default_factory=list)
+
+    def fail(self, at: int, what: str, remedy: str) -> None:
+        self.flaws.append(Flaw(at, what, remedy))
+
+    def inside(self, name: str, kind: str) -> "Scope":
+        return replace(self, kinds={**self.kinds, name: kind})
+
+    def split(self, words: tuple[str, ...]) -> tuple[str, str]:
+        """The bound word that a path starts with (or the rule's own subject), and the rest."""
+        if len(words) > 1 and words[0] in self.kinds:
+            return words[0], ".".join(words[1:])
+        return OWN, ".".join(words)
+
+    def field(self, words: tuple[str, ...]) -> tuple[str, FieldTerm] | None:
+        owner, name = self.split(words)
+        term = NAME_FIELD if name == "name" else VOCABULARY[self.kinds[owner]].field(name)
+        return None if term is None else (owner, term)
+
+    def link(self, words: tuple[str, ...]) -> tuple[str, LinkTerm] | None:
+        owner, name = self.split(words)
+        term = VOCABULARY[self.kinds[owner]].link(name)
+        return None if term is None else (owner, term)
+
+    def known_names(self) -> tuple[str, ...]:
+        """Everything that a path may say here, for suggestions."""
+        names = ["name", *self.parameters]
+        for word, kind in self.kinds.items():
+            term = VOCABULARY[kind]
+            lead = f"{word}." if word else ""
+            names += [lead + item.name for item in term.fields]
+            names += [lead + item.name for item in term.links]
+        return tuple(names)
+
+
+def unit_of(dimension: Dimension) -> Unit:
+    return OF_DIMENSION[dimension]
