@@ -1,0 +1,233 @@
+"""Values of parameters in their scope: computed when asked for, cycles found, faults as values."""
+
+import difflib
+import math
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, field
+
+from rulecheck.netlist.circuit import Model
+from rulecheck.netlist.definition import Definition, UserFunction
+from rulecheck.netlist.formula import (
+    CALL,
+    CHOOSE,
+    NAME,
+    NUMBER,
+    Formula,
+    NoFormula,
+    Step,
+    compile_formula,
+)
+from rulecheck.netlist.functions import CHOOSERS, CONSTANTS, FUNCTIONS, OPERATORS, RUNNING
+from rulecheck.values import Problem, Span, error, note
+
+_DEEPEST = 120
+
+
+@dataclass(frozen=True, slots=True)
+class Fault:
+    """Why an expression has no value; `problem` is None where that is no mistake."""
+
+    what: str
+    problem: Problem | None = None
+    cycle: bool = False
+
+
+Outcome = float | Fault
+Lookup = Callable[[str], Outcome | None]
+
+
+@dataclass(slots=True)
+class Scope:
+    """One definition in use: the top level, or one instance of a subcircuit.
+
+    Names are looked up here, then in the scope in which the definition stands.
+    """
+
+    definition: Definition
+    parent: "Scope | None" = None
+    overrides: "Mapping[str, tuple[Formula, Scope]]" = field(default_factory=dict)
+    """By lower-case name: what the instance states, with the scope in which it is computed."""
+    cache: dict[str, Outcome] = field(default_factory=dict)
+    busy: list[str] = field(default_factory=list)
+    models: dict[str, Model | None] = field(default_factory=dict)
+
+    def definition_of(self, name: str) -> "tuple[Definition, Scope] | None":
+        """The subcircuit of that lower-case name, and the scope in which it is defined."""
+        scope: Scope | None = self
+        while scope is not None:
+            found = scope.definition.inner.get(name)
+            if found is not None:
+                return found, scope
+            scope = scope.parent
+        return None
+
+
+def compute(formula: Formula, scope: Scope, depth: int = 0) -> Outcome:
+    """The value of an expression; a Fault where it has none."""
+    return _run(formula, scope, {}, depth)
+
+
+def _run(formula: Formula, scope: Scope, arguments: Mapping[str, Outcome], depth: int) -> Outcome:
+    program = compile_formula(formula.text)
+    if isinstance(program, NoFormula):
+        return _unreadable(formula, program)
+    if depth > _DEEPEST:
+        return _fault(formula.span(), "the expression refers to itself, or too deep", _UNRAVEL)
+    stack: list[Outcome] = []
+    for step in program:
+        if step.kind == NUMBER:
+            stack.append(step.number)
+            continue
+        if step.kind == NAME:
+            stack.append(_name(step, formula, scope, arguments, depth))
+            continue
+        operands = stack[len(stack) - step.count :]
+        del stack[len(stack) - step.count :]
+        stack.append(_apply(step, operands, formula, scope, depth))
+    return stack[-1]
+
+
+_UNRAVEL = "break the cycle: give one of its parameters a number"
+
+
+def _unreadable(formula: Formula, reason: NoFormula) -> Fault:
+    if reason.behavioural:
+        return Fault(reason.what)
+    span = formula.span(reason.position)
+    return _fault(span, f"{reason.what}: '{formula.text}'", "correct the expression")
+
+
+def _name(
+    step: Step, formula: Formula, scope: Scope, arguments: Mapping[str, Outcome], depth: int
+) -> Outcome:
+    name = step.word.lower()
+    if name in arguments:
+        return arguments[name]
+    found = _parameter(name, scope, depth)
+    if found is not None:
+        return found
+    if name in CONSTANTS:
+        return CONSTANTS[name]
+    if name in RUNNING:
+        return Fault(f"depends on {name}, which only a simulation knows")
+    close = difflib.get_close_matches(name, _names_in(scope), 1)
+    remedy = f"did you mean '{close[0]}'?" if close else f"define it: .param {step.word}=..."
+    return _fault(formula.span(step.position), f"parameter '{step.word}' is not defined", remedy)
+
+
+def _names_in(scope: Scope | None) -> list[str]:
+    names: list[str] = []
+    while scope is not None:
+        names += [*scope.definition.parameters, *scope.overrides]
+        scope = scope.parent
+    return names
+
+
+def has_parameter(name: str, scope: Scope) -> bool:
+    """Whether a lower-case name is a parameter here."""
+    return name in _names_in(scope)
+
+
+def _parameter(name: str, scope: Scope | None, depth: int) -> Outcome | None:
+    while scope is not None:
+        if name in scope.cache:
+            return scope.cache[name]
+        if name in scope.overrides or name in scope.definition.parameters:
+            return _evaluate_parameter(name, scope, depth)
+        scope = scope.parent
+    return None
+
+
+def _evaluate_parameter(name: str, scope: Scope, depth: int) -> Outcome:
+    override = scope.overrides.get(name)
+    formula, home = override or (scope.definition.parameters[name], scope)
+    if name in scope.busy:
+        return _cycle(scope.busy[scope.busy.index(name) :], scope)
+    scope.busy.append(name)
+    outcome = compute(formula, home, depth + 1)
+    scope.busy.pop()
+    scope.cache[name] = outcome
+    return outcome
+
+
+def _cycle(ring: list[str], scope: Scope) -> Fault:
+    """Told from the alphabetically first name, whichever was asked for first."""
+    start = ring.index(min(ring))
+    turned = [*ring[start:], *ring[:start]]
+    path = " -> ".join([*turned, turned[0]])
+    formula = scope.definition.parameters.get(turned[0])
+    span = formula.span() if formula else scope.definition.span
+    what = f"parameter '{turned[0]}' depends on itself ({path})"
+    return Fault(what, error(span, what, _UNRAVEL), cycle=True)
+
+
+def _apply(
+    step: Step, operands: list[Outcome], formula: Formula, scope: Scope, depth: int
+) -> Outcome:
+    word = step.word.lower()
+    faults = [operand for operand in operands if isinstance(operand, Fault)]
+    cycle = next((fault for fault in faults if fault.cycle), None)
+    if cycle is not None:
+        return cycle
+    if step.kind == CHOOSE or (step.kind == CALL and word in CHOOSERS and step.count == 3):
+        test, positive, negative = operands
+        if isinstance(test, Fault):
+            return test
+        return positive if test else negative
+    if faults:
+        return faults[0]
+    numbers = [operand for operand in operands if isinstance(operand, float | int)]
+    if step.kind == CALL:
+        return _call(step, word, numbers, formula, scope, depth)
+    return _arithmetic(OPERATORS[step.word], numbers, step, formula)
+
+
+def _call(
+    step: Step, word: str, numbers: list[float], formula: Formula, scope: Scope, depth: int
+) -> Outcome:
+    user = _user_function(word, scope)
+    if user is not None:
+        function, home = user
+        if len(numbers) != len(function.arguments):
+            return _wrong_count(step, formula, str(len(function.arguments)), len(numbers))
+        arguments = dict(zip(function.arguments, numbers, strict=True))
+        return _run(function.body, home, arguments, depth + 1)
+    known = FUNCTIONS.get(word)
+    span = formula.span(step.position)
+    if known is None:
+        what = f"function '{step.word}' is not known here, so '{formula.text}' has no value"
+        return Fault(what, note(span, what, "write the number itself"))
+    if not known.least <= len(numbers) <= known.most:
+        return _wrong_count(step, formula, str(known.least), len(numbers))
+    return _arithmetic(known.compute, numbers, step, formula)
+
+
+def _user_function(word: str, scope: Scope | None) -> tuple[UserFunction, Scope] | None:
+    while scope is not None:
+        if word in scope.definition.functions:
+            return scope.definition.functions[word], scope
+        scope = scope.parent
+    return None
+
+
+def _wrong_count(step: Step, formula: Formula, wanted: str, found: int) -> Fault:
+    what = f"function '{step.word}' takes {wanted} arguments; here are {found}"
+    return _fault(formula.span(step.position), what, "correct the call")
+
+
+def _arithmetic(
+    function: Callable[..., float], numbers: list[float], step: Step, formula: Formula
+) -> Outcome:
+    try:
+        value = float(function(*numbers))
+    except (ArithmeticError, ValueError, TypeError):
+        value = math.nan
+    if math.isfinite(value):
+        return value
+    shown = ", ".join(f"{number:g}" for number in numbers)
+    what = f"'{step.word.removeprefix('unary ')}' of {shown} has no value"
+    return _fault(formula.span(step.position), what, "correct the expression or its parameters")
+
+
+def _fault(span: Span, what: str, remedy: str) -> Fault:
+    return Fault(what, error(span, what, remedy))
