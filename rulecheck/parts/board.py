@@ -94,6 +94,12 @@ def _diode(element: Element) -> PartReading:
     return read_as(element, Kind.DIODE, "read as a diode with its pins in the order anode cathode")
 
 
+def _zener(element: Element) -> PartReading:
+    return read_as(
+        element, Kind.ZENER, "read as a zener diode with its pins in the order anode cathode"
+    )
+
+
 def _thermistor(element: Element) -> PartReading:
     return read_as(element, Kind.RESISTOR, "read as a temperature-dependent resistor")
 
@@ -139,15 +145,17 @@ def _numbers(element: Element) -> tuple[str, ...]:
 
 
 PREFIXES: Mapping[str, Maker] = {
-    **dict.fromkeys(("TP", "MH", "H", "HS", "FID", "Y", "XTAL"), _mechanical),
-    **dict.fromkeys(("J", "P", "JP", "CN", "CON", "CONN"), _connector),
-    **dict.fromkeys(("F", "FU"), _fuse),
-    **dict.fromkeys(("RV", "VDR", "MOV", "TVS"), _clamp),
+    **dict.fromkeys(("TP", "MH", "MP", "MTG", "H", "HS", "FID", "LOGO", "ANT"), _mechanical),
+    **dict.fromkeys(("Y", "XTAL"), _mechanical),
+    **dict.fromkeys(("J", "P", "JP", "CN", "CON", "CONN", "HDR", "ICSP"), _connector),
+    **dict.fromkeys(("F", "FU", "FS", "FUSE"), _fuse),
+    **dict.fromkeys(("RV", "VDR", "VAR", "MOV", "TVS", "GDT"), _clamp),
     **dict.fromkeys(("NTC", "PTC", "RT", "TH"), _thermistor),
     **dict.fromkeys(("BT", "BAT"), _battery),
     **dict.fromkeys(("CR", "BR", "RL", "RLY", "IC"), not_understood),
     "FB": _bead,
     "LED": _diode,
+    "ZD": _zener,
     "SW": _switch,
 }
 """Designators of boards (IEEE 315 and common practice) that clash with element letters."""

@@ -18,7 +18,6 @@ from rulecheck.parts.stated import gather, multiplied
 from rulecheck.values import Problem, Unknown
 
 _VALUED = frozenset({Kind.RESISTOR, Kind.CAPACITOR, Kind.INDUCTOR})
-_CONTROLLED = frozenset("EFGHB")
 _UNNAMED = frozenset("RCLVI")
 
 
@@ -45,7 +44,7 @@ def build_part(
         data=multiplied(figures.data, multiplicity),
         facts={**figures.facts, **reading.facts},
         settle_in=_settle_in(element, stated),
-        waveform=element.waveform,
+        waveform=None if _is_constant(element) else element.waveform,
         multiplicity=multiplicity,
         instance=element.instance,
         instance_chain=element.instance_chain,
@@ -118,13 +117,22 @@ def _inside(whole: Part, name: str, stated: StatedPart) -> Part:
 def _value(element: Element, reading: PartReading, multiplicity: float) -> float | Unknown:
     """Ohm, farad, henry of the devices in parallel, or a source's DC value."""
     value = element.value if reading.value is None else reading.value
-    if element.letter in _CONTROLLED or isinstance(value, Unknown):
-        return _no_value(element.name) if not isinstance(value, Unknown) else value
+    if isinstance(value, Unknown):
+        return value
+    if element.controls:
+        return _no_value(element.name)
     if reading.kind in _VALUED:
         return value * multiplicity if reading.kind is Kind.CAPACITOR else value / multiplicity
     if reading.kind in (Kind.VOLTAGE_SOURCE, Kind.CURRENT_SOURCE):
         return value
     return _no_value(element.name)
+
+
+def _is_constant(element: Element) -> bool:
+    """A behavioural source whose expression depends on nothing is one with a DC value."""
+    wave = element.waveform
+    known = not isinstance(element.value, Unknown)
+    return wave is not None and wave.kind == "behavioural" and known and not element.controls
 
 
 def _no_value(name: str) -> Unknown:

@@ -67,6 +67,8 @@ class _Search:
     opaque: set[str] = field(default_factory=set)
     """Instances whose contents are not looked at."""
     bodies: Mapping[str, Sequence[Element]] = field(init=False)
+    times_used: dict[str, int] = field(default_factory=dict)
+    """By lower-case name."""
     fits: dict[tuple[str, str], StatedPart | None] = field(default_factory=dict)
 
     def __post_init__(self) -> None:
@@ -136,6 +138,7 @@ class _Search:
 
     def _add(self, element: Element, reading: PartReading, stated: StatedPart | None) -> None:
         times = multiplicity_of(element, self._around(element))
+        element = self._once(element)
         built = build_part(element, reading, stated, times)
         self.parts += built.parts
         self.problems += built.problems
@@ -143,6 +146,16 @@ class _Search:
         self.assumed.add(element.name, reading.assumed)
         if times != 1.0:
             self.assumed.add(element.name, f"read as {times:g} devices in parallel (m)")
+
+    def _once(self, element: Element) -> Element:
+        """Two cards of one name stay two parts: no later step may lose one of them."""
+        key = element.name.lower()
+        count = self.times_used[key] = self.times_used.get(key, 0) + 1
+        if count == 1:
+            return element
+        name = f"{element.name}#{count}"
+        self.assumed.add(name, f"so named because {element.name} is the name of more than one card")
+        return replace(element, name=name)
 
     def _around(self, element: Element) -> Iterable[Element]:
         name = element.instance

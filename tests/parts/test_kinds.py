@@ -76,6 +76,7 @@ BOARD = {
     "battery": (card("BT1", "A B", "LFP pack"), "voltage-source"),
     "push button": (card("SW3", "A B", "reset"), "ideal-switch"),
     "light-emitting diode": (card("LED1", "A K", "red"), "diode"),
+    "zener diode under ZD": (card("ZD1", "A K", "12V"), "zener"),
     "circuit": (card("U1", "A B C D", "HUT-CTRL-1"), "unknown"),
     "circuit under IC": (card("IC1", "A B C D", "HUT-CTRL-1"), "unknown"),
     "transformer": (card("T1", "A B C D", "TX-48"), "unknown"),
@@ -193,3 +194,16 @@ def test_equal_assumptions_make_one_sentence() -> None:
 
 def test_what_is_not_understood_is_listed_with_what_could_not_be_read() -> None:
     assert identified([card("U1", "A B", "HUT-CTRL-1")]).not_understood == ("U1",)
+
+
+def test_a_behavioural_source_that_depends_on_nothing_has_its_value() -> None:
+    base = card("B1", "A B", "V={2*24}", 48.0)
+    wave = Waveform("behavioural", (), "V={2*24}")
+    part = only(Element(base.name, "B", base.nets, 48.0, base.text, base.span, waveform=wave))
+    assert (part.kind, part.value, part.waveform) == (Kind.VOLTAGE_SOURCE, 48.0, None)
+
+
+def test_cards_of_one_name_stay_two_parts() -> None:
+    found = identified([card("R1", "A B", "1", 1.0), card("r1", "B C", "2", 2.0)])
+    assert [part.name for part in found.parts] == ["R1", "r1#2"]
+    assert found.assumed == ("r1#2 so named because r1 is the name of more than one card",)
