@@ -16,11 +16,12 @@ from rulecheck.facts import (
     position_facts,
     state_facts,
 )
-from rulecheck.facts.facts import Bounds, Facts, Subject, Value
+from rulecheck.facts.facts import Facts, Subject
 from rulecheck.facts.inputs import Inputs, gather
+from rulecheck.facts.turned import turned_values
 from rulecheck.facts.vocabulary import VOCABULARY
 from rulecheck.stage import Stage
-from rulecheck.values import Interval, Unknown, natural_key
+from rulecheck.values import natural_key
 
 _COLLECTORS: tuple[Callable[[Inputs], tuple[Subject, ...]], ...] = (
     net_facts.collect,
@@ -52,10 +53,24 @@ def collect_facts(stage: Stage, capabilities: Capabilities, demands: Demands) ->
     by_kind: dict[str, list[Subject]] = {kind: [] for kind in VOCABULARY}
     for subject in collected:
         by_kind[subject.kind].append(subject)
-    by_kind["stage"] = [_closed(subject, by_kind) for subject in net_facts.collect_stage(inputs)]
+    turned = turned_values(inputs, by_kind["position"])
+    by_kind["position"] = [
+        replace(p, values={**p.values, "all-turned": turned["all-turned"]})
+        for p in by_kind["position"]
+    ]
+    (whole,) = net_facts.collect_stage(inputs)
+    values = {**whole.values, **turned}
+    by_kind["stage"] = [replace(whole, values=values, links=_links_of_stage(by_kind))]
     subjects = {kind: _distinct(found) for kind, found in by_kind.items()}
     by_name = {(s.kind, s.name): s for found in subjects.values() for s in found}
     return Facts(stage.netlist, subjects, by_name)
+
+
+def _links_of_stage(by_kind: Mapping[str, list[Subject]]) -> dict[str, tuple[str, ...]]:
+    return {
+        link: tuple(dict.fromkeys(subject.name for subject in by_kind[kind]))
+        for link, kind in _OF_STAGE.items()
+    }
 
 
 def _distinct(subjects: Iterable[Subject]) -> tuple[Subject, ...]:
@@ -64,33 +79,3 @@ def _distinct(subjects: Iterable[Subject]) -> tuple[Subject, ...]:
     for subject in subjects:
         kept.setdefault(subject.name, subject)
     return tuple(sorted(kept.values(), key=lambda subject: natural_key(subject.name)))
-
-
-def _closed(stage: Subject, by_kind: Mapping[str, list[Subject]]) -> Subject:
-    """The stage's subject with its links, and with what is counted over its positions."""
-    links = {
-        link: tuple(dict.fromkeys(subject.name for subject in by_kind[kind]))
-        for link, kind in _OF_STAGE.items()
-    }
-    one_way = [s for s in by_kind["position"] if _holds_one_polarity(s)]
-    counts = {
-        "turned-positions": _how_many([subject.values["turned"] for subject in one_way]),
-        "asymmetric-positions": float(len(one_way)),
-    }
-    return replace(stage, values={**stage.values, **counts}, links=links)
-
-
-def _how_many(answers: list[Value]) -> Value:
-    """The number of yes among the answers, within bounds where some are not known."""
-    least = float(sum(answer is True for answer in answers))
-    unknown = tuple(dict.fromkeys(a for a in answers if isinstance(a, Unknown)))
-    if not unknown:
-        return least
-    most = least + sum(isinstance(answer, Unknown) for answer in answers)
-    return Bounds(Interval(least, most), unknown)
-
-
-def _holds_one_polarity(position: Subject) -> bool:
-    values = position.values
-    one = values["holds-off-forward"] != values["holds-off-reverse"]
-    return one and values["gated"] is True

@@ -38,7 +38,9 @@ STAGE = SubjectTerm(
         number("dead-time", Dimension.TIME, "The dead time stated for all legs."),
         number("efficiency", Dimension.NUMBER, "The efficiency of the power balance."),
         count("turned-positions", "Gated positions that would fit if drawn the other way up."),
-        count("asymmetric-positions", "Gated positions of devices that hold off one polarity."),
+        count("one-way-positions", "Gated positions that hold off one polarity alone."),
+        yes_no("all-turned", "All of the latter are among the former, and there are two or more."),
+        texts("turned-models", "Models of the gated devices of turned positions."),
     ),
     (
         link("parts", "part", "All parts."),
