@@ -8,6 +8,7 @@ U3 ... HUT-CTRL-1          not understood: part data must say
 
 import re
 from collections.abc import Callable, Mapping
+from dataclasses import replace
 
 from rulecheck.netlist import Element
 from rulecheck.parts.edges import POLARITY
@@ -16,6 +17,7 @@ from rulecheck.parts.reading import PartReading, not_understood, read_as
 from rulecheck.parts.roles import PINOUTS, role_of
 from rulecheck.values import Dimension, Quantity, Unknown, read_quantity
 
+_VALUE = re.compile(r"\d[\d.,]*[A-Za-zµΩ]+")
 Maker = Callable[[Element], PartReading]
 
 
@@ -33,7 +35,15 @@ def read_by_prefix(element: Element) -> PartReading | None:
     if element.letter in "RCLVI" and not isinstance(element.value, Unknown):
         return None
     maker = PREFIXES.get(prefix_of(element))
-    return maker(element) if maker else None
+    return maker(_with_whole_text(element)) if maker else None
+
+
+def _with_whole_text(element: Element) -> Element:
+    """`F1 BAT BUS 125A fast`: a value behind two nets begins the text; it is no third net."""
+    if len(element.nets) < 3 or not _VALUE.fullmatch(element.nets[2]):
+        return element
+    text = " ".join((*element.nets[2:], element.text)).strip()
+    return replace(element, nets=element.nets[:2], text=text)
 
 
 def read_by_words(element: Element) -> PartReading | None:

@@ -9,7 +9,7 @@ from collections.abc import Iterable, Mapping
 from dataclasses import replace
 
 from rulecheck.capability import Capability, find_capabilities
-from rulecheck.netlist import Circuit, Element, Model, Subcircuit
+from rulecheck.netlist import Circuit, Element, Model, Subcircuit, read_circuit_text
 from rulecheck.parts import (
     Datum,
     Kind,
@@ -23,7 +23,7 @@ from rulecheck.parts.check import check_parts
 from rulecheck.parts.edges import ROWS, find_edges
 from rulecheck.reading import SourceText
 from rulecheck.stage import Position
-from rulecheck.values import Dimension, Span, Unknown
+from rulecheck.values import Dimension, Span, Unknown, errors_of
 
 HERE = Span("hut.cir", 1)
 
@@ -101,5 +101,15 @@ def identified(elements: Iterable[Element], parts_yaml: str = "", **subcircuits:
     """The part list of hand-made elements, checked for soundness."""
     sources = [SourceText("hut.parts.yaml", parts_yaml)] if parts_yaml else []
     found = identify_parts(circuit(elements, **subcircuits), read_part_data(sources))
+    assert check_parts(found) == ()
+    return found
+
+
+def parts_of(netlist: str, parts_yaml: str = "") -> PartList:
+    """The part list of a whole netlist (its first line is the title), checked for soundness."""
+    read = read_circuit_text(SourceText("hut.cir", netlist))
+    assert errors_of(read.problems) == ()
+    sources = [SourceText("hut.parts.yaml", parts_yaml)] if parts_yaml else []
+    found = identify_parts(read, read_part_data(sources))
     assert check_parts(found) == ()
     return found

@@ -69,6 +69,7 @@ BOARD = {
     "plug": (card("P4", "A B", "Screw_Terminal"), "connector"),
     "connector by X": (card("X4", "A B C"), "connector"),
     "fuse": (card("F1", "A B", "125A fast"), "fuse"),
+    "fuse with a text of two words": (card("F1", "BAT BUS 125A", "fast"), "fuse"),
     "bead": (card("FB1", "A B", "600R"), "resistor"),
     "thermistor": (card("NTC1", "A B", "10k"), "resistor"),
     "varistor": (card("RV1", "L N", "VDR-275"), "other"),
