@@ -1,6 +1,7 @@
 """`rulecheck`: read the arguments, hand them to the command's module, answer with its status."""
 
 import importlib
+import io
 import os
 import sys
 import traceback
@@ -26,6 +27,7 @@ COMMANDS = {
 
 def main(argv: Sequence[str] | None = None) -> int:
     """Exit status 0: nothing broken; 1: something broken; 2: the input could not be used."""
+    _open_streams()
     request = read_arguments(argv)
     try:
         status = _run(request)
@@ -39,6 +41,16 @@ def main(argv: Sequence[str] | None = None) -> int:
     except Exception as failure:
         return _own_fault(failure)
     return status
+
+
+def _open_streams() -> None:
+    """A closed stream swallows what is written; a sign that one cannot write becomes its code."""
+    for name in ("stdout", "stderr"):
+        stream = getattr(sys, name)
+        if stream is None:
+            setattr(sys, name, open(os.devnull, "w", encoding="utf-8"))  # noqa: SIM115 - until exit
+        elif isinstance(stream, io.TextIOWrapper):
+            stream.reconfigure(errors="backslashreplace")
 
 
 def _run(request: Request) -> int:

@@ -8,7 +8,8 @@ from typing import Literal
 import msgspec
 
 from rulecheck.reading import SourceText, YamlReading, read_text, read_yaml
-from rulecheck.values import Problem, error
+from rulecheck.rulebook import DeviationEntry
+from rulecheck.values import Problem, Span, error
 
 PROJECT_NAME = "rulecheck.yaml"
 _WILD = "*?["
@@ -23,6 +24,7 @@ class ProjectFile(
     sheets: dict[str, str] = {}
     parts: list[str] = []
     packs: list[str] = []
+    deviations: list[DeviationEntry] = []
     fail_at: Literal["error", "warning", "note"] | None = None
     undecided: Literal["pass", "fail"] | None = None
 
@@ -39,6 +41,8 @@ class Project:
     """Names of packs that travel with the program, or paths."""
     fail_at: str = "error"
     undecided_fails: bool = False
+    deviations: tuple[DeviationEntry, ...] = ()
+    deviation_spans: tuple[Span, ...] = ()
     problems: tuple[Problem, ...] = ()
 
 
@@ -68,6 +72,8 @@ def read_project(source: SourceText) -> Project:
         tuple(_pack(name, folder) for name in entries.packs),
         entries.fail_at or "error",
         entries.undecided == "fail",
+        tuple(entries.deviations),
+        tuple(reading.span(("deviations", n)) for n in range(len(entries.deviations))),
         (*reading.problems, *problems),
     )
 

@@ -5,8 +5,9 @@ from typing import TextIO
 
 from rulecheck import __version__
 from rulecheck.report.figures import json_number
-from rulecheck.report.lint_result import Finding, LintReport, LintRun
+from rulecheck.report.lint_result import LintReport, LintRun
 from rulecheck.report.look import PLAIN, Look
+from rulecheck.rulebook import Verdict
 
 
 def render(run: LintRun, stream: TextIO, look: Look = PLAIN) -> None:
@@ -31,7 +32,7 @@ def _document(report: LintReport) -> dict[str, object]:
     }
 
 
-def _finding(finding: Finding) -> dict[str, object]:
+def _finding(finding: Verdict) -> dict[str, object]:
     return {
         "rule": finding.rule,
         "level": finding.level,
@@ -41,13 +42,11 @@ def _finding(finding: Finding) -> dict[str, object]:
         "nets": list(finding.nets),
         "message": finding.message,
         "values": {name: json_value(value) for name, value in finding.values.items()},
-        "missing": [
-            {"what": item.what, "settle_with": item.settle_with} for item in finding.missing
-        ],
+        "missing": [{"what": item.what, "settle_with": item.settle} for item in finding.missing],
         "where": {
-            "file": finding.where.file,
-            "line": finding.where.line,
-            "column": finding.where.column,
+            "file": finding.span.file,
+            "line": finding.span.line,
+            "column": finding.span.column,
         },
         "deviation": _deviation(finding),
     }
@@ -64,7 +63,7 @@ def json_value(value: object) -> object:
     return None
 
 
-def _deviation(finding: Finding) -> dict[str, str] | None:
+def _deviation(finding: Verdict) -> dict[str, str] | None:
     excuse = finding.excuse
     if excuse is None:
         return None

@@ -7,8 +7,9 @@ from typing import TextIO
 from xml.etree import ElementTree
 
 from rulecheck.report.lint_lines import finding_line
-from rulecheck.report.lint_result import Finding, LintReport, LintRun
+from rulecheck.report.lint_result import LintReport, LintRun
 from rulecheck.report.look import PLAIN, Look
+from rulecheck.rulebook import Verdict
 
 
 def render(run: LintRun, stream: TextIO, look: Look = PLAIN) -> None:
@@ -38,11 +39,11 @@ def _suite(run: LintRun, report: LintReport) -> ElementTree.Element:
     return suite
 
 
-def _case(run: LintRun, report: LintReport, finding: Finding) -> ElementTree.Element:
+def _case(run: LintRun, report: LintReport, finding: Verdict) -> ElementTree.Element:
     case = _named_case(report, f"{finding.rule}: {finding.subject}")
     message = _legal(finding.message)
-    text = _legal(finding_line(finding))
-    if run.fails(finding):
+    text = _legal(finding_line(finding, report.is_recorded(finding)))
+    if run.fails(report, finding):
         failure = ElementTree.SubElement(case, "failure", type=finding.level, message=message)
         failure.text = text
     elif finding.verdict == "undecided":

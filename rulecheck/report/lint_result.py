@@ -1,80 +1,16 @@
 """What the lint reports show: findings, the data that others wait for, and the tally."""
 
-from collections.abc import Mapping
-from dataclasses import dataclass
+from collections.abc import Iterable, Mapping
+from dataclasses import dataclass, field
 
-from rulecheck.demand import Undetermined
-from rulecheck.values import Problem, Span, natural_key
+from rulecheck.demand import Demands, Undetermined
+from rulecheck.report.quadrant_result import assumptions, open_questions, what_is_not_covered
+from rulecheck.rulebook import Rule, SwitchedOff, Tally, Verdict, Verdicts, Waiting
+from rulecheck.stage import Stage
+from rulecheck.values import Gravity, Problem, natural_key
 
 LEVELS = ("error", "warning", "note")
 """From the gravest to the lightest, as SARIF names them."""
-
-
-@dataclass(frozen=True, slots=True)
-class Excuse:
-    """A deviation: the broken rule is accepted, why, by whom, and until when (ISO date)."""
-
-    reason: str
-    accepted_by: str
-    until: str
-
-
-@dataclass(frozen=True, slots=True)
-class Finding:
-    """One rule's answer on one subject, other than `holds`."""
-
-    rule: str
-    level: str
-    verdict: str
-    """`broken` or `undecided`."""
-    subject: str
-    parts: tuple[str, ...]
-    nets: tuple[str, ...]
-    message: str
-    values: Mapping[str, object]
-    missing: tuple[Undetermined, ...]
-    where: Span
-    excuse: Excuse | None = None
-    fingerprint: str = ""
-    related: tuple[Span, ...] = ()
-    remedy: str = ""
-
-    @property
-    def excused(self) -> bool:
-        return self.excuse is not None
-
-    @property
-    def sentence(self) -> str:
-        """The message, led by the subject unless it names it at once."""
-        named = self.message.startswith(self.subject)
-        return self.message if named else f"{self.subject}: {self.message}"
-
-
-@dataclass(frozen=True, slots=True)
-class RuleText:
-    """A rule's manual page, as far as a report hands it on."""
-
-    id: str
-    level: str
-    why: str
-    remedy: str
-    source: str
-
-
-@dataclass(frozen=True, slots=True)
-class Tally:
-    holds: int
-    broken: int
-    undecided: int
-    excused: int
-
-
-@dataclass(frozen=True, slots=True)
-class Wanted:
-    """One missing datum and how many checks wait for it."""
-
-    checks: int
-    datum: str
 
 
 @dataclass(frozen=True, slots=True)
@@ -82,26 +18,32 @@ class LintReport:
     """One netlist's answer."""
 
     netlist: str
-    findings: tuple[Finding, ...]
+    findings: tuple[Verdict, ...]
+    """Every verdict but `holds`, gravest first."""
     tally: Tally
-    wanted: tuple[Wanted, ...] = ()
+    waiting: tuple[Waiting, ...] = ()
     undetermined: tuple[Undetermined, ...] = ()
     assumed: tuple[str, ...] = ()
     not_covered: tuple[str, ...] = ()
     remarks: tuple[Problem, ...] = ()
     """How doubtful cards were read."""
+    recorded: frozenset[str] | None = None
+    """With a record at hand: the fingerprints of findings that it has, which fail no run."""
 
     @property
-    def broken(self) -> tuple[Finding, ...]:
-        return tuple(f for f in self.findings if f.verdict == "broken" and not f.excused)
+    def broken(self) -> tuple[Verdict, ...]:
+        return tuple(f for f in self.findings if f.verdict == "broken" and f.excuse is None)
 
     @property
-    def undecided(self) -> tuple[Finding, ...]:
+    def undecided(self) -> tuple[Verdict, ...]:
         return tuple(f for f in self.findings if f.verdict == "undecided")
 
     @property
-    def excused(self) -> tuple[Finding, ...]:
-        return tuple(f for f in self.findings if f.excused)
+    def excused(self) -> tuple[Verdict, ...]:
+        return tuple(f for f in self.findings if f.excuse is not None)
+
+    def is_recorded(self, finding: Verdict) -> bool:
+        return self.recorded is not None and finding.fingerprint in self.recorded
 
 
 @dataclass(frozen=True, slots=True)
@@ -109,15 +51,16 @@ class LintRun:
     """The answers on all netlists of a run, and the rules that were asked."""
 
     reports: tuple[LintReport, ...]
-    rules: tuple[RuleText, ...] = ()
+    rules: tuple[Rule, ...] = ()
     fail_at: str = "error"
     undecided_fails: bool = False
-    switched_off: tuple[str, ...] = ()
-    """Rules that a pack switched off, each with its reason."""
+    switched_off: tuple[SwitchedOff, ...] = ()
+    remedies: Mapping[str, str] = field(default_factory=dict)
+    """By rule: what to do."""
 
-    def fails(self, finding: Finding) -> bool:
+    def fails(self, report: LintReport, finding: Verdict) -> bool:
         """Whether this finding turns the run's exit status to 1."""
-        if finding.excused:
+        if finding.excuse is not None or report.is_recorded(finding):
             return False
         if finding.verdict == "undecided":
             return self.undecided_fails
@@ -125,35 +68,61 @@ class LintRun:
 
     @property
     def failed(self) -> bool:
-        return any(self.fails(f) for report in self.reports for f in report.findings)
+        return any(self.fails(report, f) for report in self.reports for f in report.findings)
 
 
-def in_order(findings: tuple[Finding, ...]) -> tuple[Finding, ...]:
-    """Gravest first, then by place in the file, rule and subject."""
+@dataclass(frozen=True, slots=True)
+class OpenPoints:
+    """What the analysis of a netlist left open, took on trust or found doubtful to read."""
+
+    undetermined: tuple[Undetermined, ...]
+    assumed: tuple[str, ...]
+    not_covered: tuple[str, ...]
+    remarks: tuple[Problem, ...]
+
+
+def open_points(stage: Stage, demands: Demands, problems: tuple[Problem, ...]) -> OpenPoints:
+    """Gather them from the steps' products; of the problems the notes, as remarks."""
+    return OpenPoints(
+        open_questions(stage, demands),
+        assumptions(stage, demands),
+        what_is_not_covered(stage, demands),
+        tuple(problem for problem in problems if problem.gravity is Gravity.NOTE),
+    )
+
+
+def lint_report(
+    verdicts: Verdicts, points: OpenPoints, recorded: frozenset[str] | None = None
+) -> LintReport:
+    """What a report on one netlist shows."""
+    return LintReport(
+        verdicts.netlist,
+        in_order(verdict for verdict in verdicts.verdicts if verdict.verdict != "holds"),
+        verdicts.tally,
+        verdicts.waiting,
+        points.undetermined,
+        points.assumed,
+        points.not_covered,
+        points.remarks,
+        recorded,
+    )
+
+
+def in_order(findings: Iterable[Verdict]) -> tuple[Verdict, ...]:
+    """What is broken first, gravest first, then by place in the file, rule and subject."""
     return tuple(sorted(findings, key=_rank))
 
 
-def _rank(finding: Finding) -> tuple[object, ...]:
+def _rank(finding: Verdict) -> tuple[object, ...]:
+    settled = finding.verdict != "broken" or finding.excuse is not None
     grade = LEVELS.index(finding.level)
-    settled = finding.verdict != "broken" or finding.excused
-    return (settled, grade, finding.where, finding.rule, natural_key(finding.subject))
+    return (settled, grade, finding.span, finding.rule, natural_key(finding.subject))
 
 
-def most_wanted(findings: tuple[Finding, ...]) -> tuple[Wanted, ...]:
-    """The data that undecided checks wait for, the one that settles most first."""
-    counts: dict[str, int] = {}
-    for finding in findings:
-        for settle in dict.fromkeys(item.settle_with for item in finding.missing):
-            counts[settle] = counts.get(settle, 0) + 1
-    order = sorted(counts, key=lambda datum: (-counts[datum], natural_key(datum)))
-    return tuple(Wanted(counts[datum], datum) for datum in order)
-
-
-def tally_line(tally: Tally) -> str:
-    return (
-        f"{tally.holds} hold, {tally.broken} broken, "
-        f"{tally.undecided} undecided, {tally.excused} excused"
-    )
+def sentence(finding: Verdict) -> str:
+    """The message, led by the subject unless it names it at once."""
+    named = finding.message.startswith(finding.subject)
+    return finding.message if named else f"{finding.subject}: {finding.message}"
 
 
 def undecided_lines(report: LintReport) -> tuple[str, ...]:
@@ -163,9 +132,29 @@ def undecided_lines(report: LintReport) -> tuple[str, ...]:
         for finding in report.undecided
         if not finding.missing
     )
-    return (*(wanted_line(item) for item in report.wanted), *unexplained)
+    return (*(waiting_line(item) for item in report.waiting), *unexplained)
 
 
-def wanted_line(item: Wanted) -> str:
+def waiting_line(item: Waiting) -> str:
     checks = "1 check waits" if item.checks == 1 else f"{item.checks} checks wait"
-    return f"{checks} for {item.datum}"
+    return f"{checks} for {item.datum.settle}"
+
+
+def off_line(off: SwitchedOff) -> str:
+    return f"{off.rule}, by {off.pack}: {off.reason}"
+
+
+def tally_line(tally: Tally) -> str:
+    return (
+        f"{tally.holds} hold, {tally.broken} broken, "
+        f"{tally.undecided} undecided, {tally.excused} excused"
+    )
+
+
+def excuse_text(finding: Verdict) -> str:
+    """Who accepted the deviation, why, and until when."""
+    excuse = finding.excuse
+    if excuse is None:
+        return ""
+    until = f", until {excuse.until}" if excuse.until else ""
+    return f"accepted by {excuse.accepted_by}{until}: {excuse.reason}"

@@ -11,16 +11,17 @@ from urllib.parse import quote
 from rulecheck import __version__
 from rulecheck.report.cautions import CAUTIONS
 from rulecheck.report.lint_json import json_value
-from rulecheck.report.lint_lines import excuse_text
 from rulecheck.report.lint_result import (
-    Finding,
     LintReport,
     LintRun,
-    RuleText,
+    excuse_text,
+    off_line,
+    sentence,
     tally_line,
-    wanted_line,
+    undecided_lines,
 )
 from rulecheck.report.look import PLAIN, Look
+from rulecheck.rulebook import Rule, Verdict
 from rulecheck.values import Span
 
 SCHEMA = (
@@ -52,12 +53,14 @@ def _run(run: LintRun) -> dict[str, object]:
             {"executionSuccessful": True, "toolExecutionNotifications": _notifications(run)}
         ],
         "results": [
-            _result(finding, places) for report in run.reports for finding in report.findings
+            _result(report, finding, places)
+            for report in run.reports
+            for finding in report.findings
         ],
     }
 
 
-def _rule(rule: RuleText) -> dict[str, object]:
+def _rule(rule: Rule) -> dict[str, object]:
     return {
         "id": rule.id,
         "shortDescription": {"text": rule.id.replace("-", " ")},
@@ -68,19 +71,21 @@ def _rule(rule: RuleText) -> dict[str, object]:
     }
 
 
-def _result(finding: Finding, places: dict[str, int]) -> dict[str, object]:
+def _result(report: LintReport, finding: Verdict, places: dict[str, int]) -> dict[str, object]:
     undecided = finding.verdict == "undecided"
     result: dict[str, object] = {
         "ruleId": finding.rule,
         "ruleIndex": places.get(finding.rule, -1),
         "kind": "open" if undecided else "fail",
         "level": "none" if undecided else finding.level,
-        "message": {"text": finding.sentence},
+        "message": {"text": sentence(finding)},
         "locations": [_location(finding)],
         "properties": _properties(finding),
     }
     if finding.fingerprint:
         result["partialFingerprints"] = {"rulecheck/v1": finding.fingerprint}
+    if report.recorded is not None:
+        result["baselineState"] = "unchanged" if report.is_recorded(finding) else "new"
     if finding.related:
         result["relatedLocations"] = [
             {"id": number, "physicalLocation": _place(span)}
@@ -93,10 +98,10 @@ def _result(finding: Finding, places: dict[str, int]) -> dict[str, object]:
     return result
 
 
-def _location(finding: Finding) -> dict[str, object]:
+def _location(finding: Verdict) -> dict[str, object]:
     parts = [{"name": name, "kind": "element"} for name in finding.parts]
     nets = [{"name": name, "kind": "net"} for name in finding.nets]
-    return {"physicalLocation": _place(finding.where), "logicalLocations": [*parts, *nets]}
+    return {"physicalLocation": _place(finding.span), "logicalLocations": [*parts, *nets]}
 
 
 def _place(span: Span) -> dict[str, object]:
@@ -106,23 +111,23 @@ def _place(span: Span) -> dict[str, object]:
     }
 
 
-def _properties(finding: Finding) -> dict[str, object]:
+def _properties(finding: Verdict) -> dict[str, object]:
     return {
         "verdict": finding.verdict,
         "values": {name: json_value(value) for name, value in finding.values.items()},
-        "missing": [item.settle_with for item in finding.missing],
+        "missing": [item.settle for item in finding.missing],
     }
 
 
 def _notifications(run: LintRun) -> list[dict[str, object]]:
     """What a reader of the results alone would miss: the open points and the cautions."""
     lines = [line for report in run.reports for line in _open_lines(report)]
-    lines += [f"rule switched off: {off}" for off in run.switched_off]
+    lines += [f"rule switched off: {off_line(off)}" for off in run.switched_off]
     return [{"level": "note", "message": {"text": line}} for line in (*lines, *CAUTIONS)]
 
 
 def _open_lines(report: LintReport) -> list[str]:
-    lines = [tally_line(report.tally), *(wanted_line(item) for item in report.wanted)]
+    lines = [tally_line(report.tally), *undecided_lines(report)]
     lines += [
         f"undetermined: {item.what}; settle with {item.settle_with}" for item in report.undetermined
     ]

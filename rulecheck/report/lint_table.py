@@ -5,11 +5,11 @@ from typing import TextIO
 from rich.console import Console
 from rich.text import Text
 
-from rulecheck.report.lint_lines import excuse_text
 from rulecheck.report.lint_result import (
-    Finding,
     LintReport,
     LintRun,
+    excuse_text,
+    off_line,
     tally_line,
     undecided_lines,
 )
@@ -18,6 +18,7 @@ from rulecheck.report.one_line import visible
 from rulecheck.report.open_points import open_sections
 from rulecheck.report.styles import console_for, hanging
 from rulecheck.report.terminal_sections import print_cautions, print_sections
+from rulecheck.rulebook import Verdict
 
 _LEVEL_WIDTH = len("undecided")
 
@@ -28,42 +29,42 @@ def render(run: LintRun, stream: TextIO, look: Look = PLAIN) -> None:
     for number, report in enumerate(run.reports):
         if number:
             console.print()
-        _print_report(console, report, look)
-    print_sections(console, (("Rules switched off", run.switched_off),), look)
+        _print_report(console, run, report, look)
+    print_sections(
+        console, (("Rules switched off", tuple(off_line(off) for off in run.switched_off)),), look
+    )
     if not look.quiet:
         print_cautions(console, look)
 
 
-def _print_report(console: Console, report: LintReport, look: Look) -> None:
+def _print_report(console: Console, run: LintRun, report: LintReport, look: Look) -> None:
     title = f"{report.netlist}: {tally_line(report.tally)}"
     console.print(Text(visible(title, look), style="heading"), soft_wrap=True)
     for finding in report.broken:
-        _print_finding(console, finding, finding.level, f"level.{finding.level}", look)
+        word = "recorded" if report.is_recorded(finding) else finding.level
+        _print_finding(console, finding, word, run.remedies.get(finding.rule, ""), look)
     for finding in report.excused:
-        _print_finding(console, finding, "excused", "verdict.excused", look)
+        _print_finding(console, finding, "excused", excuse_text(finding), look)
     print_sections(console, _sections(report, look), look)
 
 
-def _print_finding(console: Console, finding: Finding, word: str, style: str, look: Look) -> None:
-    head = Text(f"{word:<{_LEVEL_WIDTH}} ", style=style)
+def _print_finding(console: Console, finding: Verdict, word: str, advice: str, look: Look) -> None:
+    head = Text(f"{word:<{_LEVEL_WIDTH}} ", style=f"finding.{word}")
     head.append(visible(f"{finding.subject}  {finding.rule}", look), style="heading")
-    head.append(visible(f"  {finding.where}", look), style="place")
+    head.append(visible(f"  {finding.span}", look), style="place")
     console.print()
     console.print(head, soft_wrap=True)
     margin = " " * (_LEVEL_WIDTH + 1)
     hanging(console, margin, finding.message, look)
-    if finding.excuse is not None:
-        hanging(console, margin, excuse_text(finding), look)
-    elif finding.remedy:
-        hanging(console, f"{margin}to do: ", finding.remedy, look)
+    if advice:
+        hanging(console, f"{margin}{'' if finding.excuse else 'to do: '}", advice, look)
 
 
 def _sections(report: LintReport, look: Look) -> tuple[tuple[str, tuple[str, ...]], ...]:
-    waiting = undecided_lines(report)
     assumed = () if look.quiet else report.assumed
     remarks = () if look.quiet else tuple(problem.line() for problem in report.remarks)
     return (
-        ("Undecided, and what would decide it", waiting),
+        ("Undecided, and what would decide it", undecided_lines(report)),
         *open_sections(report.undetermined, assumed, report.not_covered),
         ("Remarks on the reading", remarks),
     )

@@ -55,7 +55,7 @@ def quadrant_result(stage: Stage, capabilities: Capabilities, demands: Demands) 
         tuple(sorted(demands.bridges, key=lambda bridge: natural_key(bridge.name))),
         tuple(sorted(demands.groups, key=lambda group: natural_key(group.positions[0]))),
         open_questions(stage, demands),
-        _without_repeats((*stage.parts.assumed, *stage.assumed, *demands.assumed)),
+        assumptions(stage, demands),
         what_is_not_covered(stage, demands),
     )
 
@@ -63,6 +63,11 @@ def quadrant_result(stage: Stage, capabilities: Capabilities, demands: Demands) 
 def open_questions(stage: Stage, demands: Demands) -> tuple[Undetermined, ...]:
     """Every quantity and every part that stayed open, each with what settles it."""
     return (*demands.undetermined, *(_not_understood(name, stage) for name in _unread(stage)))
+
+
+def assumptions(stage: Stage, demands: Demands) -> tuple[str, ...]:
+    """Every reading that the user may overrule, each once."""
+    return _without_repeats((*stage.parts.assumed, *stage.assumed, *demands.assumed))
 
 
 def what_is_not_covered(stage: Stage, demands: Demands) -> tuple[str, ...]:

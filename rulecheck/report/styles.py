@@ -11,11 +11,11 @@ from rulecheck.report.one_line import visible
 
 STYLES = {
     "quadrant.missing": "bold red",
-    "level.error": "bold red",
-    "level.warning": "yellow",
-    "level.note": "cyan",
-    "verdict.undecided": "magenta",
-    "verdict.excused": "dim",
+    "finding.error": "bold red",
+    "finding.warning": "yellow",
+    "finding.note": "cyan",
+    "finding.recorded": "dim",
+    "finding.excused": "dim",
     "heading": "bold",
     "place": "dim",
     "caution": "italic",

@@ -21,7 +21,6 @@ from rulecheck.report import (
     lint_sarif,
     lint_table,
 )
-from rulecheck.report.lint_result import most_wanted, wanted_line
 from rulecheck.values import Span
 from tests.report.examples import rendered
 from tests.report.lint_examples import BROKEN, EXCUSED, RATING, UNDECIDED, lint_run
@@ -54,7 +53,7 @@ def test_json_says_what_an_undecided_check_waits_for_and_who_excused_a_broken_on
     findings = json.loads(rendered(lint_json.render, lint_run()))["findings"]
     by_rule = {finding["rule"]: finding for finding in findings}
     assert by_rule["blocking-rating"]["missing"] == [
-        {"what": RATING.what, "settle_with": RATING.settle_with}
+        {"what": RATING.what, "settle_with": RATING.settle}
     ]
     assert by_rule["unlike-devices"]["deviation"] == {
         "reason": "last of the old stock",
@@ -89,7 +88,7 @@ def test_what_is_open_and_the_cautions_are_always_there(renderer):
         "set: {L3: {current: [LOW, HIGH]}}",
         "the spike of the leakage inductance of T1",
         "C12 read as a snubber of Q1",
-        "stacking: not our job",
+        "stacking, by hut: not our job",
         "clean result is no safety approval",
     ):
         assert words in text
@@ -158,7 +157,7 @@ def test_every_sarif_rule_index_points_at_its_rule():
 
 
 def test_sarif_quotes_a_file_name_that_is_no_uri():
-    odd = dataclasses.replace(BROKEN, where=Span("hut netlists/a#1.cir", 2))
+    odd = dataclasses.replace(BROKEN, span=Span("hut netlists/a#1.cir", 2))
     log = json.loads(rendered(lint_sarif.render, lint_run(odd)))
     place = log["runs"][0]["results"][0]["locations"][0]["physicalLocation"]
     assert place["artifactLocation"]["uri"] == "hut%20netlists/a%231.cir"
@@ -201,17 +200,20 @@ def test_what_fails_a_run(finding, fail_at, undecided_fails, failed):
     assert lint_run(finding, fail_at=fail_at, undecided_fails=undecided_fails).failed is failed
 
 
-def test_the_datum_that_settles_most_checks_comes_first():
-    other = dataclasses.replace(RATING, settle_with="ratings.current of part X")
-    findings = (
-        dataclasses.replace(UNDECIDED, missing=(other,)),
-        dataclasses.replace(UNDECIDED, missing=(RATING, RATING)),
-        dataclasses.replace(UNDECIDED, missing=(RATING,)),
-    )
-    assert [wanted_line(item) for item in most_wanted(findings)] == [
-        f"2 checks wait for {RATING.settle_with}",
-        "1 check waits for ratings.current of part X",
-    ]
+@pytest.mark.parametrize("renderer", [lint_table, lint_lines, lint_markdown])
+def test_a_recorded_finding_is_marked_and_fails_no_run(renderer):
+    run = lint_run(BROKEN, recorded=frozenset({"ab12"}))
+    assert not run.failed
+    assert lint_run(BROKEN, recorded=frozenset({"other"})).failed
+    assert "record" in rendered(renderer.render, run)
+
+
+def test_sarif_tells_new_findings_from_recorded_ones():
+    run = lint_run(BROKEN, EXCUSED, recorded=frozenset({"ab12"}))
+    log = json.loads(rendered(lint_sarif.render, run))
+    jsonschema.validate(log, sarif_schema())
+    states = {r["ruleId"]: r["baselineState"] for r in log["runs"][0]["results"]}
+    assert states == {"reverse-current-path": "unchanged", "unlike-devices": "new"}
 
 
 def test_broken_findings_come_before_excused_and_undecided_ones():

@@ -1,0 +1,41 @@
+"""Which packs are in force: those that travel along, then the project's, then the arguments'.
+
+A shipped rule leaves force only where a later pack switches it off with a reason.
+"""
+
+import difflib
+from collections.abc import Iterable
+from pathlib import Path
+
+from rulecheck.reading import SourceText, read_text
+from rulecheck.rulebook import (
+    IN_FORCE,
+    PROFILES,
+    Rulebook,
+    load_packs,
+    packs_in_force,
+    shipped_pack,
+)
+from rulecheck.values import Problem, Span, error, errors_of
+
+
+def load_rulebook(names: Iterable[str]) -> Rulebook | tuple[Problem, ...]:
+    """The rules in force, or every mistake in the packs."""
+    added = [find_pack(name) for name in dict.fromkeys(names) if name not in IN_FORCE]
+    failed = tuple(pack for pack in added if isinstance(pack, Problem))
+    packs = [*packs_in_force(), *(pack for pack in added if isinstance(pack, SourceText))]
+    rulebook = load_packs(packs)
+    errors = (*failed, *errors_of(rulebook.problems))
+    return errors or rulebook
+
+
+def find_pack(name: str) -> SourceText | Problem:
+    """A pack that travels with the program, by its name, or a file."""
+    shipped = shipped_pack(name)
+    if shipped is not None:
+        return shipped
+    if Path(name).suffix or Path(name).exists():
+        return read_text(Path(name))
+    close = difflib.get_close_matches(name, [*IN_FORCE, *PROFILES], 1)
+    remedy = f"did you mean '{close[0]}'?" if close else "name a file, or one of the shipped packs"
+    return error(Span(name, 1), f"no pack is called '{name}'", remedy)
