@@ -13,11 +13,12 @@ _PREFIX = re.compile(r"[A-Za-z]*")
 # Designators of more than one letter that begin like a device letter and mean something else.
 CLASHING = frozenset({
     "ANT", "BAT", "BR", "BT", "BTN", "BZ", "CB", "CN", "CON", "CONN", "CR", "DISP", "DNP",
-    "DS", "EN", "FAN", "FB", "FD", "FID", "FL", "FS", "FUSE", "GDT", "GND", "HDR", "HS", "IC",
-    "ICSP", "ISO", "JP", "KEY", "LCD", "LD", "LED", "LOGO", "LS", "MCU", "MH", "MIC", "MK",
-    "MOD", "MOT", "MOV", "MP", "MTG", "NTC", "PCB", "PS", "PTC", "PWR", "REL", "RLY", "RN",
+    "FAN", "FB", "FD", "FID", "FL", "FS", "FUSE", "GDT", "GND", "HDR", "HS", "IC",
+    "ICSP", "IN", "INP", "ISO", "JP", "KEY", "LCD", "LD", "LED", "LOGO", "LS", "MCU", "MH",
+    "MIC", "MK", "MOD", "MOT", "MOV", "MP", "MTG", "NTC", "PCB", "PS", "PTC", "PWR", "REL",
+    "RLY", "RN",
     "RT", "RV", "SB", "SCR", "SJ", "SP", "SPK", "SW", "TH", "TP", "TR", "TVS", "VAR", "VR",
-    "XF", "XFMR", "XTAL", "ZD",
+    "ZD",
 })  # fmt: skip
 _AUTOMATIC = re.compile(r"(?:net-|unconnected|nc[-_0-9]|no_?connect|/|n\$?[0-9])", re.IGNORECASE)
 
@@ -31,6 +32,8 @@ def clashes(name: str) -> bool:
 def is_certain(draft: Draft, reading: Reading) -> bool:
     """Whether a card with a clashing designator shows by value or model what it is."""
     has_value = draft.value is not None and draft.letter not in "VI"
+    if draft.subcircuit:
+        return True
     if draft.letter in "VI":
         has_value = draft.waveform is not None or read_number(draft.text.split(" ")[-1]) is not None
     return has_value or reading.is_model(draft.model) or bool(draft.controls)

@@ -35,12 +35,14 @@ def read_behavioural(letter: str, reading: Reading) -> Outcome:
 
 
 def _expression_key(reading: Reading) -> Item | None:
+    items = reading.card.items
+    first = 2 if len(items) > 1 and items[1].kind == GROUP else 3
     return next(
         (
             item
-            for item in reading.card.items[1:]
+            for position, item in enumerate(items)
             if (item.kind == PAIR and item.key.lower() in _EXPRESSIONS)
-            or (item.kind == WORD and item.text.lower() in _WORDS)
+            or (item.kind == WORD and position >= first and item.text.lower() in _WORDS)
         ),
         None,
     )

@@ -40,12 +40,17 @@ def fuse(text: str, items: Sequence[Item]) -> list[Item]:
 
 
 def behind(items: Sequence[Item], end: int) -> list[Item]:
-    """The items behind the nets; a comma between digits is a decimal one there."""
+    """The items behind the nets, without a comma between."""
     rest = [item for item in items if item.start >= end]
     while rest and rest[0].kind == MARK:
         rest.pop(0)
+    return rest
+
+
+def with_decimal_commas(items: Sequence[Item]) -> list[Item]:
+    """In the place of a value a comma between digits is a decimal one."""
     result: list[Item] = []
-    for item in rest:
+    for item in items:
         if len(result) > 1 and _decimal_comma(result[-2], result[-1], item):
             whole = Item(WORD, result[-2].start, item.end, f"{result[-2].text},{item.text}")
             result[-2:] = [whole]
@@ -117,7 +122,7 @@ def take_amount(reading: Reading, items: Sequence[Item]) -> tuple[Amount, list[I
     if not items:
         return None, []
     end = 1
-    while end < len(items) and items[end].start == items[end - 1].end:
+    while end < len(items) and items[end].kind != MARK and items[end].start == items[end - 1].end:
         end += 1
     run, rest = items[:end], list(items[end:])
     whole = reading.text[run[0].start : run[-1].end]

@@ -7,59 +7,57 @@ from rulecheck.reading import SourceText
 from rulecheck.values import Problem, Span, error
 
 _HEAD = 20_000
-_WEB = re.compile(r"<(?:!doctype\s+html|html|head|body)\b", re.IGNORECASE)
-_MARKUP = re.compile(r"\s*<\?xml\b|\s*<[a-z][\w-]*[\s>]", re.IGNORECASE)
-_LISTS = re.compile(r"\s*\(\s*[A-Za-z_][\w-]*[\s()]")
-_SECTION = re.compile(r"\[[^\]\n]+\]\s*\Z")
-_SETTING = re.compile(r"[\w .\\/-]+\s*=")
-_TABLE = re.compile(r"\s*\"[^\"]*\"(?:\s*[,;\t]\s*\"[^\"]*\")+|\s*\"[^\"]*\"\s+\"[^\"]*\"")
-_YAML = re.compile(r"[\w-]+:(?:\s|\Z)|\s+[\w\"*-]+:(?:\s|\Z)|\s+- |---\s*\Z|#")
-_CONTROL = re.compile(r"[\x00-\x08\x0e-\x1f�]")
+_WEB = re.compile(r"^\s*<(?:!doctype\s+html|html)\b", re.IGNORECASE | re.MULTILINE)
+_XML = re.compile(r"\s*<\?xml\b", re.IGNORECASE)
+_TAG = re.compile(r"\s*</?[a-z!][\w:-]*[\s/>]", re.IGNORECASE)
+_LIST = re.compile(r"\s*(?:\(\s*[A-Za-z_]|\))")
+_SECTION = re.compile(r"\s*\[[^\]]+\]\s*\Z")
+_SETTING = re.compile(r"\s*[\w.\\/-]+\s*=")
+_TABLE = re.compile(r"\s*\"[^\"]*\"\s*[,;\t ]\s*\"[^\"]*\"")
+_DATA = re.compile(r"\s*[\[{]\s*[\"{\[]")
+_YAML = re.compile(r"\s*[\w\"*-]+:(?:\s|\Z)|\s*- |---\s*\Z|#")
+_CONTROL = re.compile(r"[\x00-\x08\x0e-\x1f\ufffd]")
+_ALMOST_ALL = 0.9
+_MOST = 0.5
 
 
-def _rows(text: str) -> list[str]:
-    return [row for row in text.split("\n") if row.strip()]
+def _share(pattern: re.Pattern[str], text: str) -> float:
+    """How many of the rows that are not blank begin so."""
+    rows = [row for row in text.split("\n") if row.strip()]
+    return sum(bool(pattern.match(row)) for row in rows) / max(len(rows), 1)
+
+
+def _first(pattern: re.Pattern[str], text: str) -> bool:
+    return pattern.match(text.strip().partition("\n")[0]) is not None
 
 
 def _binary(text: str) -> bool:
-    return "\x00" in text or len(_CONTROL.findall(text)) > len(text) / 20
+    return text.count("\0") * 200 > len(text) or len(_CONTROL.findall(text)) * 20 > len(text)
 
 
-def _sections(text: str) -> bool:
-    rows = _rows(text)
-    if not rows or not _SECTION.match(rows[0].strip()):
-        return False
-    settings = sum(bool(_SECTION.match(row.strip()) or _SETTING.match(row)) for row in rows)
-    return settings * 2 > len(rows)
+def _lists(text: str) -> bool:
+    return _first(_LIST, text) and (_share(_LIST, text) > _MOST or "\n" not in text.strip())
 
 
-def _table(text: str) -> bool:
-    rows = _rows(text)
-    return len(rows) > 1 and sum(bool(_TABLE.match(row)) for row in rows) * 2 > len(rows)
+def _settings(text: str) -> bool:
+    sections = sum(bool(_SECTION.match(row)) for row in text.split("\n"))
+    return _first(_SECTION, text) and (sections > 1 or _share(_SETTING, text) > _MOST)
 
 
-def _data(text: str) -> bool:
-    return text.lstrip()[:1] == "{" and '"' in text[:200]
-
-
-def _yaml(text: str) -> bool:
-    rows = _rows(text)
-    return bool(rows) and sum(bool(_YAML.match(row)) for row in rows) * 10 > len(rows) * 9
+def _markup(text: str) -> bool:
+    return bool(_XML.match(text)) or (_first(_TAG, text) and _share(_TAG, text) > _MOST)
 
 
 # What the text seems to be, and how that shows; in this order.
 _KINDS: tuple[tuple[str, Callable[[str], bool]], ...] = (
     ("a binary file", _binary),
     ("a web page", lambda text: bool(_WEB.search(text))),
-    ("a file of marked-up text (XML)", lambda text: bool(_MARKUP.match(text))),
-    (
-        "a list in parentheses, as board tools write their netlists",
-        lambda text: bool(_LISTS.match(text)),
-    ),
-    ("a file of sections and settings, such as a schematic or a project", _sections),
-    ("a table in quotes, as board tools write their netlists", _table),
-    ("a JSON file", _data),
-    ("a YAML file, such as a stage sheet", _yaml),
+    ("a file of marked-up text (XML)", _markup),
+    ("a list in parentheses, as board tools write their netlists", _lists),
+    ("a file of sections and settings, such as a schematic or a project", _settings),
+    ("a table in quotes, as board tools write their netlists", lambda t: _share(_TABLE, t) > _MOST),
+    ("a JSON file", lambda text: bool(_DATA.match(text))),
+    ("a YAML file, such as a stage sheet", lambda text: _share(_YAML, text) > _ALMOST_ALL),
 )
 
 

@@ -12,6 +12,7 @@ from rulecheck.netlist.fields import (
     plain_and_pairs,
     read_pairs,
     take_amount,
+    with_decimal_commas,
     written,
 )
 from rulecheck.netlist.numbers import read_number
@@ -39,7 +40,7 @@ def read_passive(letter: str, reading: Reading) -> Outcome:
     words = net_words(reading, plain)
     if len(words) < 2:
         return terminal_error(letter, len(words), reading.span)
-    rest = behind(plain, words[1].end)
+    rest = with_decimal_commas(behind(plain, words[1].end))
     if _is_package(reading, [word for word in fuse(reading.text, rest) if word.kind == WORD]):
         return None
     nets = (words[0].text, words[1].text)

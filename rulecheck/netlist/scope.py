@@ -125,7 +125,12 @@ def _names_in(scope: Scope | None) -> list[str]:
 
 def has_parameter(name: str, scope: Scope) -> bool:
     """Whether a lower-case name is a parameter here."""
-    return name in _names_in(scope)
+    home: Scope | None = scope
+    while home is not None:
+        if name in home.definition.parameters or name in home.overrides:
+            return True
+        home = home.parent
+    return False
 
 
 def _parameter(name: str, scope: Scope | None, depth: int) -> Outcome | None:

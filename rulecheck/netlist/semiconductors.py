@@ -125,7 +125,7 @@ def read_modelled(letter: str, reading: Reading) -> Outcome:
     if letter == "A":
         return read_code_model(letter, reading)
     if not row.least <= known <= row.most:
-        return terminal_error(letter, known, reading.span)
+        return None if letter == "U" else terminal_error(letter, known, reading.span)
     return read_transistor(letter, reading)
 
 

@@ -9,6 +9,7 @@ from rulecheck.netlist.fields import (
     plain_and_pairs,
     read_pairs,
     take_amount,
+    with_decimal_commas,
     written,
 )
 from rulecheck.netlist.numbers import read_number
@@ -41,6 +42,8 @@ def read_source(letter: str, reading: Reading) -> Outcome:
         return terminal_error(letter, len(words), reading.span)
     nets = (words[0].text, words[1].text)
     rest = behind(plain, words[1].end)
+    if not any(item.text.lower() in _WAVEFORMS for item in rest):
+        rest = with_decimal_commas(rest)
     value, wave = _value_and_wave(reading, rest)
     parameters = dict(read_pairs(reading, pairs))
     if value is None and not isinstance(parameters.get("dc", ""), str):
