@@ -54,12 +54,10 @@ def read_by_words(element: Element) -> PartReading | None:
         return None
     kind, facts = KIND_WORDS[named]
     roles = next((r for r in (_order(word, kind) for word in words) if r is not None), None)
-    order = " ".join(roles) if roles else "device order"
-    assumed = f"read as {kind} with its pins in the order {order}, from the text '{element.text}'"
-    if roles is None:
-        assumed = f"read as {kind} with its pins in device order, from the text '{element.text}'"
-    elif len(roles) != len(element.nets):
+    if roles is not None and len(roles) != len(element.nets):
         return not_understood(element)
+    order = f"the order {' '.join(roles)}" if roles else "device order"
+    assumed = f"read as {kind.called} with its pins in {order}, from the text '{element.text}'"
     return read_as(element, kind, assumed, facts, roles)
 
 

@@ -48,6 +48,7 @@ def build_part(
         multiplicity=multiplicity,
         instance=element.instance,
         instance_chain=element.instance_chain,
+        named_by=_named_by(element, stated),
     )
     part = replace(part, edges=find_edges(part))
     if applied is None:
@@ -111,6 +112,7 @@ def _inside(whole: Part, name: str, stated: StatedPart) -> Part:
         module=whole.name,
         instance=whole.instance,
         instance_chain=whole.instance_chain,
+        named_by=whole.named_by,
     )
 
 
@@ -137,6 +139,14 @@ def _is_constant(element: Element) -> bool:
 
 def _no_value(name: str) -> Unknown:
     return Unknown(f"value of {name}", f"a number on the card of {name}")
+
+
+def _named_by(element: Element, stated: StatedPart | None) -> str:
+    if stated is not None:
+        return "part data"
+    if element.model is not None:
+        return "model"
+    return "subcircuit" if element.letter == "X" else ""
 
 
 def _settle_in(element: Element, stated: StatedPart | None) -> str:

@@ -64,7 +64,9 @@ class EntryReader:
                 where = (*path, section, name)
                 figure = BY_PATH[f"{section}.{name}"]
                 if figure.path not in APPLICABLE[kind]:
-                    self.fail(where, f"a {kind} has no {section} figure '{name}'", _those_of(kind))
+                    self.fail(
+                        where, f"{kind.called} has no {section} figure '{name}'", _those_of(kind)
+                    )
                 else:
                     self._figure(figure, raw, where, f"part data {key}", stated)
         return stated
@@ -86,14 +88,14 @@ class EntryReader:
         known = allowed(kind)
         for role in roles:
             if known is not None and role not in known:
-                self.fail(where, f"a {kind} has no pin '{role}'", did_you_mean(role, known))
+                self.fail(where, f"{kind.called} has no pin '{role}'", did_you_mean(role, known))
             elif kind in _FREE_NAMES and (near := _slip(role)):
                 self.problems.append(
                     note(self.marks.span(where), f"pin '{role}' is no usual role", near)
                 )
         missing = [role for role in required(kind) if role not in roles]
         if missing:
-            what = f"a {kind} needs a pin '{missing[0]}'"
+            what = f"{kind.called} needs a pin '{missing[0]}'"
             self.fail(where, what, f"its roles are {', '.join(known or ())}")
 
 
@@ -134,4 +136,4 @@ def _slip(role: str) -> str:
 
 def _those_of(kind: Kind) -> str:
     paths = ", ".join(APPLICABLE[kind])
-    return f"those of a {kind} are {paths}" if paths else f"a {kind} takes none"
+    return f"those of {kind.called} are {paths}" if paths else f"{kind.called} takes none"

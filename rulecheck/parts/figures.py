@@ -128,10 +128,10 @@ def figure_named(kind: Kind, name: str) -> Figure | None:
 
 
 _MOS = {
-    "bv": "ratings.blocking",
     "vds": "ratings.blocking",
     "vdss": "ratings.blocking",
     "bvdss": "ratings.blocking",
+    "bv": "ratings.blocking",
     "qg": "gate.charge",
 }
 _BIPOLAR = {
@@ -141,9 +141,9 @@ _BIPOLAR = {
     "icmax": "ratings.current",
 }
 _RECTIFIER = {
-    "bv": "ratings.blocking",
     "vrrm": "ratings.blocking",
     "vpk": "ratings.blocking",
+    "bv": "ratings.blocking",
     "iave": "ratings.current",
 }
 _INSULATED_GATE = {

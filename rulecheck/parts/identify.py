@@ -110,7 +110,7 @@ class _Search:
         kinds = _PASSIVE_KINDS.get(element.letter)
         if stated is None or kinds is None or stated.kind in kinds:
             return stated
-        what = f"part '{stated.key}' is a {stated.kind}, but {element.name} is none"
+        what = f"part '{stated.key}' is {stated.kind.called}, but {element.name} is none"
         remedy = f"make the key fit only the texts of such parts; {element.span} is not changed"
         self.problems.append(error(stated.span, what, remedy))
         return None

@@ -63,7 +63,7 @@ def read_macro(
         pins = dict(zip(roles, instance.nets, strict=True))
         kind, facts, remark = settle(_Macro(pins, body, _merge_leads(body)))
         ports = " ".join(definition.ports)
-        assumed = f"read as {kind}{remark} from the ports of {definition.name}: {ports}"
+        assumed = f"read as {kind.called}{remark} from the ports of {definition.name}: {ports}"
         return PartReading(kind, roles, facts, assumed)
     return None
 

@@ -37,6 +37,11 @@ class Kind(StrEnum):
     OTHER = "other"
     UNKNOWN = "unknown"
 
+    @property
+    def called(self) -> str:
+        """The kind with its article: `a mosfet`, `an igbt`."""
+        return f"{'an' if self.value[0] in 'aeiou' else 'a'} {self.value}"
+
 
 class Conduction(StrEnum):
     """How an edge conducts in its direction."""
@@ -106,6 +111,8 @@ class Part:
     """The module part that this inner device belongs to; empty otherwise."""
     instance: str = ""
     instance_chain: tuple[Span, ...] = ()
+    named_by: str = ""
+    """What says more of it than its letter: `part data`, `model`, `subcircuit`; else empty."""
 
     def net(self, role: str) -> str | None:
         """The net on the pin of that role, or None where the part has no such pin."""

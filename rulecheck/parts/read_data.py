@@ -90,7 +90,7 @@ def _allowed_inside(kind: Kind, owner: Kind, given: bool, path: Path, reader: En
     """Whether an entry of this kind is read inside; a kind that needs an inside must have one."""
     key, name = _INSIDES[owner]
     if given and kind is not owner:
-        reader.fail((*path, key), f"a {kind} has no {name}", f"write kind: {owner}")
+        reader.fail((*path, key), f"{kind.called} has no {name}", f"write kind: {owner}")
     if not given and kind is owner:
         reader.fail(path, f"{owner} '{path[-1]}' lists no {key}", f"list them under {key}:")
     return given and kind is owner

@@ -34,7 +34,7 @@ MODELS = {
     "diode": ("D1", "A K", model("M", "D", bv=600.0), "ratings.blocking", 600.0),
     "diode, rating beside breakdown": (
         *("D1", "A K"),
-        *(model("M", "D", bv=700.0, vrrm=600.0), "ratings.blocking", 700.0),
+        *(model("M", "D", bv=700.0, vrrm=600.0), "ratings.blocking", 600.0),
     ),
     "p-MOSFET, negative": (
         "M1",

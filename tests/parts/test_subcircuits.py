@@ -48,7 +48,7 @@ def test_model_of_one_device_is_read_as_that_device_and_said_so(name: str) -> No
     nets, ports, body, kind = MACROS[name]
     found = identified([card("X1", nets, "SUB"), *body], SUB=ports)
     assert kinds(found) == {"X1": kind}
-    assert found.assumed[0].startswith(f"X1 read as {kind}")
+    assert found.assumed[0].startswith(f"X1 read as {Kind(kind).called} ")
 
 
 FLATTENED = {

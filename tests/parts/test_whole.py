@@ -103,4 +103,4 @@ def test_a_model_of_one_device_inside_a_deck() -> None:
         ".model DBODY D(bv=650)\n.ends\nR1 BUS SW 1\nR2 G SW 1\n"
     )
     assert found.by_name["X1"].kind is Kind.MOSFET
-    assert found.assumed == ("X1 read as mosfet from the ports of SW-650: D G S",)
+    assert found.assumed == ("X1 read as a mosfet from the ports of SW-650: D G S",)
