@@ -110,7 +110,7 @@ def grow(source: SourceText) -> tuple[Branch | None, tuple[Problem, ...]]:
         return None, (error(start, f"not YAML: {reason}", "check how the file was made"),)
     if flaw is not None:
         return None, (flaw,)
-    if node is None:
+    if node is None or (isinstance(node, yaml.ScalarNode) and not node.value):
         return Branch(start, start, mapping={}), ()
     growth = _Growth(source.file)
     root = _branch(node, None, (), growth)
