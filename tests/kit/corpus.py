@@ -4,7 +4,7 @@ One stage is four files in `tests/circuits/sound` or `tests/circuits/faulty`:
 
     NAME.cir            the export; in `faulty` its first line names the one mistake
     NAME.stage.yaml     its sheet, found beside it; `parts:` lists NAME.parts.yaml and
-                        board.parts.yaml (what every board of the hut shares)
+                        what the boards share (board.parts.yaml, passives.parts.yaml)
     NAME.parts.yaml     the stage's own part data (a faulty twin may use its sound one's:
                         `parts: [../sound/NAME.parts.yaml, ../sound/board.parts.yaml]`)
     NAME.expect.yaml    what the textbook says, one line of reasoning in a comment beside it:
