@@ -31,15 +31,21 @@ def read_parameters(card: Card, items: Sequence[Item]) -> tuple[list[Assigned], 
     pairs = [item for item in items if item.kind == PAIR]
     first = items.index(pairs[0]) if pairs else len(items)
     assigned = list(_without_sign(card, items[:first]))
+    assigned.extend(read_pair_assignments(card.line, pairs))
     problems: list[Problem] = []
-    limit = len(card.line.text)
-    for item, following in zip(pairs, [*pairs[1:], None], strict=True):
-        end = following.start if following else limit
-        assigned.append((key_name(item.key), formula_at(card.line, item.value_start, end)))
     if not assigned:
         what = "no parameter is assigned here"
         problems.append(error(card.line.span(), what, "write .param NAME=VALUE"))
     return assigned, problems
+
+
+def read_pair_assignments(line: LogicalLine, pairs: Sequence[Item]) -> list[Assigned]:
+    """Each pair with all that stands up to the next one: `c = a + 1` needs no braces."""
+    ends = [*(pair.start for pair in pairs[1:]), len(line.text)]
+    return [
+        (key_name(pair.key), formula_at(line, pair.value_start, end))
+        for pair, end in zip(pairs, ends, strict=False)
+    ]
 
 
 def _without_sign(card: Card, items: Sequence[Item]) -> Iterator[Assigned]:

@@ -2,7 +2,7 @@
 
 from collections.abc import Callable
 
-from rulecheck.netlist.assignments import formula_at, key_name, read_function, read_parameters
+from rulecheck.netlist.assignments import read_function, read_pair_assignments, read_parameters
 from rulecheck.netlist.definition import Definition
 from rulecheck.netlist.lines import LogicalLine
 from rulecheck.netlist.sorter import Sorter
@@ -23,10 +23,7 @@ def _open_subcircuit(line: LogicalLine, keyword: str, sorter: Sorter) -> None:
     name = words[0].text
     ports, optional, pairs = _ports(words[1:])
     definition = Definition(name, tuple(ports), line.span(), optional)
-    limit = len(line.text)
-    for item, following in zip(pairs, [*pairs[1:], None], strict=True):
-        end = following.start if following else limit
-        definition.parameters[key_name(item.key)] = formula_at(line, item.value_start, end)
+    definition.parameters.update(read_pair_assignments(line, pairs))
     first = sorter.current.inner.setdefault(name.lower(), definition)
     if first is not definition:
         what = f"subcircuit '{name}' is defined a second time; the first, at {first.span}, is used"

@@ -1,5 +1,7 @@
 """Cards that name a model behind their nets: diodes, transistors, switches, instances."""
 
+import re
+
 from rulecheck.netlist.assignments import key_name
 from rulecheck.netlist.draft import Amount, Draft, Outcome, Reading
 from rulecheck.netlist.fields import net_words, pair_formula, plain_and_pairs, read_pairs
@@ -7,6 +9,7 @@ from rulecheck.netlist.numbers import read_number
 from rulecheck.netlist.syntax import Item
 from rulecheck.netlist.terminals import ROWS, terminal_error
 
+_BARE_NUMBER = re.compile(r"[0-9]*\.?[0-9]+(?:[eE][+-]?[0-9]+)?")
 _STATES = frozenset({"on", "off"})
 
 
@@ -62,7 +65,7 @@ def _model_and_extras(words: list[Item], known: bool) -> tuple[str, list[Item]]:
 
 def _is_extra(word: Item) -> bool:
     """An area factor or an initial state behind the model."""
-    return word.text.lower() in _STATES or read_number(word.text) is not None
+    return word.text.lower() in _STATES or _BARE_NUMBER.fullmatch(word.text) is not None
 
 
 def _with_area(
