@@ -33,6 +33,9 @@ from rulecheck.stage import Stage
 _MOST_RECTIFIER_STATES = 32
 
 
+_Names = Sequence[frozenset[str]]
+
+
 @dataclass(frozen=True, slots=True)
 class Worked:
     """Everything the procedure found for one reading of the stage."""
@@ -78,7 +81,9 @@ def work_out(stage: Stage, pulsed: frozenset[str] = frozenset()) -> Worked:
     means = _means(stage, voltages, port_currents, carriers, topology, states)
     box = replace(box, means=means.forms)
     names = _names_by_cluster(topology, states)
-    local = {c.name: _names_of(c, r, names, box, means) for c, r in routes}
+    local = {
+        c.name: box.names_with(_names_of(c, r, topology.clusters, names, means)) for c, r in routes
+    }
     cases = {name: cases_for(found, by_port) for name, found in local.items()}
     routed = _Routed(routes, local, cases)
     reading, failed = _choose_reading(topology, states, routed, box)
@@ -180,13 +185,15 @@ def _names_by_cluster(
 
 
 def _names_of(
-    carrier: Carrier, route: Route, by_cluster: Sequence[frozenset[str]], box: Box, means: Means
-) -> frozenset[str]:
+    carrier: Carrier, route: Route, clusters: Sequence[Cluster], by_cluster: _Names, means: Means
+) -> set[str]:
     names = {carrier.name, *route.fixed.names}
     names |= {n for form in means.rectified.get(carrier.name, ()) for n in form.names}
     for step in route.steps:
         names |= by_cluster[step.cluster]
-    return frozenset(box.only(names & box.ranges.keys()).ranges)
+        for link in clusters[step.cluster].positions:
+            names |= set(means.branches.get(link.name, AffineForm()).names)
+    return names
 
 
 def _choose_reading(

@@ -1,5 +1,6 @@
 """Ranges of the stiff currents: stated, mean plus ripple, clipped where a diode stops them."""
 
+import math
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, replace
 
@@ -134,7 +135,7 @@ def range_of_current(carrier: Carrier, means: Means, around: Surroundings) -> Cu
         mean = _hull(around.box, means.rectified[carrier.name])
         origin = f"mean, rectified: {means.rectified[carrier.name][0].text()} or its negative"
     else:
-        return _without_mean(carrier, ripple, around)
+        return _without_mean(carrier, ripple, means, around)
     span = Interval(mean.low - ripple, mean.high + ripple)
     note = f", +- {write_quantity(ripple, 'A')} of ripple" if ripple else note
     return _clipped(carrier, around, CurrentRange(span, ripple, origin + note, True))
@@ -177,8 +178,36 @@ def _frequency(around: Surroundings) -> float | None:
     return min(own) if own else around.stage.switching.frequency
 
 
-def _without_mean(carrier: Carrier, ripple: float, around: Surroundings) -> CurrentRange:
+def _by_positions(carrier: Carrier, means: Means, around: Surroundings) -> Interval | None:
+    """The sign, and the least magnitude, from a position that carries this current alone.
+
+    Its mean is a share of the current, so the current has the mean's sign and is no smaller.
+    """
+    for step in around.route.steps:
+        states = around.reading.states[step.cluster]
+        for link in around.reading.clusters[step.cluster].positions:
+            mean = means.branches.get(link.name)
+            forms = {s.solution.on_currents[link.name] for s in states if link.name in s.on}
+            if mean is None or len(forms) != 1:
+                continue
+            form = forms.pop()
+            if form.names != (carrier.name,):
+                continue
+            span = around.box.range_of(mean).scaled(1.0 / form.terms[0][1])
+            if span.bounded and not around.box.says_nothing(mean):
+                low = span.low if span.low >= 0.0 else -math.inf
+                return Interval(low, span.high if span.high <= 0.0 else math.inf)
+    return None
+
+
+def _without_mean(
+    carrier: Carrier, ripple: float, means: Means, around: Surroundings
+) -> CurrentRange:
     """A magnetising current is its ripple; another current may still have a known sign."""
+    flow = _by_positions(carrier, means, around)
+    if flow is not None:
+        why = "at least the mean current of a position that carries it; magnitude not stated"
+        return CurrentRange(flow, 0.0, why, True)
     up, down = (around.keeps(carrier.name, EVERYTHING, positive) for positive in (True, False))
     if carrier.name.startswith("i(magnetising") and ripple > 0.0 and (up or down):
         low = -ripple if up and down else 0.0 if up else -2 * ripple

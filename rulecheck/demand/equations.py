@@ -158,19 +158,26 @@ def _solve(left: Matrix, right: Matrix) -> tuple[Matrix, Matrix, Matrix]:
 
 
 def _share_evenly(system: _System, on: frozenset[str], unknowns: Matrix, free: Matrix) -> Matrix:
-    rows, offsets = [], []
+    """Settle what the equations leave open: first gated positions and currents, then diodes.
+
+    A reverse-biased diode's leakage must not pull a net past the free path that clamps it.
+    """
+    gated: list[tuple[Matrix, Matrix]] = []
+    diodes: list[tuple[Matrix, Matrix]] = []
     for link in system.cluster.links:
         if link.position is not None and link.name not in on:
-            rows.append(system.across(link))
-            offsets.append(system.vector(link.step))
+            row = (system.across(link), system.vector(link.step))
+            (gated if link.position.gated else diodes).append(row)
         elif link.name in system.currents:
-            rows.append(system.through(link))
-            offsets.append(np.zeros(len(system.names)))
-    if not free.size or not rows:
-        return unknowns
-    weights = np.array(rows)
-    excess = weights @ unknowns + np.array(offsets)
-    return unknowns - free @ _solve(weights @ free, excess)[0]
+            gated.append((system.through(link), np.zeros(len(system.names))))
+    for rows in (gated, diodes):
+        if free.size and rows:
+            weights = np.array([row for row, _ in rows])
+            excess = weights @ unknowns + np.array([offset for _, offset in rows])
+            step, left, _ = _solve(weights @ free, excess)
+            unknowns = unknowns - free @ step
+            free = free @ left
+    return unknowns
 
 
 def _off_voltages(system: _System, on: frozenset[str], unknowns: Matrix) -> dict[str, Matrix]:

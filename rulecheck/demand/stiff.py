@@ -97,6 +97,10 @@ class Box:
             {**self.ranges, **changed}, self.means, self.ripples, self.phase_sets, self.unsettled
         )
 
+    def names_with(self, names: Iterable[str]) -> frozenset[str]:
+        """Those of the names that are variables here, and the variables they rest on."""
+        return frozenset(self.only(set(names) & self.ranges.keys()).ranges)
+
     def only(self, names: Iterable[str]) -> "Box":
         """The part of the box that these variables and their means need."""
         wanted = set(names)

@@ -6,6 +6,8 @@ Zero-volt sources, fuses, beads, resistors of 0.1 ohm and less, and inductors of
 are wires here, unless the sheet gives the part another role. They stay parts for the rules.
 """
 
+import difflib
+from collections import Counter
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 
@@ -38,7 +40,9 @@ def merge_wires(parts: PartList, sheet: Sheet) -> Wiring:
             wires.append(part)
             assumed.append(f"{part.name} read as a wire ({reason})")
     preferred = _preferred_nets(sheet, parts)
-    merged = _merge(parts, wires, preferred)
+    of_ports = _only_in_ports(parts, sheet)
+    assumed += [f"net {net} exists only in the stage sheet, where ports meet" for net in of_ports]
+    merged = _merge(parts, wires, preferred, of_ports)
     return Wiring(merged, tuple(p.name for p in wires), tuple(assumed))
 
 
@@ -73,8 +77,28 @@ def _preferred_nets(sheet: Sheet, parts: PartList) -> dict[str, int]:
     return {name: rank for rank, name in enumerate(dict.fromkeys(n.lower() for n in names))}
 
 
-def _merge(parts: PartList, wires: Iterable[Part], preferred: Mapping[str, int]) -> dict[str, str]:
-    usage: dict[str, int] = {}
+def _only_in_ports(parts: PartList, sheet: Sheet) -> tuple[str, ...]:
+    """Nets that no part touches but where two or more ports meet, such as a split source's
+    midpoint; one that is nearly the name of a net of the circuit is a slip, not a net."""
+    own = {net.lower() for part in parts.parts for net in part.nets}
+    named = [net for port in sheet.ports for net in (*port.nets, port.neutral) if net]
+    count = Counter(net.lower() for net in named)
+    return tuple(
+        net
+        for net in dict.fromkeys(named)
+        if net.lower() not in own
+        and count[net.lower()] > 1
+        and not difflib.get_close_matches(net.lower(), own, n=1, cutoff=0.6)
+    )
+
+
+def _merge(
+    parts: PartList,
+    wires: Iterable[Part],
+    preferred: Mapping[str, int],
+    of_ports: Iterable[str],
+) -> dict[str, str]:
+    usage: dict[str, int] = dict.fromkeys(of_ports, 0)
     for part in parts.parts:
         for net in part.nets:
             usage[net] = usage.get(net, 0) + 1
