@@ -26,9 +26,10 @@ from rulecheck.demand.states import (
     find_states,
 )
 from rulecheck.demand.stiff import Box
-from rulecheck.demand.topology import Topology, build_topology
+from rulecheck.demand.topology import Cluster, Topology, build_topology
 from rulecheck.demand.voltages import Voltages, derive_voltages, name_of
 from rulecheck.stage import Stage
+from rulecheck.values import AffineForm
 
 _MOST_RECTIFIER_STATES = 32
 
