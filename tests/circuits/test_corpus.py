@@ -32,7 +32,8 @@ def test_sound_stages_have_no_finding(case: Case) -> None:
 @pytest.mark.parametrize("case", FAULTY, ids=str)
 def test_faulty_stages_have_exactly_their_findings(case: Case) -> None:
     found = finding_differences(case)
-    assert case.expected["findings"] and not found, "\n".join(found)
+    assert case.expected["findings"], "a faulty stage has findings"
+    assert not found, "\n".join(found)
 
 
 @pytest.mark.parametrize("case", FAULTY, ids=str)
