@@ -88,7 +88,7 @@ def test_two_switch_forward() -> None:
     study = Study(cards, sheet(dc("in", "IN", voltage=v_in), output))
     high = 10 + duty * v_in / ratio * (1 - duty) / (1e-3 * 100e3) / 2
     for name in ("M1", "M2"):
-        study.expect(name, off=(None, v_in), on=(None, high / ratio), quadrants="I")
+        study.expect(name, off=(None, v_in), on=(None, high / ratio), quadrants="I", within=0.03)
     for name in ("D3", "D4"):
         study.expect(name, off=(-v_in, None), quadrants="II")
     for name in ("D1", "D2"):
