@@ -61,7 +61,9 @@ def read_function(card: Card, items: Sequence[Item]) -> tuple[str, UserFunction]
         return None
     arguments = tuple(item.text.lower() for item in items[1].inner if item.kind == WORD)
     rest = [item for item in items[2:] if item.text != "="]
-    if not rest or (rest[0].kind in (BRACED, QUOTED) and len(rest) == 0):
+    if not rest:
         return None
-    body = formula_at(card.line, rest[0].start, len(card.line.text))
+    enclosed = rest[0].kind in (BRACED, QUOTED)
+    end = rest[0].end if enclosed else len(card.line.text)
+    body = formula_at(card.line, rest[0].start, end)
     return items[0].text.lower(), UserFunction(arguments, body)

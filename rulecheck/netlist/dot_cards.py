@@ -44,8 +44,10 @@ def _ports(words: list[Item]) -> tuple[list[str], dict[str, str], list[Item]]:
             done = done or word.text.endswith(":")
             if not done:
                 ports.append(word.text)
-        elif in_optional or key.startswith(_OPTIONAL):
-            in_optional = True
+            continue
+        if ":" in key:
+            in_optional = key.startswith(_OPTIONAL)
+        if in_optional:
             optional[word.key.rpartition(":")[2]] = word.text
         else:
             done = True
@@ -54,19 +56,20 @@ def _ports(words: list[Item]) -> tuple[list[str], dict[str, str], list[Item]]:
 
 
 def _close_subcircuit(line: LogicalLine, keyword: str, sorter: Sorter) -> None:
-    name = line.text.split()[1].lower() if len(line.text.split()) > 1 else ""
+    words = line.text.split()
+    name = words[1] if len(words) > 1 else ""
     names = [definition.name.lower() for definition in sorter.stack[1:]]
     if not names:
         sorter.fail(line.span(), ".ends without a .subckt before it", "delete it")
         return
-    if name and name != names[-1] and name in names:
-        while sorter.current.name.lower() != name:
+    if name and name.lower() not in names:
+        what = f".ends {name} closes subcircuit '{sorter.current.name}'"
+        sorter.remark(line.span(), what, "use the same name")
+    elif name:
+        while sorter.current.name.lower() != name.lower():
             left = sorter.stack.pop()
             what = f"subcircuit '{left.name}' is not closed before '{name}' ends"
             sorter.fail(left.span, what, "add its .ends card")
-    elif name and name != names[-1]:
-        what = f".ends {name} closes subcircuit '{sorter.current.name}'"
-        sorter.remark(line.span(), what, "use the same name")
     sorter.stack.pop()
 
 
@@ -76,7 +79,9 @@ def _parameters(line: LogicalLine, keyword: str, sorter: Sorter) -> None:
         return
     if len(items) > 2 and items[1].kind == GROUP and items[1].start == items[0].end:
         _function(line, keyword, sorter)
-        return
+        items = [item for item in items[3:] if item.kind == PAIR]
+        if not items:
+            return
     assigned, problems = read_parameters(card, items)
     sorter.problems.extend(problems)
     for name, formula in assigned:

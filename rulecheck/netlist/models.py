@@ -161,10 +161,12 @@ def _parameters(
         if item.kind == PAIR and not item.key.lower().startswith(_TOLERANCES):
             found[item.key.lower().replace("-", "_")] = _amount(item, line, scope)
         elif item.kind == WORD and not read_number(item.text):
-            number = read_number(following.text) if following else None
-            if number is not None:
-                position += 1
-            if not item.text.lower().startswith(_TOLERANCES):
+            tolerance = item.text.lower().startswith(_TOLERANCES)
+            number = None
+            if following is not None and following.kind == WORD:
+                number = read_number(following.text)
+                position += number is not None or tolerance
+            if not tolerance:
                 found[item.text.lower()] = number.value if number else 1.0
     return tuple(found.items())
 

@@ -79,6 +79,7 @@ def test_a_passive_with_a_model() -> None:
         ("R1 a b 2R2", "'2R2' is read as 2.2"),
         ("C1 a b 1n2", "'1n2' is read as 1.2n"),
         ("R1 a b 4,7k", "'4,7k' is read with a decimal comma"),
+        ("V1 a b 4,8V", "'4,8V' is read with a decimal comma"),
         ("C1 a b 100nF/50V", "'/50V' is ignored"),
         ("R1 a b Rload\n.param Rload=5", "'Rload' is taken as the parameter of that name"),
     ],
