@@ -13,7 +13,7 @@ from dataclasses import replace
 from rulecheck.netlist import Element
 from rulecheck.parts.edges import POLARITY
 from rulecheck.parts.part import Kind
-from rulecheck.parts.reading import PartReading, not_understood, read_as
+from rulecheck.parts.part_reading import PartReading, not_understood, read_as
 from rulecheck.parts.roles import PINOUTS, role_of
 from rulecheck.values import Dimension, Quantity, Unknown, read_quantity
 

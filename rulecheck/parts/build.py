@@ -12,7 +12,7 @@ from rulecheck.netlist import Element
 from rulecheck.parts.edges import find_edges
 from rulecheck.parts.part import Core, Kind, Part, Pin
 from rulecheck.parts.part_data import StatedDevice, StatedPart, StatedWinding
-from rulecheck.parts.reading import PartReading
+from rulecheck.parts.part_reading import PartReading
 from rulecheck.parts.roles import pair_up
 from rulecheck.parts.stated import gather, multiplied
 from rulecheck.values import Problem, Unknown

@@ -10,7 +10,7 @@ from rulecheck.netlist import Element
 from rulecheck.parts.board import prefix_of, read_by_prefix, read_by_words
 from rulecheck.parts.models import read_by_model
 from rulecheck.parts.part import Kind
-from rulecheck.parts.reading import PartReading, not_understood, read_as
+from rulecheck.parts.part_reading import PartReading, not_understood, read_as
 from rulecheck.values import Unknown
 
 

@@ -17,8 +17,8 @@ from rulecheck.parts.macro import read_macro
 from rulecheck.parts.models import read_as_stated
 from rulecheck.parts.part import Core, Kind, Part, PartList
 from rulecheck.parts.part_data import NO_PART_DATA, PartData, StatedPart
+from rulecheck.parts.part_reading import PartReading, not_understood
 from rulecheck.parts.pinning import find_roles, split_nets
-from rulecheck.parts.reading import PartReading, not_understood
 from rulecheck.values import Problem, error, note
 
 _UNMATCHED = frozenset("VIEGHBK")

@@ -14,7 +14,7 @@ from rulecheck.netlist import Element, Subcircuit
 from rulecheck.parts.edges import POLARITY
 from rulecheck.parts.models import is_p_channel
 from rulecheck.parts.part import Kind
-from rulecheck.parts.reading import PartReading
+from rulecheck.parts.part_reading import PartReading
 from rulecheck.parts.roles import PINOUTS, role_of
 from rulecheck.values import Unknown
 

@@ -11,7 +11,7 @@ from collections.abc import Mapping
 from rulecheck.netlist import Element, Model
 from rulecheck.parts.edges import BODY_DIODE, POLARITY
 from rulecheck.parts.part import Kind
-from rulecheck.parts.reading import PartReading, not_understood, read_as
+from rulecheck.parts.part_reading import PartReading, not_understood, read_as
 from rulecheck.parts.roles import Roles
 
 MODEL_KINDS: Mapping[str, Mapping[str, Kind]] = {
