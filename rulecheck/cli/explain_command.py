@@ -62,6 +62,10 @@ def _no_such_name(name: str, analysis: Analysis) -> Problem:
     names = known_names(analysis.stage, analysis.demands)
     by_case = {known.lower(): known for known in names}
     close = difflib.get_close_matches(name.lower(), by_case, 1)
-    remedy = f"did you mean '{by_case[close[0]]}'?" if close else "see the names in `quadrants`"
+    remedy = (
+        f"did you mean '{by_case[close[0]]}'?"
+        if close
+        else "`rulecheck quadrants` lists the positions"
+    )
     what = f"no position, leg, part or port is called '{name}'"
     return error(Span(analysis.netlist, 1), what, remedy)

@@ -3,14 +3,20 @@
 from rulecheck.capability import Capabilities
 from rulecheck.demand import Demands, Leg
 from rulecheck.parts import Part
-from rulecheck.report.explain_leg import explain_leg
+from rulecheck.report.explain_leg import explain_bridge, explain_leg
 from rulecheck.report.explain_position import explain_position
 from rulecheck.report.explain_variable import variable_entries
 from rulecheck.report.explanation import Entry, Explanation
 from rulecheck.report.figures import figure, range_figure
 from rulecheck.report.look import PLAIN, Look
-from rulecheck.stage import Port, Position, Stage
+from rulecheck.stage import Port, PortKind, Position, Stage
 from rulecheck.values import natural_key
+
+_PORT_WORDS = {
+    PortKind.DC: "DC port",
+    PortKind.AC: "AC port",
+    PortKind.PHASES: "port of symmetrical phases",
+}
 
 
 def explain(
@@ -24,9 +30,12 @@ def explain(
     leg = _leg(wanted, demands)
     if leg is not None:
         return explain_leg(leg, stage, demands, look)
+    bridge = next((bridge for bridge in demands.bridges if bridge.name.lower() == wanted), None)
+    if bridge is not None:
+        return explain_bridge(bridge, demands)
     port = next((port for port in stage.ports if port.name.lower() == wanted), None)
     if port is not None:
-        return _explain_port(port, demands, look)
+        return _explain_port(port, stage, demands, look)
     part = next((part for part in stage.parts.parts if part.name.lower() == wanted), None)
     return _explain_part(part, stage, demands, look) if part is not None else None
 
@@ -35,6 +44,7 @@ def known_names(stage: Stage, demands: Demands) -> tuple[str, ...]:
     """Every name that `explain` answers to."""
     names = {position.name for position in stage.positions}
     names |= {leg.name for leg in demands.legs} | {port.name for port in stage.ports}
+    names |= {bridge.name for bridge in demands.bridges}
     names |= {part.name for part in stage.parts.parts}
     return tuple(sorted(names, key=natural_key))
 
@@ -55,17 +65,17 @@ def _leg(wanted: str, demands: Demands) -> Leg | None:
     )
 
 
-def _explain_port(port: Port, demands: Demands, look: Look) -> Explanation:
+def _explain_port(port: Port, stage: Stage, demands: Demands, look: Look) -> Explanation:
     stated = (("voltage", port.voltage, "V"), ("current", port.current, "A"))
     return Explanation(
-        f"{port.name}  {port.kind.value} port at {', '.join(port.nets)}  ({port.span})",
+        f"{port.name}  {_PORT_WORDS[port.kind]} at {', '.join(port.nets)}  ({port.span})",
         (
             Entry("stated in", port.stated_in),
             *(
                 Entry(label, range_figure(value, unit, look) if value else "left open")
                 for label, value, unit in stated
             ),
-            *variable_entries(_names_with(port.name, demands), demands, 0, look),
+            *variable_entries(_names_with(port.name, demands), stage, demands, 0, look),
         ),
     )
 
@@ -79,7 +89,7 @@ def _explain_part(part: Part, stage: Stage, demands: Demands, look: Look) -> Exp
             Entry("pins", pins),
             Entry("role", _role_text(part, stage) if role is not None else "none found"),
             *(Entry(path, _datum_text(part, path), 1) for path in sorted(part.data)),
-            *variable_entries(_names_with(part.name, demands), demands, 0, look),
+            *variable_entries(_names_with(part.name, demands), stage, demands, 0, look),
             *_carried_by(part.name, demands, look),
         ),
     )
@@ -100,9 +110,9 @@ def _datum_text(part: Part, path: str) -> str:
 
 
 def _names_with(owner: str, demands: Demands) -> tuple[str, ...]:
-    """The variables that belong to a part or port: `i(L1)`, `v(C7)`, `supplies(battery)`."""
-    wanted = f"({owner.lower()})"
-    return tuple(v.name for v in demands.variables if v.name.lower().endswith(wanted))
+    """The variables that belong to a part or port: `i(L1)`, `v(C7)`, `i(pump/U)`."""
+    ends = (f"({owner.lower()})", f"({owner.lower()}/")
+    return tuple(v.name for v in demands.variables if any(end in v.name.lower() for end in ends))
 
 
 def _carried_by(part: str, demands: Demands, look: Look) -> tuple[Entry, ...]:

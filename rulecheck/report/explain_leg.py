@@ -1,6 +1,6 @@
 """Why positions form a leg: its states, and what happens with all gates off."""
 
-from rulecheck.demand import Demands, Leg
+from rulecheck.demand import Bridge, Demands, Leg
 from rulecheck.report.explain_variable import variable_entries
 from rulecheck.report.explanation import Entry, Explanation
 from rulecheck.report.figures import figure, range_figure
@@ -8,6 +8,23 @@ from rulecheck.report.look import PLAIN, Look
 from rulecheck.stage import Stage
 
 _MOST_STATES = 16
+
+
+def explain_bridge(bridge: Bridge, demands: Demands) -> Explanation:
+    """The legs of a bridge, each with its rails and positions."""
+    legs = [leg for leg in demands.legs if leg.name in bridge.legs]
+    entries = [
+        Entry(
+            leg.name,
+            f"{leg.kind} on {_listed(leg.rails)}: {_listed((*leg.high, *leg.low, *leg.others))}",
+        )
+        for leg in legs
+    ]
+    return Explanation(f"{bridge.name}  {bridge.kind}", tuple(entries))
+
+
+def _listed(names: tuple[str, ...]) -> str:
+    return ", ".join(names)
 
 
 def explain_leg(leg: Leg, stage: Stage, demands: Demands, look: Look = PLAIN) -> Explanation:
@@ -22,7 +39,7 @@ def explain_leg(leg: Leg, stage: Stage, demands: Demands, look: Look = PLAIN) ->
             Entry("levels", str(leg.levels)),
             *_state_entries(members, demands),
             *_range_entries(members, demands, look),
-            *variable_entries(_variables(members, demands), demands, 1, look),
+            *variable_entries(_variables(members, demands), stage, demands, 1, look),
             *_switching_entries(leg, stage),
             *_event_entries(members, demands, look),
         ),

@@ -11,6 +11,8 @@ from rulecheck.report.standing import standing
 from rulecheck.stage import Position, Stage
 from rulecheck.values import Interval, QuadrantSet, Unknown
 
+_NO_RATING = "no: nothing in it is stated to withstand that polarity"
+
 
 def explain_position(
     position: Position,
@@ -27,7 +29,7 @@ def explain_position(
         f"{title}  ({position.span})",
         (
             Entry("drawn as", _parts(position, stage)),
-            *_demand_entries(row.demand, demands, look),
+            *_demand_entries(row.demand, stage, demands, look),
             Entry("needs", _quadrants(row.needs, look)),
             Entry("has", _quadrants(row.capability.quadrants, look)),
             *_capability_entries(row),
@@ -43,7 +45,9 @@ def _parts(position: Position, stage: Stage) -> str:
     return ", ".join(f"{part.name} ({part.kind} {part.text})" for part in named if part)
 
 
-def _demand_entries(demand: PositionDemand, demands: Demands, look: Look) -> tuple[Entry, ...]:
+def _demand_entries(
+    demand: PositionDemand, stage: Stage, demands: Demands, look: Look
+) -> tuple[Entry, ...]:
     witnesses = (demand.off_low, demand.off_high, demand.on_low, demand.on_high)
     names = [name for witness in witnesses if witness for name in witness.form.names]
     return (
@@ -51,7 +55,7 @@ def _demand_entries(demand: PositionDemand, demands: Demands, look: Look) -> tup
         *_witness_entries(demand.off_low, demand.off_high, "V", demands),
         Entry("must carry", _range(demand.on_current, "A", look)),
         *_witness_entries(demand.on_low, demand.on_high, "A", demands),
-        *variable_entries(names, demands, 1, look),
+        *variable_entries(names, stage, demands, 1, look),
     )
 
 
@@ -120,7 +124,7 @@ def _asked(demand: Interval | Unknown, sign: float) -> float | None:
 
 def _blocking(direction: Direction, asked: float | None) -> str:
     if not direction.holds_off:
-        return "no: current flows freely that way"
+        return "no: current flows freely that way" if direction.freewheels else _NO_RATING
     weakest = f", {_chain(direction.weakest)} decides" if direction.weakest else ""
     return _use(direction.blocks, direction.blocks_at_least, asked, "V") + weakest
 
@@ -128,9 +132,9 @@ def _blocking(direction: Direction, asked: float | None) -> str:
 def _carrying(direction: Direction, asked: float | None) -> str:
     if not direction.carries:
         return f"no, {figure(asked, 'A')} asked" if asked else "no"
-    way = " without any gate" if direction.freewheels else " with the gates on"
-    through = f"through {_chain(direction.carried_by)}{way}" if direction.carried_by else way[1:]
-    return f"{_use(direction.current, direction.current_at_least, asked, 'A')}, {through}"
+    way = "without any gate" if direction.freewheels else "with the gates on"
+    path = f"by a path through {_chain(direction.carried_by)} " if direction.carried_by else ""
+    return f"{_use(direction.current, direction.current_at_least, asked, 'A')}, {path}{way}"
 
 
 def _chain(names: tuple[str, ...]) -> str:

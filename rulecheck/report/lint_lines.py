@@ -19,6 +19,7 @@ from rulecheck.report.lint_result import (
 )
 from rulecheck.report.look import PLAIN, Look
 from rulecheck.report.one_line import one_line
+from rulecheck.report.open_points import merged
 from rulecheck.rulebook import Verdict
 
 
@@ -58,5 +59,5 @@ def _lines(report: LintReport, look: Look) -> Iterator[str]:
         yield f"{name}: note: undetermined: {item.what}; settle with {item.settle_with}"
     yield from (f"{name}: note: not covered: {line}" for line in report.not_covered)
     if not look.quiet:
-        yield from (f"{name}: note: assumed: {line}" for line in report.assumed)
+        yield from (f"{name}: note: assumed: {line}" for line in merged(report.assumed))
     yield f"{name}: note: {tally_line(report.tally)}"

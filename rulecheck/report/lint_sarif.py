@@ -21,6 +21,7 @@ from rulecheck.report.lint_result import (
     undecided_lines,
 )
 from rulecheck.report.look import PLAIN, Look
+from rulecheck.report.open_points import merged
 from rulecheck.rulebook import Rule, Verdict
 from rulecheck.values import Span
 
@@ -132,5 +133,5 @@ def _open_lines(report: LintReport) -> list[str]:
         f"undetermined: {item.what}; settle with {item.settle_with}" for item in report.undetermined
     ]
     lines += [f"not covered: {line}" for line in report.not_covered]
-    lines += [f"assumed: {line}" for line in report.assumed]
+    lines += [f"assumed: {line}" for line in merged(report.assumed)]
     return [f"{report.netlist}: {line}" for line in lines]
