@@ -3,9 +3,16 @@
 import re
 
 from rulecheck.netlist.draft import Draft, Reading
-from rulecheck.netlist.fields import fuse, net_words, plain_and_pairs, read_pairs, written
+from rulecheck.netlist.fields import (
+    fuse,
+    mend_blanks,
+    net_words,
+    plain_and_pairs,
+    read_pairs,
+    written,
+)
 from rulecheck.netlist.numbers import read_number
-from rulecheck.netlist.syntax import Item
+from rulecheck.netlist.syntax import GROUP, Item
 
 UNTOLD = "?"
 _PREFIX = re.compile(r"[A-Za-z]*")
@@ -32,7 +39,7 @@ def clashes(name: str) -> bool:
 def is_certain(draft: Draft, reading: Reading) -> bool:
     """Whether a card with a clashing designator shows by value or model what it is."""
     has_value = draft.value is not None and draft.letter not in "VI"
-    if draft.subcircuit:
+    if draft.subcircuit or draft.letter == "T":
         return True
     if draft.letter in "VI":
         has_value = draft.waveform is not None or read_number(draft.text.split(" ")[-1]) is not None
@@ -42,7 +49,7 @@ def is_certain(draft: Draft, reading: Reading) -> bool:
 def read_board_part(reading: Reading) -> Draft:
     """Nets as they come; the value text is the last word, or what is no net at the end."""
     plain, pairs = plain_and_pairs(reading)
-    words = net_words(reading, plain)
+    words = _words(reading, plain)
     count = _count_nets(reading, words)
     nets = tuple(word.text for word in words[:count])
     tail = [item for item in fuse(reading.text, plain) if _behind(item, words, count)]
@@ -57,6 +64,13 @@ def read_board_part(reading: Reading) -> Draft:
     )
 
 
+def _words(reading: Reading, plain: list[Item]) -> list[Item]:
+    """Groups are opened at the front only: behind a net they belong to the value text."""
+    fused = fuse(reading.text, plain)
+    front = next((k for k, item in enumerate(fused) if item.kind != GROUP), len(fused))
+    return [*net_words(reading, fused[:front]), *mend_blanks(reading, fused[front:])]
+
+
 def _behind(item: Item, words: list[Item], count: int) -> bool:
     return count < len(words) and item.end > words[count].start
 
@@ -67,9 +81,9 @@ def _count_nets(reading: Reading, words: list[Item]) -> int:
     if not words:
         return 0
     texts = [word.text for word in words]
+    for position, word in enumerate(words):
+        if position and (word.kind == GROUP or "@" in word.text):
+            return position - 1
     if all(reading.is_net(text) or _AUTOMATIC.match(text) for text in texts):
         return len(words)
-    for position, text in enumerate(texts):
-        if position and ("@" in text or text.startswith("(")):
-            return position - 1 if position == len(texts) - 1 else position
     return len(words) - 1

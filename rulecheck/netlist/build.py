@@ -4,6 +4,7 @@ import re
 from collections.abc import Iterable
 from pathlib import Path
 
+from rulecheck.netlist.board import UNTOLD
 from rulecheck.netlist.circuit import GROUND, Circuit, Element
 from rulecheck.netlist.deck import read_deck
 from rulecheck.netlist.definition import Deck
@@ -33,8 +34,8 @@ def read_circuit_text(source: SourceText) -> Circuit:
     deck = read_deck(source)
     flat = flatten(deck)
     problems = [*deck.problems, *flat.problems]
-    if not flat.elements and not errors_of(tuple(problems)):
-        problems.append(_no_element(deck))
+    if not errors_of(tuple(problems)) and all(one.letter == UNTOLD for one in flat.elements):
+        problems.append(_no_element(deck, bool(flat.elements)))
     return Circuit(
         deck.file,
         deck.title,
@@ -50,9 +51,11 @@ def _nothing(file: str, problem: Problem) -> Circuit:
     return Circuit(file, "", (), {}, (), (), (problem,))
 
 
-def _no_element(deck: Deck) -> Problem:
+def _no_element(deck: Deck, any_card: bool) -> Problem:
     what = "the netlist has a title and no element"
-    if deck.top.inner or deck.top.models:
+    if any_card:
+        what = "no card is an element that a netlist has; this may be another kind of file"
+    elif deck.top.inner or deck.top.models:
         what = "the file defines subcircuits or models and has no element of its own"
     return error(Span(deck.file, 1), what, "export the circuit, not only its frame or library")
 

@@ -76,10 +76,10 @@ def net_words(reading: Reading, items: Sequence[Item]) -> list[Item]:
         words.extend(word for word in item.inner if word.kind != MARK) if (
             item.kind == GROUP
         ) else words.append(item)
-    return _mend_blanks(reading, words)
+    return mend_blanks(reading, words)
 
 
-def _mend_blanks(reading: Reading, words: list[Item]) -> list[Item]:
+def mend_blanks(reading: Reading, words: list[Item]) -> list[Item]:
     """`/Main Supply/BUS`: a hierarchical net name of which the sheet's name holds a blank."""
     for start, word in enumerate(words):
         if not word.text.startswith("/") or "/" in word.text[1:]:
@@ -92,7 +92,7 @@ def _mend_blanks(reading: Reading, words: list[Item]) -> list[Item]:
                 remark = f"'{whole}' is taken as one net, of which the sheet's name holds a blank"
                 reading.remark(word, remark, "rename the sheet without a blank")
                 joined = Item(WORD, word.start, words[end].end, whole)
-                return [*words[:start], joined, *_mend_blanks(reading, words[end + 1 :])]
+                return [*words[:start], joined, *mend_blanks(reading, words[end + 1 :])]
     return words
 
 

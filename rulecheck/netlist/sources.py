@@ -52,6 +52,8 @@ def read_source(letter: str, reading: Reading) -> Outcome:
         value = _at_time_zero(wave)
     elif value is None and not _bare_text(rest):
         value = 0.0
+    elif value is None and letter == "I" and not reading.name[1:2].isdigit():
+        return None  # a connector called IN, not a current source
     return Draft(
         reading.name,
         letter,

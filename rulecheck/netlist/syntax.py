@@ -2,7 +2,7 @@
 
 import re
 from collections.abc import Callable, Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cache
 from typing import Any, NamedTuple
 
@@ -79,7 +79,7 @@ def read_card(line: LogicalLine) -> Card | Problem:
     items = [_item(text, child) for child in raw]  # type: ignore[attr-defined]
     if any(item.kind == PAIR for item in items):
         items = _extend_pairs(text, items)
-    return Card(line, tuple(items), notes)
+    return Card(replace(line, text=text), tuple(items), notes)
 
 
 def _plain_words(text: str) -> Iterator[Item]:
