@@ -29,6 +29,16 @@ def largest(demands: Demands, asked: Asked, positive: bool) -> Value:
     return Bounds(Interval(0.0, math.inf), missing_in(demands, witness))
 
 
+def whole(demands: Demands, asked: Asked) -> Value:
+    """The range itself; where an end is open, with what would settle it."""
+    if isinstance(asked.range, Unknown) or asked.range.bounded:
+        return asked.range
+    ends = ((asked.range.low, asked.low), (asked.range.high, asked.high))
+    open_ones = [witness for end, witness in ends if math.isinf(end)]
+    missing = [item for witness in open_ones for item in missing_in(demands, witness)]
+    return Bounds(asked.range, tuple(dict.fromkeys(missing)))
+
+
 def missing_in(demands: Demands, witness: Witness | None) -> tuple[Unknown, ...]:
     """The variables without a known range that the witness's form rests on."""
     variables = {variable.name: variable for variable in demands.variables}

@@ -3,10 +3,11 @@
 from collections.abc import Mapping
 
 from rulecheck.facts.facts import Subject, Value
+from rulecheck.facts.gate_source import find_gate_source
 from rulecheck.facts.inputs import Inputs
-from rulecheck.facts.terms import SubjectTerm, count, link, yes_no
+from rulecheck.facts.terms import SubjectTerm, count, link, number, text, yes_no
 from rulecheck.parts import Part
-from rulecheck.values import natural_key
+from rulecheck.values import Dimension, natural_key
 
 GATE_DRIVE = SubjectTerm(
     "gate-drive",
@@ -15,6 +16,9 @@ GATE_DRIVE = SubjectTerm(
         count("gates", "How many devices have their gate on it."),
         count("positions-driven", "How many positions those devices are in."),
         yes_no("driven", "Something besides gates is on the net."),
+        text("driven-by", "`driver` or `source` behind its resistors; empty where neither is."),
+        text("driver", "The name of that driver or source."),
+        number("drive-voltage", Dimension.VOLTAGE, "The largest voltage that it puts on the gate."),
         yes_no("on-own-return", "A device's gate is on that device's own source or emitter."),
     ),
     (
@@ -36,10 +40,14 @@ def _gate_drive(inputs: Inputs, gate: str) -> Subject:
     devices = inputs.devices_at_gate[gate]
     parts = [inputs.part_by_name[name] for name in devices]
     positions = _distinct(inputs.positions_of_part, devices)
+    source = find_gate_source(inputs, gate)
     values: dict[str, Value] = {
         "gates": float(len(devices)),
         "positions-driven": float(len(positions)),
         "driven": _driven(inputs, gate, devices),
+        "driven-by": source.by,
+        "driver": source.part,
+        "drive-voltage": source.voltage,
         "on-own-return": any(_on_own_return(inputs, part) for part in parts),
     }
     links = {

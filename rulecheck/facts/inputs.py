@@ -93,10 +93,13 @@ def _stiff_voltages(stage: Stage, demands: Demands) -> dict[tuple[str, str], Int
     found: dict[tuple[str, str], Interval | Unknown] = {}
     for branch in stage.branches:
         span = ranges.get(f"v({branch.name.removeprefix('port/')})")
-        if span is not None:
-            found.setdefault((branch.start, branch.end), span)
-            turned = span if isinstance(span, Unknown) else -span
-            found.setdefault((branch.end, branch.start), turned)
+        if span is None:
+            continue
+        ends = (branch.start, branch.end)
+        # of several side by side, one whose voltage is known speaks for all
+        if isinstance(found.get(ends, span), Unknown) or ends not in found:
+            found[ends] = span
+            found[ends[::-1]] = span if isinstance(span, Unknown) else -span
     return found
 
 
@@ -114,7 +117,7 @@ def _grouped(pairs: Iterable[tuple[str, str]]) -> dict[str, tuple[str, ...]]:
 
 def stated_number(part: Part, path: str) -> Value:
     """A stated figure as one number; of a range the larger magnitude."""
-    datum = part.datum(path)
+    datum = _stated(part, path)
     if isinstance(datum, Unknown):
         return datum
     return datum.value.magnitude if isinstance(datum.value, Interval) else datum.value
@@ -122,10 +125,19 @@ def stated_number(part: Part, path: str) -> Value:
 
 def stated_range(part: Part, path: str) -> Value:
     """A stated figure as a range; a single number is a range of one."""
+    datum = _stated(part, path)
+    if isinstance(datum, Unknown):
+        return datum
+    value = datum.value
+    return value if isinstance(value, Interval) else Interval(value, value)
+
+
+def _stated(part: Part, path: str) -> Datum | Unknown:
+    """The figure; a missing rating is called one, lest it be taken for what the part sees."""
     datum = part.datum(path)
-    if isinstance(datum, Datum):
-        value = datum.value
-        return value if isinstance(value, Interval) else Interval(value, value)
+    group, _, word = path.partition(".")
+    if isinstance(datum, Unknown) and group == "ratings":
+        return Unknown(f"{word} rating of {part.name}", datum.settle)
     return datum
 
 

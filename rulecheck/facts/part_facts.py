@@ -5,6 +5,7 @@ from collections import Counter
 from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.inputs import Inputs, stated_number, stated_range
 from rulecheck.facts.terms import SubjectTerm, count, link, number, span_of, text, yes_no
+from rulecheck.facts.written_value import written_value
 from rulecheck.parts import Kind, Part
 from rulecheck.values import Dimension, Span, Unknown
 
@@ -18,10 +19,13 @@ PART = SubjectTerm(
         text("model", "Model, subcircuit or value text on the card."),
         text("role", "What it does in the stage: `switch`, `snubber`, `wire`, ..."),
         yes_no("understood", "Its kind is known and its card could be read."),
-        yes_no("described", "Some model card or part data says more of it than its letter."),
+        yes_no("described", "It names no model, or a model card or part data says what that is."),
         yes_no("gated", "Some path through it follows a gate."),
         yes_no("power-device", "It is a semiconductor or switch with a power path."),
         count("pins", "How many pins it has."),
+        text("written-unit", "The unit in its value as written; empty where there is none."),
+        yes_no("unit-fits", "The unit in its value is that of its kind, or there is none."),
+        yes_no("misleading-scale", "Its value is read otherwise than many would: `1M`, `1F`."),
         count("namesakes", "How many other elements have its name."),
         yes_no("shorted", "All its main pins are on one net."),
         yes_no("in-power-path", "It is a switch or branch of the power stage."),
@@ -73,25 +77,31 @@ def collect(inputs: Inputs) -> tuple[Subject, ...]:
     """All parts, and the elements that could not be read as parts that are not understood."""
     parts = inputs.stage.parts.parts
     names = Counter(part.name.casefold() for part in parts)
-    missing = frozenset(inputs.stage.parts.not_understood)
     unread = [name for name in inputs.stage.parts.not_understood if name.casefold() not in names]
+    unknown = {part.name for part in parts if part.kind is Kind.UNKNOWN}
+    again = set(inputs.stage.parts.not_understood) - unknown - set(unread)
+    names.update(name.casefold() for name in again)
     return (
-        *(_part(inputs, part, names[part.name.casefold()] - 1, missing) for part in parts),
+        *(_part(inputs, part, names[part.name.casefold()] - 1) for part in parts),
         *(_unread(inputs, name) for name in unread),
     )
 
 
-def _part(inputs: Inputs, part: Part, namesakes: int, missing: frozenset[str]) -> Subject:
+def _part(inputs: Inputs, part: Part, namesakes: int) -> Subject:
+    written = written_value(part.kind, part.text)
     role = inputs.stage.roles.get(part.name)
     values: dict[str, Value] = {
         "kind": part.kind.value,
         "model": part.text,
         "role": role.value if role else "signal",
-        "understood": part.kind is not Kind.UNKNOWN and part.name not in missing,
-        "described": bool(part.data or part.facts),
+        "understood": part.kind is not Kind.UNKNOWN,
+        "described": bool(part.named_by) or not _wants_model(part),
         "gated": part.gated,
         "power-device": bool(part.edges),
         "pins": float(len(part.pins)),
+        "written-unit": written.unit,
+        "unit-fits": written.fits,
+        "misleading-scale": written.misleading,
         "namesakes": float(namesakes),
         "shorted": _shorted(part),
         "in-power-path": part.name in inputs.positions_of_part or part.name in inputs.branch_parts,
@@ -105,6 +115,11 @@ def _part(inputs: Inputs, part: Part, namesakes: int, missing: frozenset[str]) -
     links = {"positions": inputs.positions_of_part.get(part.name, ()), "nets": nets}
     chain = part.instance_chain
     return Subject("part", part.name, values, links, (part.name,), nets, part.span, chain)
+
+
+def _wants_model(part: Part) -> bool:
+    """A device whose card names a model; parts of other kinds have a value or a part number."""
+    return bool(part.edges) and bool(part.text)
 
 
 def _value_of(part: Part, kind: Kind) -> Value:

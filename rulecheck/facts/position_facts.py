@@ -5,7 +5,7 @@ from collections.abc import Iterable, Sequence
 from rulecheck.capability import Capability, Direction
 from rulecheck.demand import PositionDemand, Witness
 from rulecheck.demand.evaluate import SMALL, SMALL_VOLTAGE
-from rulecheck.facts.asked import Asked, largest
+from rulecheck.facts.asked import Asked, largest, whole
 from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.free_path_facts import names_by_position
 from rulecheck.facts.inputs import Inputs, at_least, group_name
@@ -51,6 +51,7 @@ def _subject(
             **_demand_values(inputs, demand),
             **_capability_values(inputs, capability),
             **_build_values(inputs, position, capability, devices),
+            "across-voltage": (position.start, position.end) in inputs.voltage_between,
             "turned": _turned(demand.quadrants, capability.quadrants),
             "tied": position.name not in inputs.group_of_position,
         },
@@ -66,8 +67,8 @@ def _demand_values(inputs: Inputs, demand: PositionDemand) -> dict[str, Value]:
     voltage = Asked(demand.off_voltage, demand.off_low, demand.off_high)
     current = Asked(demand.on_current, demand.on_low, demand.on_high)
     return {
-        "off-voltage": demand.off_voltage,
-        "on-current": demand.on_current,
+        "off-voltage": whole(inputs.demands, voltage),
+        "on-current": whole(inputs.demands, current),
         "needs": _numerals(demand.quadrants),
         "needs-forward-blocking": _needs(demand.off_voltage, True, SMALL_VOLTAGE),
         "needs-reverse-blocking": _needs(demand.off_voltage, False, SMALL_VOLTAGE),
