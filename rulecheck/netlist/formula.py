@@ -15,6 +15,10 @@ from rulecheck.values import Span
 NUMBER, NAME, CALL, OPERATOR, CHOOSE = "number", "name", "call", "operator", "choose"
 _CIRCUIT_QUANTITY = re.compile(r"\b[vi]\s*\(", re.IGNORECASE)
 
+# A number or a name alone needs no parser; most expressions are such.
+_BRACES = re.compile(r"\A\{\s*([^{}\s]+)\s*\}\Z")
+_WORD = re.compile(r"[A-Za-z_]\w*")
+
 
 @dataclass(frozen=True, slots=True)
 class Step:
@@ -101,7 +105,13 @@ def _parser() -> Lark:
 
 @cache
 def compile_formula(text: str) -> Program | NoFormula:
-    """The program of an expression, in braces, quotes or bare."""
+    """The program of an expression, in braces or bare."""
+    plain = _BRACES.sub(r"\1", text)
+    number = read_number(plain)
+    if number is not None and not number.remark:
+        return (Step(NUMBER, plain, 0, number.value),)
+    if _WORD.fullmatch(plain):
+        return (Step(NAME, plain, text.index(plain)),)
     if _CIRCUIT_QUANTITY.search(text):
         return NoFormula("depends on voltages or currents of the circuit", 0, behavioural=True)
     try:
