@@ -74,7 +74,7 @@ def analyse_text(
 
 def sheet_beside(netlist: Path) -> Path | None:
     """`hut.stage.yaml` for `hut.cir`, where it is there."""
-    sheet = netlist.with_name(netlist.stem + SHEET_SUFFIX)
+    sheet = netlist.parent / (netlist.stem + SHEET_SUFFIX)
     return sheet if sheet.is_file() else None
 
 

@@ -11,7 +11,7 @@ from rulecheck.facts import Facts
 from rulecheck.pipeline import Unusable, analyse_text
 from rulecheck.reading import SourceText
 from rulecheck.rulebook import IN_FORCE, Rulebook, Trial, try_examples
-from rulecheck.values import Problem, errors_of
+from rulecheck.values import Problem
 
 
 @dataclass(frozen=True, slots=True)
@@ -60,9 +60,7 @@ def _facts(
     netlist: SourceText, sheet: SourceText | None, parts: Iterable[SourceText]
 ) -> Facts | tuple[Problem, ...]:
     analysis = analyse_text(netlist, sheet, tuple(parts))
-    if isinstance(analysis, Unusable):
-        return analysis.problems
-    return errors_of(analysis.problems) or analysis.facts
+    return analysis.problems if isinstance(analysis, Unusable) else analysis.facts
 
 
 def _failure(trial: Trial) -> list[str]:

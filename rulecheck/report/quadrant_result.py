@@ -7,6 +7,10 @@ from rulecheck.demand import Bridge, Demands, Group, Leg, PositionDemand, Undete
 from rulecheck.stage import Position, Stage
 from rulecheck.values import QuadrantSet, Unknown, natural_key
 
+_NO_POSITION = (
+    "no switch position was found, so nothing was compared: are the power devices understood?"
+)
+
 
 @dataclass(frozen=True, slots=True)
 class PositionResult:
@@ -76,8 +80,11 @@ def what_is_not_covered(stage: Stage, demands: Demands) -> tuple[str, ...]:
         for group in demands.groups
         if not group.analysed
     )
+    nothing = () if stage.positions else (_NO_POSITION,)
     positions = tuple(line for d in demands.positions.values() for line in d.not_covered)
-    return _without_repeats((*stage.not_covered, *demands.not_covered, *positions, *groups))
+    return _without_repeats(
+        (*nothing, *stage.not_covered, *demands.not_covered, *positions, *groups)
+    )
 
 
 def _position_result(

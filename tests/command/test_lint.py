@@ -5,7 +5,7 @@ import re
 
 import pytest
 
-from tests.command.running import run
+from tests.command.running import run, run_apart
 
 TWIN = "battery-bus-faulty.cir"
 
@@ -26,16 +26,14 @@ def test_the_exit_status(arguments, status, hut):
 
 
 def test_undecided_checks_fail_the_run_only_where_asked(hut):
-    (hut / "battery-bus.stage.yaml").write_text(
-        (hut / "battery-bus.stage.yaml").read_text("utf-8").replace("parts: [hut.parts.yaml]", ""),
-        encoding="utf-8",
-    )
-    arguments = ["lint", "battery-bus.cir", "--project", "bare.yaml", "--format", "json"]
-    (hut / "bare.yaml").write_text("netlists: []\n", encoding="utf-8")
+    parts = hut / "hut.parts.yaml"
+    text = parts.read_text(encoding="utf-8")
+    parts.write_text(text.replace("{blocking: 200 V, ", "{"), encoding="utf-8")
+    arguments = ["lint", "battery-bus.cir", "--format", "json"]
     loose, strict = run(*arguments, folder=hut), run(*arguments, "--undecided", "fail", folder=hut)
     tally = json.loads(loose.stdout)["tally"]
     assert tally["undecided"] > 0
-    assert loose.returncode == (1 if tally["broken"] else 0)
+    assert loose.returncode == 0
     assert strict.returncode == 1
 
 
@@ -71,8 +69,8 @@ def test_jobs_change_nothing_but_the_time(hut):
                                      ["explain", TWIN, "Q1"]])  # fmt: skip
 def test_the_same_input_gives_the_same_bytes(command, hut):
     outputs = {
-        run(*command, folder=hut, environment={"PYTHONHASHSEED": seed}).stdout
-        for seed in ("0", "1", "77")
+        run_apart(*command, folder=hut, environment={"PYTHONHASHSEED": seed}).stdout
+        for seed in ("1", "77")
     }
     assert len(outputs) == 1
 

@@ -15,7 +15,7 @@ from rulecheck.stage import read_sheet
 from tests.command.running import ROOT, clean_environment
 
 README = (ROOT / "README.md").read_text(encoding="utf-8")
-FRESH = [line for line in README.splitlines() if line.startswith("python3 -m venv ")]
+FRESH = [line for line in README.splitlines() if line.startswith("python3 -m venv .venv && ")]
 _EXITS = re.compile(r"(.*?)\s+# exits (\d)\Z")
 
 
