@@ -7,7 +7,7 @@ from rulecheck.capability import Capabilities
 from rulecheck.demand import Demands, Group
 from rulecheck.facts.facts import Bounds, Value
 from rulecheck.parts import Datum, Part
-from rulecheck.stage import Position, Stage
+from rulecheck.stage import Position, Role, Stage
 from rulecheck.values import Interval, Span, Unknown, natural_key
 
 
@@ -32,6 +32,10 @@ class Inputs:
     branch_parts: frozenset[str]
     """The parts that are power branches."""
     ports_at_net: Mapping[str, tuple[str, ...]]
+    grounds: frozenset[str]
+    """The ground and what looks like another, as far as something is on it."""
+    shared: frozenset[frozenset[str]]
+    """Pairs of merged nets with a sharing or snubber part across them."""
 
     def merged(self, net: str) -> str:
         return self.stage.merged.get(net, net)
@@ -85,7 +89,19 @@ def gather(stage: Stage, capabilities: Capabilities, demands: Demands) -> Inputs
         _grouped(
             (net, port.name) for port in stage.ports for net in (*port.nets, port.neutral) if net
         ),
+        _grounds(stage),
+        frozenset(
+            frozenset(stage.merged.get(net, net) for net in parts[name].nets)
+            for name, role in stage.roles.items()
+            if role in (Role.SHARING, Role.SNUBBER) and name in parts
+        ),
     )
+
+
+def _grounds(stage: Stage) -> frozenset[str]:
+    listed = stage.parts
+    on = {pin.net for part in listed.parts for pin in part.pins}
+    return frozenset(net for net in (listed.ground, *listed.grounds) if net in on)
 
 
 def _stiff_voltages(stage: Stage, demands: Demands) -> dict[tuple[str, str], Interval | Unknown]:

@@ -25,13 +25,6 @@ class Island:
     grounded: bool
 
 
-def grounds_of(inputs: Inputs) -> frozenset[str]:
-    """The ground and what looks like another, as far as something is on it."""
-    listed = inputs.stage.parts
-    on = {pin.net for part in listed.parts for pin in part.pins}
-    return frozenset(net for net in (listed.ground, *listed.grounds) if net in on)
-
-
 def find_islands(inputs: Inputs) -> Mapping[str, Island]:
     """Every net's island. Linear in the number of pins, by union of sets."""
     above: dict[str, str] = {}
@@ -61,7 +54,7 @@ def _described(inputs: Inputs, roots: Mapping[str, str]) -> Mapping[str, Island]
     members: dict[str, list[str]] = {}
     for net, root in roots.items():
         members.setdefault(root, []).append(net)
-    held = {roots[net] for net in grounds_of(inputs)}
+    held = {roots[net] for net in inputs.grounds}
     wound = {name for core in inputs.stage.parts.cores for name in core.windings}
     for part in inputs.stage.parts.parts:
         if part.kind in _LEAVES or part.name in wound:

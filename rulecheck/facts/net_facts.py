@@ -4,7 +4,7 @@ from collections.abc import Iterable, Mapping
 
 from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.inputs import Inputs
-from rulecheck.facts.islands import Island, find_islands, grounds_of
+from rulecheck.facts.islands import Island, find_islands
 from rulecheck.facts.terms import SubjectTerm, count, link, number, text, texts, yes_no
 from rulecheck.parts import Kind
 from rulecheck.values import Dimension, Span, Unknown, natural_key
@@ -100,7 +100,7 @@ def _net(
     power = [p for p in parts if p in inputs.positions_of_part or p in inputs.branch_parts]
     values: dict[str, Value] = {
         "pins": float(len(list(at)) + ports.get(net, 0)),
-        "ground": net in grounds_of(inputs),
+        "ground": net in inputs.grounds,
         "no-connect": _no_connect(net),
         "power": bool(power),
         "gate": inputs.merged(net) in inputs.devices_at_gate,
@@ -123,7 +123,7 @@ def collect_stage(inputs: Inputs) -> tuple[Subject, ...]:
     """The one subject that stands for all of it; its links are filled in from all others."""
     stage = inputs.stage
     switching = stage.switching
-    grounds = grounds_of(inputs)
+    grounds = inputs.grounds
     values: dict[str, Value] = {
         "sheet": stage.sheet,
         "has-ground": bool(grounds),

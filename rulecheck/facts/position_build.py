@@ -9,7 +9,6 @@ from collections.abc import Mapping, Sequence
 from rulecheck.facts.facts import Bounds, Value
 from rulecheck.facts.inputs import Inputs
 from rulecheck.parts import Conduction, Kind, Part
-from rulecheck.stage import Role
 from rulecheck.values import Interval, Unknown
 
 
@@ -20,15 +19,8 @@ def main_ends(inputs: Inputs, part: Part) -> frozenset[str]:
 
 def shared_voltage(inputs: Inputs, chain: Sequence[str]) -> bool:
     """True where every device of the chain has a part of role sharing or snubber across it."""
-    across = [
-        frozenset(inputs.merged(net) for net in inputs.part_by_name[name].nets)
-        for name, role in inputs.stage.roles.items()
-        if role in (Role.SHARING, Role.SNUBBER) and name in inputs.part_by_name
-    ]
-    return all(
-        any(len(ends) == 2 and ends == nets for nets in across)
-        for ends in (main_ends(inputs, inputs.part_by_name[name]) for name in chain)
-    )
+    ends = (main_ends(inputs, inputs.part_by_name[name]) for name in chain)
+    return all(len(pair) == 2 and pair in inputs.shared for pair in ends)
 
 
 def parallel_devices(inputs: Inputs, devices: Sequence[Part]) -> int:
