@@ -46,6 +46,11 @@ CIRCUITS = Path(__file__).resolve().parent.parent / "circuits"
 TOLERANCE = 0.05
 ANY = "any"
 RATED = ("error", "warning")
+CORE = (
+    *("forward-current-path", "reverse-current-path", "forward-blocking", "reverse-blocking"),
+    *("blocking-rating", "current-rating", "interrupted-current", "free-short", "shared-gate"),
+)
+"""Rules that a stage with full part data must decide."""
 
 
 @dataclass(frozen=True)
@@ -81,14 +86,23 @@ class Case:
     def broken(self) -> list[tuple[str, str]]:
         """(rule, subject) of each broken error or warning, sorted.
 
-        A current that is interrupted counts once, under its inductor, whatever its direction.
+        A current that is interrupted counts once, under its inductor, whatever its direction;
+        the whole stage is called `stage`, whatever its file.
         """
         return sorted(
             {
-                (finding["rule"], _short_subject(finding))
+                (finding["rule"], _short_subject(finding, self.netlist))
                 for finding in self.lint["findings"]
                 if finding["level"] in RATED and finding["verdict"] == "broken"
             }
+        )
+
+    def undecided(self) -> list[tuple[str, str]]:
+        """(rule, subject) of each core rule that waits for a datum."""
+        return sorted(
+            (finding["rule"], finding["subject"])
+            for finding in self.lint["findings"]
+            if finding["rule"] in CORE and finding["verdict"] == "undecided"
         )
 
 
@@ -140,8 +154,10 @@ def finding_differences(case: Case) -> list[str]:
     return missed + false
 
 
-def _short_subject(finding: dict[str, Any]) -> str:
+def _short_subject(finding: dict[str, Any], netlist: Path) -> str:
     subject = str(finding["subject"])
+    if subject == str(netlist):
+        return "stage"
     return subject.split()[0] if finding["rule"] == "interrupted-current" else subject
 
 
