@@ -5,6 +5,7 @@ from pathlib import Path
 
 from rulecheck.netlist.definition import Deck, Definition
 from rulecheck.netlist.dot_cards import HANDLERS, Handler
+from rulecheck.netlist.foreign import name_foreign
 from rulecheck.netlist.lines import Lines, LogicalLine, split_lines
 from rulecheck.netlist.paths import clean_path, resolve_path
 from rulecheck.netlist.sorter import Sorter
@@ -153,8 +154,10 @@ def _read_included(path: Path, section: str, line: LogicalLine, sorter: Sorter) 
         sorter.remark(line.span(), what, "delete one of the cards")
         return
     source = read_text(path)
-    if isinstance(source, Problem):
-        sorter.fail(line.span(), source.what, source.remedy)
+    problem = source if isinstance(source, Problem) else name_foreign(source)
+    if isinstance(source, Problem) or problem is not None:
+        what = f"included file '{path}': {problem.what if problem else 'unreadable'}"
+        sorter.fail(line.span(), what, "include a file of netlist cards")
         return
     sorter.included.add((sorter.current.span, *mark))
     sorter.open_files.append(mark)

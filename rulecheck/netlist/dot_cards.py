@@ -120,7 +120,7 @@ def _globals(line: LogicalLine, keyword: str, sorter: Sorter) -> None:
 
 
 def _title(line: LogicalLine, keyword: str, sorter: Sorter) -> None:
-    sorter.title = line.text[len(keyword) :].strip() or sorter.title
+    sorter.title = sorter.title or line.text[len(keyword) :].strip()
 
 
 Handler = Callable[[LogicalLine, str, Sorter], None]

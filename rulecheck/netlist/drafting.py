@@ -49,7 +49,7 @@ def _certain_nets(cards: Iterable[LogicalLine]) -> frozenset[str]:
     """Words first or second behind a name, and not last: nets, whatever the letter."""
     nets: set[str] = {"0"}
     for line in cards:
-        words = line.text.split(None, 3)[1:]
+        words = [] if line.text[0] in "kK" else line.text.split(None, 3)[1:]
         nets.update(word.strip("(),").lower() for word in words[: min(2, len(words) - 1)])
     return frozenset(nets)
 

@@ -27,6 +27,8 @@ class _Place:
     """Net names so far, by lower case: ports first."""
     chain: tuple[Span, ...]
     within: tuple[Definition, ...]
+    multiplicity: float = 1.0
+    """How many of it stand in parallel, by the `m` of the enclosing instances."""
     names: dict[str, str] = field(default_factory=dict)
     """First spelling of element names, by lower case."""
 
@@ -91,6 +93,9 @@ def _element(draft: Draft, place: _Place, result: Flattening) -> Element:
     scope = place.scope
     name = place.full(draft.name)
     parameters = {key: _settled(value, draft, scope, result) for key, value in draft.parameters}
+    own = parameters.get("m", 1.0)
+    if place.multiplicity != 1.0 and draft.letter != "K" and isinstance(own, float):
+        parameters["m"] = own * place.multiplicity
     return Element(
         name,
         draft.letter,
@@ -175,7 +180,8 @@ def _instance(draft: Draft, place: _Place, result: Flattening) -> None:
     assert not isinstance(nets, Problem)
     subcircuit = Subcircuit(definition.name, definition.ports, definition.span)
     result.subcircuits.setdefault(definition.name.lower(), subcircuit)
-    result.elements.append(_element(draft, place, result))
+    element = _element(draft, place, result)
+    result.elements.append(element)
     overrides = {name: (formula, place.scope) for name, formula in draft.overrides}
     inner = _Place(
         Scope(definition, home, overrides),
@@ -183,8 +189,15 @@ def _instance(draft: Draft, place: _Place, result: Flattening) -> None:
         {GROUND: GROUND, **nets},
         (*place.chain, draft.span),
         (*place.within, definition),
+        _multiplicity(element, definition),
     )
     _expand(inner, result)
+
+
+def _multiplicity(element: Element, definition: Definition) -> float:
+    """The instance's `m`, unless the definition has a parameter of that name."""
+    stated = element.parameters.get("m", 1.0)
+    return stated if isinstance(stated, float) and "m" not in definition.parameters else 1.0
 
 
 def _port_nets(

@@ -111,7 +111,7 @@ def _guess_model(
     end = len(words)
     while end > least + 1 and _is_extra(words[end - 1]) and not reading.is_net(words[end - 1].text):
         end -= 1
-    if end == least and end and reading.is_net(words[end - 1].text):
+    if end >= least and reading.is_net(words[end - 1].text):
         return words[:end], "", words[end:]
     if not end:
         return [], "", []

@@ -148,6 +148,12 @@ def test_where_the_model_is_known_it_ends_the_nets(card: str, nets: str) -> None
     assert found.model is not None
 
 
+@pytest.mark.parametrize("card", ["M1 BUS G1 SW SW", "Q1 BUS G1 SW", "Q1 BUS G1 SW PGND"])
+def test_a_transistor_card_of_nets_alone_has_no_model(card: str) -> None:
+    found = one(card, "R1 SW PGND 1", "R2 PGND G1 1")
+    assert (found.nets, found.text) == (tuple(card.split()[1:]), "")
+
+
 def test_a_transistor_with_three_nets_has_its_bulk_on_the_source() -> None:
     assert notes(circuit("M1 d g s SW-N100-7\n")) == [
         "2:4: a MOSFET with 3 nets is taken with its bulk on its source"

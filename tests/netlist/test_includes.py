@@ -74,6 +74,15 @@ def test_a_missing_file_is_an_error_and_the_rest_is_read(tmp_path: Path) -> None
     ]
 
 
+def test_an_included_file_that_is_no_netlist_is_an_error(tmp_path: Path) -> None:
+    page = "<!DOCTYPE html>\n<html><body>gone</body></html>\n"
+    found = read(tmp_path, {"hut.cir": "hut\n.lib a.lib\nR1 a b 1\n", "a.lib": page})
+    assert names(found) == ["R1"]
+    assert [problem.what for problem in found.problems] == [
+        f"included file '{tmp_path / 'a.lib'}': this is no netlist; it seems to be a web page"
+    ]
+
+
 @pytest.mark.parametrize("card", [".include", ".lib", '.include ""'])
 def test_an_include_without_a_file_is_an_error(tmp_path: Path, card: str) -> None:
     found = read(tmp_path, {"hut.cir": f"hut\n{card}\nR1 a b 1\n"})

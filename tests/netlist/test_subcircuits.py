@@ -57,6 +57,29 @@ def test_controls_inside_an_instance_carry_its_path() -> None:
     assert element(found, "X1.E1").controls == ("a", "X1.q")
 
 
+def test_a_multiplied_instance_multiplies_its_contents() -> None:
+    found = circuit(
+        """\
+        X1 a b TWO m=2
+        .subckt TWO p n
+        X1 p n ONE m=3
+        R1 p n 5
+        .ends
+        .subckt ONE p n
+        M1 p g n n FET m=4
+        .ends
+        X2 a b OWN m=7
+        .subckt OWN p n m=1
+        R1 p n {m}
+        .ends
+        """
+    )
+    counts = {one.name: one.parameters.get("m", 1.0) for one in found.elements}
+    assert counts == {
+        "X1": 2.0, "X1.X1": 6.0, "X1.X1.M1": 24.0, "X1.R1": 2.0, "X2": 7.0, "X2.R1": 1.0,
+    }  # fmt: skip
+
+
 def test_global_nets_and_ground_are_the_same_everywhere() -> None:
     found = circuit("X1 a CELL\n.global vcc\nR2 VCC 0 1\n.subckt CELL p\nR1 Vcc 0 1\n.ends\n")
     assert element(found, "X1.R1").nets == element(found, "R2").nets
