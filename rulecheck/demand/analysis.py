@@ -13,9 +13,17 @@ from rulecheck.demand.currents import (
     range_of_current,
 )
 from rulecheck.demand.first_box import first_box
+from rulecheck.demand.least_loss import without_lossy
 from rulecheck.demand.means import collect_unknowns
 from rulecheck.demand.power import PortCurrents
-from rulecheck.demand.readings import Failure, Reading, failures, inequalities
+from rulecheck.demand.readings import (
+    Failure,
+    Freedom,
+    Reading,
+    disabled,
+    failures,
+    inequalities,
+)
 from rulecheck.demand.routes import Carrier, Route, find_carriers, find_routes
 from rulecheck.demand.sign_cases import Case, cases_for, port_cases
 from rulecheck.demand.states import (
@@ -28,7 +36,7 @@ from rulecheck.demand.states import (
 from rulecheck.demand.stiff import Box
 from rulecheck.demand.topology import Cluster, Topology, build_topology
 from rulecheck.demand.voltages import Voltages, derive_voltages, name_of
-from rulecheck.stage import Stage
+from rulecheck.stage import Position, Stage
 from rulecheck.values import AffineForm
 
 _MOST_RECTIFIER_STATES = 32
@@ -79,7 +87,9 @@ def work_out(stage: Stage, pulsed: frozenset[str] = frozenset()) -> Worked:
     carriers = find_carriers(stage.branches, stage.transformers, stage.ports)
     routes = find_routes(carriers, topology)
     by_port = [port_cases(port, box) for port in stage.ports]
-    means = _means(stage, voltages, port_currents, carriers, topology, states)
+    never = frozenset(p.name for p in topology.tie_positions if _stays_off(p, voltages, box))
+    slow = _rectifier_states(topology, states)
+    means = _means(stage, voltages, port_currents, carriers, never, slow)
     box = replace(box, means=means.forms)
     names = _names_by_cluster(topology, states)
     local = {
@@ -117,7 +127,7 @@ def _all_states(
             too_large.add(index)
             states.append(())
             continue
-        found = find_states(cluster, laws, pulsed)
+        found = without_lossy(cluster, find_states(cluster, laws, pulsed), laws)
         if not any(state.on for state in found) and cluster.positions:
             connecting.add(index)
             found = find_connecting_states(cluster, laws)
@@ -130,21 +140,28 @@ def _means(
     voltages: Voltages,
     port_currents: PortCurrents,
     carriers: Sequence[Carrier],
-    topology: Topology,
-    states: Sequence[Sequence[RawState]],
+    never: frozenset[str],
+    slow: Sequence[frozenset[str]],
 ) -> Means:
     unknowns = collect_unknowns(
         stage.branches,
         stage.transformers,
-        stage.positions,
+        [p for p in stage.positions if p.name not in never],
         stage.ports,
         port_currents.ranges,
         voltages,
     )
     stated = {name_of(b) for b in stage.branches if b.given is not None}
     wanted = [carrier for carrier in carriers if carrier.name not in stated]
-    slow = _rectifier_states(topology, states)
     return derive_means(unknowns, wanted, stage.transformers, slow)
+
+
+def _stays_off(position: Position, voltages: Voltages, box: Box) -> bool:
+    """A position between rigid voltages that are never equal carries nothing."""
+    if position.name in voltages.charged_through:
+        return False
+    form = voltages.potentials.difference(position.start, position.end)
+    return form is not None and not box.range_of(form).contains(0.0)
 
 
 def _rectifier_states(
@@ -178,7 +195,7 @@ def _names_by_cluster(
                 *solution.off_voltages.values(),
                 *solution.on_currents.values(),
                 *solution.potentials.values(),
-                *inequalities(cluster, state, strict=True),
+                *inequalities(cluster, state),
             ):
                 names |= set(form.names)
         found.append(frozenset(names))
@@ -201,12 +218,17 @@ def _choose_reading(
     topology: Topology, states: Sequence[Sequence[RawState]], routed: _Routed, box: Box
 ) -> tuple[Reading, list[Failure]]:
     """Free paths limit the control where the stage still works so; elsewhere all legal states."""
-    reading = Reading(topology.clusters, states, frozenset(range(len(states))))
-    failed = _failures(reading, routed, box)
-    if failed:
-        reading = reading.relaxed(index for failure in failed for index in failure.clusters)
+    freedom = dict.fromkeys(range(len(states)), Freedom.DRAWN)
+    reading = Reading(topology.clusters, states, freedom)
+    names = _names_by_cluster(topology, states)
+    for _ in (Freedom.CONTROLLED, Freedom.IDEAL):
         failed = _failures(reading, routed, box)
-    return reading, failed
+        relax = {index for failure in failed for index in failure.clusters}
+        relax |= {k for k in range(len(states)) if disabled(reading, k, box.only(names[k]))}
+        if not relax:
+            break
+        reading = reading.relaxed(relax)
+    return reading, _failures(reading, routed, box)
 
 
 def _failures(reading: Reading, routed: _Routed, box: Box) -> list[Failure]:

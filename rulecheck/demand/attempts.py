@@ -4,7 +4,11 @@ from rulecheck.demand.analysis import Worked, work_out
 from rulecheck.demand.duty import with_duty
 from rulecheck.demand.peak_charged import find_peaks, with_peaks
 from rulecheck.demand.wired import wire_leakages, without_followers, without_magnetising
-from rulecheck.stage import Stage
+from rulecheck.stage import Branch, BranchKind, Stage
+
+FOLLOWING_CAPACITANCE = 10e-6
+"""Farad; common practice: a filter capacitor behind a mains rectifier is smaller, a reservoir
+larger."""
 
 
 def first_that_works(stage: Stage) -> tuple[Worked, tuple[str, ...]]:
@@ -12,7 +16,7 @@ def first_that_works(stage: Stage) -> tuple[Worked, tuple[str, ...]]:
     stage, assumed = with_duty(worked)
     best = work_out(stage) if assumed else worked
     for reading in (_following, _wired, _clamped):
-        if not _unclear(best):
+        if not any(_unclear(best)):
             break
         other, sentences = reading(best, stage)
         if not sentences:
@@ -34,19 +38,21 @@ def _following(worked: Worked, stage: Stage) -> tuple[Stage, tuple[str, ...]]:
 
 
 def _wired(worked: Worked, stage: Stage) -> tuple[Stage, tuple[str, ...]]:
-    return wire_leakages(stage) if worked.failures else (stage, ())
+    return wire_leakages(stage)
 
 
 def _clamped(worked: Worked, stage: Stage) -> tuple[Stage, tuple[str, ...]]:
-    return without_magnetising(stage) if worked.failures else (stage, ())
+    return without_magnetising(stage)
 
 
-def _unclear(worked: Worked) -> int:
-    return len(worked.failures) + len(worked.connecting)
+def _unclear(worked: Worked) -> tuple[int, int]:
+    """What a reading leaves open, then how much it has to take from the drawn devices."""
+    open_points = len(worked.failures) + len(worked.connecting)
+    return open_points, sum(worked.reading.freedom.values())
 
 
 def _followers(worked: Worked) -> tuple[str, ...]:
-    """Capacitors that nobody states, behind groups of diodes that only connect voltages."""
+    """Small capacitors behind groups of diodes that only connect voltages."""
     nets = {
         net
         for index in worked.connecting
@@ -55,4 +61,16 @@ def _followers(worked: Worked) -> tuple[str, ...]:
         if link.position
         for net in (link.position.start, link.position.end)
     }
-    return tuple(b.name for b in worked.voltages.undetermined if b.part and {b.start, b.end} & nets)
+    unstated = {branch.name for branch in worked.voltages.undetermined}
+    return tuple(
+        branch.name
+        for branch in worked.stage.branches
+        if branch.kind is BranchKind.VOLTAGE
+        and branch.part
+        and {branch.start, branch.end} & nets
+        and (branch.name in unstated or _is_small(branch))
+    )
+
+
+def _is_small(branch: Branch) -> bool:
+    return branch.value is not None and branch.value <= FOLLOWING_CAPACITANCE

@@ -35,7 +35,11 @@ def find_demands(stage: Stage) -> Demands:
     positions, more = _positions(worked, settle)
     legs = find_legs(worked)
     interrupted, noted = find_interrupted(worked, positions)
-    groups = tuple(group_of(worked, index) for index in range(len(worked.topology.clusters)))
+    groups = tuple(
+        group_of(worked, index)
+        for index, cluster in enumerate(worked.topology.clusters)
+        if cluster.positions
+    )
     return Demands(
         account_of_variables(worked, settle),
         positions,

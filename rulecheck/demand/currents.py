@@ -13,6 +13,9 @@ from rulecheck.demand.stiff import EVERYTHING, Box
 from rulecheck.stage import Stage, Transformer
 from rulecheck.values import AffineForm, Interval, write_quantity
 
+_MUCH_SLOWER = 3.0
+"""A leg that switches this many times slower stands still within a period of the others."""
+
 
 @dataclass(frozen=True, slots=True)
 class Means:
@@ -152,52 +155,68 @@ def _ripple(carrier: Carrier, around: Surroundings) -> tuple[float, str]:
     """Half the peak-to-peak ripple in amperes, or why none is included."""
     if not around.route.steps:
         return 0.0, ""
-    frequency = _frequency(around)
-    if not carrier.inductance or not frequency:
+    frequencies = _frequencies(around)
+    fastest = max(frequencies, default=0.0)
+    if not carrier.inductance or not fastest:
         missing = "inductance" if not carrier.inductance else "switching frequency"
         return 0.0, f", ripple not included: the {missing} is not stated"
     boxes = [case.narrow(around.box) for case in around.cases]
-    volts = swing(around.reading, around.route, boxes)
-    return volts / (carrier.inductance * frequency) / 2, ""
+    slow = frozenset(k for k, f in enumerate(frequencies) if f < fastest / _MUCH_SLOWER)
+    volts = swing(around.reading, around.route, boxes, slow)
+    lowest = min(f for k, f in enumerate(frequencies) if k not in slow)
+    return volts / (carrier.inductance * lowest) / 2, ""
 
 
-def _frequency(around: Surroundings) -> float | None:
-    """The lowest switching frequency of the legs on the route, which gives the largest ripple."""
-    nets = {
-        net
-        for step in around.route.steps
-        for link in around.reading.clusters[step.cluster].positions
-        if link.position
-        for net in (link.position.start, link.position.end)
-    }
-    own = [
-        switching.frequency
-        for net, switching in around.stage.leg_switching.items()
-        if net in nets and switching.frequency
-    ]
-    return min(own) if own else around.stage.switching.frequency
+def _frequencies(around: Surroundings) -> list[float]:
+    """The switching frequency of each step of the route, hertz; 0 where nobody states it."""
+    found = []
+    for step in around.route.steps:
+        nets = {
+            net
+            for link in around.reading.clusters[step.cluster].positions
+            if link.position
+            for net in (link.position.start, link.position.end)
+        }
+        own = [
+            switching.frequency
+            for net, switching in around.stage.leg_switching.items()
+            if net in nets and switching.frequency
+        ]
+        found.append(min(own, default=around.stage.switching.frequency or 0.0))
+    return found
 
 
 def _by_positions(carrier: Carrier, means: Means, around: Surroundings) -> Interval | None:
-    """The sign, and the least magnitude, from a position that carries this current alone.
+    """The sign, and the least magnitude, from positions that carry this current alone.
 
-    Its mean is a share of the current, so the current has the mean's sign and is no smaller.
+    Each one's mean is a share of the current, so the current has the mean's sign and is no
+    smaller.
     """
+    found: Interval | None = None
     for step in around.route.steps:
-        states = around.reading.states[step.cluster]
         for link in around.reading.clusters[step.cluster].positions:
-            mean = means.branches.get(link.name)
-            forms = {s.solution.on_currents[link.name] for s in states if link.name in s.on}
-            if mean is None or len(forms) != 1:
-                continue
-            form = forms.pop()
-            if form.names != (carrier.name,):
-                continue
-            span = around.box.range_of(mean).scaled(1.0 / form.terms[0][1])
-            if span.bounded and not around.box.says_nothing(mean):
+            span = _alone(carrier, link.name, means, around, step.cluster)
+            if span is not None:
                 low = span.low if span.low >= 0.0 else -math.inf
-                return Interval(low, span.high if span.high <= 0.0 else math.inf)
-    return None
+                wide = Interval(low, span.high if span.high <= 0.0 else math.inf)
+                found = wide if found is None else found.meet(wide) or found
+    return found
+
+
+def _alone(
+    carrier: Carrier, position: str, means: Means, around: Surroundings, cluster: int
+) -> Interval | None:
+    """The mean of a position that in all its states carries a multiple of this current."""
+    states = around.reading.states[cluster]
+    forms = {s.solution.on_currents[position] for s in states if position in s.on}
+    mean = means.branches.get(position)
+    if mean is None or len(forms) != 1 or around.box.says_nothing(mean):
+        return None
+    form = forms.pop()
+    if form.names != (carrier.name,):
+        return None
+    span = around.box.range_of(mean).scaled(1.0 / form.terms[0][1])
+    return span if span.bounded else None
 
 
 def _without_mean(

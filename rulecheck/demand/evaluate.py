@@ -5,7 +5,7 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 from rulecheck.demand.demands import PositionDemand, Witness
-from rulecheck.demand.readings import Reading, feasible
+from rulecheck.demand.readings import Freedom, Reading, feasible, is_limited
 from rulecheck.demand.states import RawState
 from rulecheck.demand.stiff import Box
 from rulecheck.stage import Position
@@ -35,14 +35,14 @@ def demand_of(
     for state, narrowed in feasible(reading, index, box):
         if position.name in state.on:
             form = state.solution.on_currents[position.name]
-            span = _clip(narrowed.range_of(form), _carried(position))
+            span = _clip(narrowed.range_of(form), _carried(position, reading.freedom[index]))
             on.append(Sample(state, form, span, narrowed))
     return from_samples(position, off, on, settle)
 
 
 def off_samples(position: Position, reading: Reading, index: int, box: Box) -> list[Sample]:
     """The off voltage in every possible state that leaves the position off."""
-    limits = _withstood(position, index in reading.strict)
+    limits = _withstood(position, reading.freedom[index])
     samples = []
     for state, narrowed in feasible(reading, index, box):
         if position.name not in state.on:
@@ -51,17 +51,19 @@ def off_samples(position: Position, reading: Reading, index: int, box: Box) -> l
     return samples
 
 
-def _carried(position: Position) -> Interval:
+def _carried(position: Position, freedom: Freedom) -> Interval:
     """What an ungated position can carry at all: a diode's current has one sign."""
-    both = position.gated or position.free_forward == position.free_reverse
+    both = (
+        position.gated or freedom is Freedom.IDEAL or position.free_forward == position.free_reverse
+    )
     low = -math.inf if both or position.free_reverse else 0.0
     high = math.inf if both or position.free_forward else 0.0
     return Interval(low, high)
 
 
-def _withstood(position: Position, strict: bool) -> Interval:
+def _withstood(position: Position, freedom: Freedom) -> Interval:
     """What can stand across an off position: nothing that its free path would conduct."""
-    limited = strict or not position.gated
+    limited = is_limited(position, freedom)
     high = 0.0 if limited and position.free_forward else math.inf
     low = 0.0 if limited and position.free_reverse else -math.inf
     return Interval(low, high)

@@ -13,6 +13,8 @@ from rulecheck.demand.routes import Carrier
 from rulecheck.demand.states import RawState
 from rulecheck.demand.stiff import Box, tightened
 from rulecheck.demand.topology import Cluster, Link
+from rulecheck.demand.voltages import name_of
+from rulecheck.parts import Kind
 from rulecheck.stage import BranchKind, Position
 from rulecheck.values import AffineForm, Interval, natural_key
 
@@ -65,7 +67,7 @@ def _interrupted_in(
 def _all_names(cluster: Cluster, worked: Worked, index: int) -> set[str]:
     names: set[str] = set()
     for state in worked.reading.states[index]:
-        for form in inequalities(cluster, state, strict=True):
+        for form in inequalities(cluster, state):
             names |= set(form.names)
         for form in state.solution.on_currents.values():
             names |= set(form.names)
@@ -116,7 +118,7 @@ def _is_free(cluster: Cluster, state: RawState) -> bool:
 
 def _freewheeling(cluster: Cluster, state: RawState) -> list[AffineForm]:
     """Currents only in free directions, and no free path forward-biased while off."""
-    forms = inequalities(cluster, state, strict=True)
+    forms = inequalities(cluster, state)
     for link in cluster.positions:
         position = link.position
         if position is None or link.name not in state.on or not position.gated:
@@ -195,9 +197,10 @@ def _short_along(worked: Worked, graph: "nx.DiGraph[str]", path: Sequence[str]) 
 
 def _only_sources(worked: Worked, voltage: AffineForm) -> bool:
     """A capacitor charges to the peak behind a diode; a source does not give way."""
+    parts = worked.stage.parts.by_name
     sources = {
-        f"v({b.name.removeprefix('port/')})"
+        name_of(b)
         for b in worked.stage.branches
-        if b.kind is BranchKind.VOLTAGE and (b.port or b.given is not None)
+        if b.kind is BranchKind.VOLTAGE and (b.port or parts[b.part].kind is not Kind.CAPACITOR)
     }
     return set(voltage.names) <= sources

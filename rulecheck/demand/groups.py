@@ -4,7 +4,7 @@ from dataclasses import replace
 
 from rulecheck.demand.analysis import Worked
 from rulecheck.demand.demands import Group, State
-from rulecheck.demand.readings import feasible
+from rulecheck.demand.readings import Freedom, feasible
 from rulecheck.demand.states import RawState
 from rulecheck.values import AffineForm, natural_key
 
@@ -36,14 +36,15 @@ def group_of(worked: Worked, index: int) -> Group:
         return Group(names, (), False, why_not_analysed(worked, index) if names else "")
     box = worked.box.only({n for s in raw for f in forms_of(s) for n in f.names})
     legal = {state.on for state, _ in feasible(worked.reading, index, box)}
-    strict = replace(worked.reading, strict=worked.reading.strict | {index})
-    available = {state.on for state, _ in feasible(strict, index, box)}
+    freedom = {**worked.reading.freedom, index: Freedom.DRAWN}
+    drawn = replace(worked.reading, freedom=freedom)
+    available = {state.on for state, _ in feasible(drawn, index, box)}
     states = tuple(
         State(s.on, s.solution.off_voltages, s.solution.on_currents, s.on in available)
         for s in raw
         if s.on in legal
     )
-    relaxed = index not in worked.reading.strict
+    relaxed = worked.reading.freedom[index] is not Freedom.DRAWN
     forbidden = tuple(s.on for s in states if not s.available) if relaxed else ()
     forbidding = _forbidding(worked, index, forbidden)
     return Group(names, states, True, "", forbidden, forbidding)
@@ -52,14 +53,14 @@ def group_of(worked: Worked, index: int) -> Group:
 def _forbidding(
     worked: Worked, index: int, forbidden: tuple[tuple[str, ...], ...]
 ) -> tuple[str, ...]:
-    """Gated positions whose free path would conduct in the forbidden states."""
+    """Positions whose free path would conduct in the forbidden states."""
     names = set()
     for state in worked.reading.states[index]:
         if state.on not in forbidden:
             continue
         for link in worked.topology.clusters[index].positions:
             position = link.position
-            if position is None or not position.gated or link.name in state.on:
+            if position is None or link.name in state.on:
                 continue
             span = worked.box.range_of(state.solution.off_voltages[link.name])
             forward = position.free_forward and span.high > 0

@@ -26,8 +26,37 @@ def find_legs(worked: Worked) -> tuple[Leg, ...]:
             if leg is not None:
                 legs.append(leg)
     outer = _outer_pairs(worked)
-    nested = [_nested(leg, outer) for leg in legs]
+    nested = [_nested(leg, outer) for leg in _line_legs(worked, legs)]
     return tuple(sorted(nested, key=lambda leg: natural_key(leg.name)))
+
+
+def _line_legs(worked: Worked, legs: Sequence[Leg]) -> list[Leg]:
+    """A rectifier of AC lines is named by its lines: each line's two diodes are a leg.
+
+    The states show the dual, two rails that select among the lines.
+    """
+    selecting = [
+        leg for leg in legs if leg.kind == "rectifier leg" and _alternate(worked, leg.rails)
+    ]
+    if len(selecting) != 2 or selecting[0].rails != selecting[1].rails:
+        return [*legs]
+    by_name = {p.name: p for p in worked.stage.positions}
+    first, second = selecting
+    at_first = by_name[first.high[0]]
+    if first.midpoint != at_first.end:
+        first, second = second, first
+    named = []
+    for line in first.rails:
+        ends = {}
+        for rail in (first, second):
+            names = (*rail.high, *rail.low, *rail.others)
+            ends[rail.midpoint] = tuple(
+                n for n in names if line in (by_name[n].start, by_name[n].end)
+            )
+        rails = (first.midpoint, second.midpoint)
+        high, low = ends[rails[0]], ends[rails[1]]
+        named.append(Leg(line, "rectifier leg", line, rails, high, low, (), 2))
+    return [leg for leg in legs if leg not in selecting] + named
 
 
 @dataclass(frozen=True, slots=True)
@@ -107,7 +136,15 @@ def _leg(worked: Worked, index: int, cluster: Cluster, midpoint: str) -> Leg | N
     others = tuple(n for n in others if n in reachable)
     levels = _levels(worked, index, midpoint, rails)
     kind = _kind(worked, [positions[n] for n in (*high, *low)], rails, others)
+    if kind in ("chopper cell", "rectifier leg") and not _takes_turns(worked, index, high, low):
+        return None
     return Leg(midpoint, kind, midpoint, rails_named(rails, kind), high, low, others, levels)
+
+
+def _takes_turns(worked: Worked, index: int, high: Sequence[str], low: Sequence[str]) -> bool:
+    """Exactly one of the two is on in every legal state."""
+    two = {*high, *low}
+    return all(len(two & set(s.on)) == 1 for s in worked.reading.states[index]) or len(two) > 2
 
 
 def rails_named(rails: Sequence[str], kind: str) -> tuple[str, ...]:

@@ -7,12 +7,14 @@ excuse itself from its own job: then all legal states count.
 
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
+from enum import IntEnum
 
 from rulecheck.demand.routes import Carrier, Route
 from rulecheck.demand.sign_cases import Case
 from rulecheck.demand.states import RawState
 from rulecheck.demand.stiff import Box, tightened
 from rulecheck.demand.topology import Cluster, Link
+from rulecheck.stage import Position
 from rulecheck.values import AffineForm, Interval
 
 _VOLT_SECOND = 1e-6
@@ -30,31 +32,51 @@ class Failure:
     why: str
 
 
+class Freedom(IntEnum):
+    """What the drawn devices are allowed to forbid."""
+
+    DRAWN = 0
+    """Free paths conduct where they must: of diodes and of gated positions."""
+    CONTROLLED = 1
+    """Only diodes do; a gated position is taken to obey its gate."""
+    IDEAL = 2
+    """No device forbids anything: what the stage would ask of an ideal switch."""
+
+
 @dataclass(frozen=True, slots=True)
 class Reading:
-    """For each cluster its states; `strict` holds those whose free paths limit the control."""
+    """For each cluster its states and its freedom."""
 
     clusters: Sequence[Cluster]
     states: Sequence[Sequence[RawState]]
-    strict: frozenset[int]
+    freedom: Mapping[int, Freedom]
 
     def relaxed(self, clusters: Iterable[int]) -> "Reading":
-        return Reading(self.clusters, self.states, self.strict - set(clusters))
+        """The reading with the next freedom in these clusters."""
+        changed = {k: Freedom(min(self.freedom[k] + 1, Freedom.IDEAL)) for k in clusters}
+        return Reading(self.clusters, self.states, {**self.freedom, **changed})
 
 
-def inequalities(cluster: Cluster, state: RawState, strict: bool) -> list[AffineForm]:
+def inequalities(
+    cluster: Cluster, state: RawState, freedom: Freedom = Freedom.DRAWN
+) -> list[AffineForm]:
     """Forms that are zero or positive in the state: diodes, free paths, connected voltages."""
     forms: list[AffineForm] = []
     for link in cluster.positions:
-        forms += _of_position(link, state, strict)
+        forms += _of_position(link, state, freedom)
     for form in state.equal:
         forms += [form, -form]
     return forms
 
 
-def _of_position(link: Link, state: RawState, strict: bool) -> list[AffineForm]:
+def is_limited(position: Position, freedom: Freedom) -> bool:
+    """True where the position's free path has its way in that freedom."""
+    return freedom is Freedom.DRAWN or (freedom is Freedom.CONTROLLED and not position.gated)
+
+
+def _of_position(link: Link, state: RawState, freedom: Freedom) -> list[AffineForm]:
     position = link.position
-    if position is None or (position.gated and not strict):
+    if position is None or not is_limited(position, freedom):
         return []
     if link.name in state.on:
         if position.gated or position.free_forward == position.free_reverse:
@@ -72,10 +94,10 @@ def _of_position(link: Link, state: RawState, strict: bool) -> list[AffineForm]:
 
 def feasible(reading: Reading, index: int, box: Box) -> list[tuple[RawState, Box]]:
     """The cluster's states that the box leaves possible, each with its narrowed box."""
-    cluster, strict = reading.clusters[index], index in reading.strict
+    cluster, freedom = reading.clusters[index], reading.freedom[index]
     found = []
     for state in reading.states[index]:
-        narrowed = tightened(box, inequalities(cluster, state, strict))
+        narrowed = tightened(box, inequalities(cluster, state, freedom))
         if narrowed is not None:
             found.append((state, narrowed))
     return found
@@ -99,6 +121,23 @@ def _step_reach(reading: Reading, index: int, enter: str, leave: str, box: Box) 
         here = narrowed.range_of(potentials[enter] - potentials[leave])
         span = here if span is None else span.hull(here)
     return span
+
+
+def disabled(reading: Reading, index: int, box: Box) -> tuple[str, ...]:
+    """Gated positions that some legal state puts on, or off, but no possible state does.
+
+    Whatever forbids that state takes the position's job away, so it must not decide.
+    """
+    possible = [state for state, _ in feasible(reading, index, box)]
+    legal = reading.states[index]
+    found = []
+    for name in sorted(reading.clusters[index].gated):
+        for on in (True, False):
+            asked = any((name in state.on) == on for state in legal)
+            given = any((name in state.on) == on for state in possible)
+            if asked and not given:
+                found.append(name)
+    return tuple(dict.fromkeys(found))
 
 
 def failures(

@@ -5,6 +5,7 @@ di = v1 v2 / ((v1 + v2) L f). Mohan, Undeland and Robbins, Power Electronics, ch
 memory). For a two-level leg its maximum is V / (4 L f).
 """
 
+import math
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from itertools import product
@@ -13,9 +14,9 @@ import numpy as np
 import numpy.typing as npt
 
 from rulecheck.demand.readings import Reading, feasible
-from rulecheck.demand.routes import Route
+from rulecheck.demand.routes import Route, Step
 from rulecheck.demand.stiff import Box
-from rulecheck.values import AffineForm
+from rulecheck.values import AffineForm, total_of
 
 _MOST_COMBINATIONS = 64
 _MOST_POINTS = 20000
@@ -30,15 +31,18 @@ class Level:
     gates: tuple[str, ...]
 
 
-def swing(reading: Reading, route: Route, boxes: Sequence[Box]) -> float:
+def swing(
+    reading: Reading, route: Route, boxes: Sequence[Box], slow: frozenset[int] = frozenset()
+) -> float:
     """The largest v1 v2 / (v1 + v2), in volts, over the boxes; di is this over L f.
 
     Through several groups every mixture of their states is taken to follow every other, which
-    bounds all modulations; through one group neighbouring levels follow each other.
+    bounds all modulations; through one group neighbouring levels follow each other. `slow` are
+    the steps of the route that keep their state within a switching period.
     """
     if route.floating:
         return max((_own_leg_swing(reading, route, box) for box in boxes), default=0.0)
-    return max((_swing_in(reading, route, box) for box in boxes), default=0.0)
+    return max((_swing_in(reading, route, box, slow) for box in boxes), default=0.0)
 
 
 def _own_leg_swing(reading: Reading, route: Route, box: Box) -> float:
@@ -54,33 +58,41 @@ def _own_leg_swing(reading: Reading, route: Route, box: Box) -> float:
     return (max(ends) - min(ends)) / 4 if ends and np.isfinite(ends).all() else 0.0
 
 
-def _swing_in(reading: Reading, route: Route, box: Box) -> float:
-    choices: list[list[Level]] = []
-    for step in route.steps:
-        levels = []
-        for state, _ in feasible(reading, step.cluster, box):
-            potentials = state.solution.potentials
-            form = (potentials[step.enter] - potentials[step.leave]).scaled(step.weight)
-            gated = reading.clusters[step.cluster].gated
-            levels.append(Level(form, tuple(n for n in state.on if n in gated)))
-        choices.append(levels)
+def _swing_in(reading: Reading, route: Route, box: Box, slow: frozenset[int]) -> float:
+    choices = [_levels(reading, step, box) for step in route.steps]
     if not choices or not all(choices):
         return 0.0
-    combined = _combined(route, choices)
-    return _largest(combined, box, neighbours=len(choices) == 1)
+    fast = [levels for k, levels in enumerate(choices) if k not in slow]
+    still = [levels for k, levels in enumerate(choices) if k in slow]
+    largest = 0.0
+    for held in product(*still):
+        base = total_of([route.fixed, *(level.form for level in held)])
+        combined = _combined(base, fast)
+        largest = max(largest, _largest(combined, box, neighbours=len(fast) == 1))
+    return largest
 
 
-def _combined(route: Route, choices: Sequence[Sequence[Level]]) -> list[Level]:
-    count = int(np.prod([len(levels) for levels in choices]))
+def _levels(reading: Reading, step: Step, box: Box) -> list[Level]:
+    gated = reading.clusters[step.cluster].gated
+    levels = []
+    for state, _ in feasible(reading, step.cluster, box):
+        potentials = state.solution.potentials
+        form = (potentials[step.enter] - potentials[step.leave]).scaled(step.weight)
+        levels.append(Level(form, tuple(n for n in state.on if n in gated)))
+    return levels
+
+
+def _combined(base: AffineForm, choices: Sequence[Sequence[Level]]) -> list[Level]:
+    count = math.prod(len(levels) for levels in choices)
     if count > _MOST_COMBINATIONS:
         choices = [[levels[0], levels[-1]] for levels in choices[:6]]
-    mixed = []
-    for combination in product(*choices):
-        form = route.fixed
-        for level in combination:
-            form += level.form
-        mixed.append(Level(form, tuple(g for level in combination for g in level.gates)))
-    return mixed
+    return [
+        Level(
+            total_of([base, *(level.form for level in mixture)]),
+            tuple(gate for level in mixture for gate in level.gates),
+        )
+        for mixture in product(*choices)
+    ]
 
 
 def _largest(levels: Sequence[Level], box: Box, neighbours: bool) -> float:

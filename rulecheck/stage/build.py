@@ -10,12 +10,16 @@ from rulecheck.stage.gate_pulse import GatePulse
 from rulecheck.stage.gate_region import GateRegion, find_gate_region
 from rulecheck.stage.gate_timing import find_gate_pulses
 from rulecheck.stage.grouping import Grouping, group_devices
-from rulecheck.stage.layout import Layout, is_semiconductor, lay_out, main_nets
+from rulecheck.stage.layout import CIRCUITS, Layout, is_semiconductor, lay_out, main_nets
 from rulecheck.stage.orientation import mean_potentials
 from rulecheck.stage.peripheral import Peripheral, find_peripheral
 from rulecheck.stage.ports import Ports, resolve_ports, source_ports
 from rulecheck.stage.positions import build_positions
-from rulecheck.stage.power_path import find_live_nets, find_power_devices
+from rulecheck.stage.power_path import (
+    find_isolation_capacitors,
+    find_live_nets,
+    find_power_devices,
+)
 from rulecheck.stage.sheet import Sheet
 from rulecheck.stage.stage import Branch, BranchKind, Port, Role, Stage, Switching, Transformer
 from rulecheck.stage.wiring import merge_wires
@@ -40,6 +44,7 @@ class _Sorted:
     aside: frozenset[str]
     live: frozenset[str]
     switches: frozenset[str]
+    isolating: frozenset[str]
 
 
 def read_stage(parts: PartList, sheet: Sheet) -> StageReading:
@@ -86,13 +91,16 @@ def _sort_parts(layout: Layout) -> _Sorted:
         for name, override in ((part.name, layout.sheet.overrides.get(part.name.lower())),)
         if override is not None and override.role is not None
     }
-    put_aside = {Role.SNUBBER, Role.CLAMP, Role.BOOTSTRAP, Role.SHARING, Role.SENSE}
+    put_aside = {Role.SNUBBER, Role.CLAMP, Role.BOOTSTRAP, Role.SUPPLY, Role.SHARING}
+    put_aside |= {Role.SENSE, Role.ISOLATION}
     put_aside |= {Role.GATE_DRIVE, Role.SIGNAL, Role.IGNORED}
     by_sheet = {name for name, role in overridden.items() if role in put_aside}
     drives = {n for core in layout.parts.cores if core.name in region.cores for n in core.windings}
     aside = frozenset(region.parts | set(peripheral.roles) | by_sheet | drives)
     aside -= {name for name, role in overridden.items() if role not in put_aside}
     live = find_live_nets(layout, aside)
+    isolating = find_isolation_capacitors(layout, aside, live) - set(overridden)
+    aside |= isolating
     bulk = frozenset(
         part.name
         for part in layout.parts.parts
@@ -100,7 +108,7 @@ def _sort_parts(layout: Layout) -> _Sorted:
     )
     switches = find_power_devices(layout, aside, live, bulk)
     switches |= {name for name, role in overridden.items() if role is Role.SWITCH}
-    return _Sorted(layout, region, peripheral, aside, live, switches)
+    return _Sorted(layout, region, peripheral, aside, live, switches, isolating)
 
 
 def _ports(known: _Sorted) -> Ports:
@@ -161,6 +169,7 @@ def _roles(
     roles |= {name: Role.WIRE for name in known.layout.wires}
     roles |= {name: Role.GATE_DRIVE for name in known.region.parts}
     roles |= known.peripheral.roles
+    roles |= dict.fromkeys(known.isolating, Role.ISOLATION)
     roles |= {name: Role.SWITCH for name in known.switches}
     overridden = {
         name: known.layout.sheet.overrides[name.lower()].role
@@ -199,25 +208,33 @@ def _leg_switching(layout: Layout, sheet: Sheet) -> dict[str, Switching]:
 
 def _kept_assumptions(known: _Sorted) -> tuple[str, ...]:
     lines = list(known.peripheral.assumed)
+    lines += [
+        f"{name} read as an isolation capacitor: it alone joins two parts of the stage"
+        for name in sorted(known.isolating, key=natural_key)
+    ]
     for part in sorted(known.layout.parts.parts, key=lambda p: natural_key(p.name)):
         if not is_semiconductor(part):
             continue
         if part.name in known.region.parts:
             lines.append(f"{part.name} read as part of a gate drive")
         elif _is_signal(known, part):
-            lines.append(f"{part.name} read as a signal part (no port feeds its ends)")
+            lines.append(f"{part.name} read as a signal part (no power current can pass it)")
     return tuple(lines)
 
 
 def _is_signal(known: _Sorted, part: Part) -> bool:
-    """Neither end is reached from a port, ground left out."""
+    """No port reaches its ends, or behind one of them only signals go on."""
+    if part.name in known.switches or part.name in known.aside:
+        return False
     ends = set(main_nets(known.layout, part)) - known.layout.grounds
-    return (
-        part.name not in known.switches
-        and part.name not in known.aside
-        and bool(ends)
-        and not ends & known.live
-    )
+    fed = bool(ends & known.live)
+    return bool(ends) and (not fed or any(_only_signals(known, part, net) for net in ends))
+
+
+def _only_signals(known: _Sorted, part: Part, net: str) -> bool:
+    others = [t.part for t in known.layout.touches[net] if t.part.name != part.name]
+    quiet = {Kind.RESISTOR, Kind.CAPACITOR, *CIRCUITS}
+    return bool(others) and all(other.kind in quiet for other in others)
 
 
 def _not_covered(known: _Sorted, grouping: Grouping) -> tuple[str, ...]:

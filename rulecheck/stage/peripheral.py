@@ -26,6 +26,7 @@ SNUBBER_CAPACITANCE = 100e-9
 """Farad; common practice: a larger capacitor across one switch is no snubber."""
 CLAMP_CAPACITANCE = 1e-6
 """Farad; a larger capacitor behind a diode is taken for an output."""
+_OPAQUE = (Kind.UNKNOWN, Kind.OTHER)
 SHARING_RESISTANCE = 1e3
 """Ohm; a resistor across a device from here on shares voltage or bleeds."""
 
@@ -50,6 +51,8 @@ def find_peripheral(layout: Layout, gate_parts: frozenset[str]) -> Peripheral:
     for net in layout.touches:
         for item in _at_net(layout, net, gate_parts):
             found.setdefault(item.part.name, item)
+    for item in _before_bootstraps(layout, found):
+        found.setdefault(item.part.name, item)
     for item in _across_devices(layout, gate_parts):
         found.setdefault(item.part.name, item)
     for part in layout.parts.parts:
@@ -68,7 +71,11 @@ def find_peripheral(layout: Layout, gate_parts: frozenset[str]) -> Peripheral:
 
 
 def _sentence(item: _Found) -> str:
-    article = {Role.BOOTSTRAP: "part of a bootstrap supply on", Role.SHARING: "sharing voltage of"}
+    article = {
+        Role.BOOTSTRAP: "part of a bootstrap supply on",
+        Role.SHARING: "sharing voltage of",
+        Role.SUPPLY: "feeding the auxiliary supply",
+    }
     return f"{item.part.name} read as {article.get(item.role, f'a {item.role} of')} {item.at}"
 
 
@@ -89,12 +96,14 @@ def _at_net(layout: Layout, net: str, gate_parts: frozenset[str]) -> list[_Found
     kinds = [part.kind for part in around]
     if sorted(kinds) == [Kind.CAPACITOR, Kind.RESISTOR]:
         return [_Found(part, Role.SNUBBER, _behind(layout, around, net)) for part in around]
-    if not set(kinds) <= {*DIODES, Kind.CAPACITOR, Kind.RESISTOR, *CIRCUITS}:
+    if not set(kinds) <= {*DIODES, Kind.CAPACITOR, Kind.RESISTOR, Kind.BJT, *CIRCUITS}:
         return []
     diodes = [part for part in around if part.kind in DIODES]
     capacitors = [part for part in around if part.kind is Kind.CAPACITOR]
-    if diodes and capacitors and set(kinds) & CIRCUITS:
-        return _bootstrap(layout, net, diodes, capacitors)
+    if capacitors and _supplies_circuits(layout, net):
+        return _bootstrap(layout, net, around, capacitors) or _supply(layout, net, around)
+    if Kind.BJT in kinds:
+        return []
     if diodes and (Kind.ZENER in kinds or _is_clamp(around, capacitors)):
         at = _behind(layout, diodes, net)
         return [_Found(p, Role.CLAMP, at) for p in around if p.kind not in CIRCUITS]
@@ -115,15 +124,54 @@ def _is_clamp(around: list[Part], capacitors: list[Part]) -> bool:
     return all(not isinstance(c.value, Unknown) and c.value < CLAMP_CAPACITANCE for c in capacitors)
 
 
+def _supplies_circuits(layout: Layout, net: str) -> bool:
+    """Some circuit takes its supply from the net, or one whose inside is not known touches it."""
+    return any(
+        t.part.kind in CIRCUITS
+        and (
+            t.role.startswith(("supply", "bootstrap")) or t.part.kind in (Kind.UNKNOWN, Kind.OTHER)
+        )
+        for t in layout.touches[net]
+    )
+
+
 def _bootstrap(
-    layout: Layout, net: str, diodes: list[Part], capacitors: list[Part]
+    layout: Layout, net: str, around: list[Part], capacitors: list[Part]
 ) -> list[_Found]:
     """The capacitor's far end must be a net that some gated device switches."""
     for capacitor in capacitors:
         for far in layout.others(capacitor, net):
             if far not in layout.grounds and _switches(layout, far):
-                return [_Found(p, Role.BOOTSTRAP, far) for p in (*diodes, *capacitors)]
+                own = [p for p in around if p.kind not in CIRCUITS]
+                return [_Found(p, Role.BOOTSTRAP, far) for p in own]
     return []
+
+
+def _supply(layout: Layout, net: str, around: list[Part]) -> list[_Found]:
+    """What feeds a supply from another net, unless it rectifies a winding."""
+    return [
+        _Found(part, Role.SUPPLY, net)
+        for part in around
+        if is_semiconductor(part)
+        and not any(
+            t.part.name in layout.coupled
+            for other in main_nets(layout, part)
+            for t in layout.touches[other]
+        )
+    ]
+
+
+def _before_bootstraps(layout: Layout, found: Mapping[str, _Found]) -> list[_Found]:
+    """A diode and a resistor in series into a bootstrap supply."""
+    more = []
+    for item in list(found.values()):
+        if item.role is not Role.BOOTSTRAP or item.part.kind is not Kind.RESISTOR:
+            continue
+        for net in layout.ends(item.part):
+            around = [t.part for t in layout.touches[net] if t.part.name != item.part.name]
+            if [part.kind for part in around] == [Kind.DIODE]:
+                more.append(_Found(around[0], Role.BOOTSTRAP, item.at))
+    return more
 
 
 def _switches(layout: Layout, net: str) -> bool:

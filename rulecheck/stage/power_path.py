@@ -17,6 +17,8 @@ from rulecheck.values import Unknown
 
 LOAD_RESISTANCE = 10e3
 """Ohm; from here on a resistor senses or bleeds (common practice)."""
+ISOLATION_CAPACITANCE = 22e-9
+"""Farad; common practice: capacitors across an isolation barrier are smaller."""
 FEED_RESISTANCE = 1e3
 """Ohm; a larger resistor does not carry power from one part of the stage to another."""
 
@@ -32,7 +34,7 @@ def find_live_nets(layout: Layout, aside: frozenset[str]) -> frozenset[str]:
     for part in layout.parts.parts:
         if part.name in aside or part.name in layout.wires:
             continue
-        ends = _feeding_ends(layout, part)
+        ends = _feeding_ends(layout, part, aside)
         for first, second in pairwise(ends):
             graph.add_edge(first, second)
         if part.name in cores and not set(ends) <= layout.grounds:
@@ -44,23 +46,24 @@ def find_live_nets(layout: Layout, aside: frozenset[str]) -> frozenset[str]:
     return frozenset(net for net in reached if isinstance(net, str)) | layout.grounds
 
 
-def _feeding_ends(layout: Layout, part: Part) -> tuple[str, ...]:
+def _feeding_ends(layout: Layout, part: Part, aside: frozenset[str]) -> tuple[str, ...]:
     if is_semiconductor(part):
         return main_nets(layout, part)
     if part.kind is Kind.INDUCTOR:
         return layout.ends(part)
     if part.kind is Kind.RESISTOR and not isinstance(part.value, Unknown):
-        return layout.ends(part) if _feeds(layout, part, part.value) else ()
+        return layout.ends(part) if _feeds(layout, part, part.value, aside) else ()
     return ()
 
 
-def _feeds(layout: Layout, part: Part, ohm: float) -> bool:
+def _feeds(layout: Layout, part: Part, ohm: float, aside: frozenset[str]) -> bool:
     """A small resistor feeds on what lies behind it only where a device or an inductor does."""
     return ohm < FEED_RESISTANCE and all(
         net in layout.port_nets
         or net in layout.grounds
         or any(
-            t.part.kind is Kind.INDUCTOR or is_semiconductor(t.part) for t in layout.touches[net]
+            t.part.name not in aside and (t.part.kind is Kind.INDUCTOR or is_semiconductor(t.part))
+            for t in layout.touches[net]
         )
         for net in layout.ends(part)
     )
@@ -79,6 +82,28 @@ def _seeds(layout: Layout, aside: frozenset[str]) -> Iterable[str]:
     return chosen or sorted(layout.touches)
 
 
+def find_isolation_capacitors(
+    layout: Layout, aside: frozenset[str], live: frozenset[str]
+) -> frozenset[str]:
+    """Small capacitors that alone join two otherwise separate parts of the power path.
+
+    Their voltage is that of the isolation barrier, which the stage does not fix.
+    """
+    capacitors = [part for part in layout.parts.parts if part.kind is Kind.CAPACITOR]
+    small = [part for part in capacitors if part.name not in aside and _isolates(part)]
+    small = [part for part in small if set(layout.ends(part)) <= live]
+    bulk = frozenset(part.name for part in capacitors) - {part.name for part in small} - aside
+    graph = _power_graph(layout, aside, live, bulk)
+    graph.add_nodes_from(net for part in small for net in layout.ends(part))
+    side = {net: index for index, nets in enumerate(nx.connected_components(graph)) for net in nets}
+    ends = {part.name: layout.ends(part) for part in small}
+    return frozenset(name for name, (a, b) in ends.items() if side[a] != side[b])
+
+
+def _isolates(part: Part) -> bool:
+    return not isinstance(part.value, Unknown) and part.value <= ISOLATION_CAPACITANCE
+
+
 def find_power_devices(
     layout: Layout, aside: frozenset[str], live: frozenset[str], bulk: frozenset[str]
 ) -> frozenset[str]:
@@ -86,6 +111,19 @@ def find_power_devices(
 
     `bulk` names the capacitors that count as a way back.
     """
+    graph = _power_graph(layout, aside, live, bulk)
+    cut = {frozenset(pair) for pair in nx.bridges(graph)} if graph else set()
+    semiconductors = _semiconductors(layout)
+    return frozenset(
+        name
+        for first, second, name in graph.edges(keys=True)
+        if frozenset((first, second)) not in cut and name in semiconductors
+    )
+
+
+def _power_graph(
+    layout: Layout, aside: frozenset[str], live: frozenset[str], bulk: frozenset[str]
+) -> "nx.MultiGraph[str]":
     graph: nx.MultiGraph[str] = nx.MultiGraph()
     for part in layout.parts.parts:
         if part.name in aside or part.name in layout.wires:
@@ -96,13 +134,7 @@ def find_power_devices(
                 graph.add_edge(first, second, key=part.name)
     for port in layout.sheet.ports:
         _add_port(graph, layout, port)
-    cut = {frozenset(pair) for pair in nx.bridges(graph)} if graph else set()
-    semiconductors = _semiconductors(layout)
-    return frozenset(
-        name
-        for first, second, name in graph.edges(keys=True)
-        if frozenset((first, second)) not in cut and name in semiconductors
-    )
+    return graph
 
 
 def _semiconductors(layout: Layout) -> frozenset[str]:
@@ -116,14 +148,15 @@ def _carrying_ends(layout: Layout, part: Part, bulk: frozenset[str]) -> tuple[st
         return layout.ends(part)
     if part.kind is Kind.RESISTOR:
         known = not isinstance(part.value, Unknown)
-        return layout.ends(part) if not known or _is_load(part) else ()
+        return layout.ends(part) if not known or _carries(part) else ()
     if part.kind is Kind.CONNECTOR:
         return tuple(dict.fromkeys(layout.net(net) for net in part.nets))
     return ()
 
 
-def _is_load(part: Part) -> bool:
-    return not isinstance(part.value, Unknown) and part.value < LOAD_RESISTANCE
+def _carries(part: Part) -> bool:
+    """In series with a device a kilohm lets only signals through."""
+    return not isinstance(part.value, Unknown) and part.value < FEED_RESISTANCE
 
 
 def _add_port(graph: "nx.MultiGraph[str]", layout: Layout, port: SheetPort) -> None:

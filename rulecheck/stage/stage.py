@@ -100,6 +100,8 @@ class Role(StrEnum):
     LOAD = "load"
     GATE_DRIVE = "gate drive"
     BOOTSTRAP = "bootstrap"
+    SUPPLY = "auxiliary supply"
+    ISOLATION = "isolation capacitor"
     SHARING = "sharing"
     SENSE = "sense"
     PORT = "port"
