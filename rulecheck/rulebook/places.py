@@ -25,7 +25,10 @@ def place_in_text(source: SourceText, start: Span, text: str, at: int) -> Span:
     elif source.text[offset : offset + 1] in ("'", '"'):
         offset += 1
     seen = sum(not character.isspace() for character in text[:at])
-    position = _skip(source.text, offset, seen)
+    behind = at >= len(text.rstrip()) and seen > 0
+    position = _skip(source.text, offset, seen - behind)
+    if position is not None:
+        position += behind
     return _span(source, position) if position is not None else start
 
 
