@@ -125,7 +125,7 @@ def take_amount(reading: Reading, items: Sequence[Item]) -> tuple[Amount, list[I
     while end < len(items) and items[end].kind != MARK and items[end].start == items[end - 1].end:
         end += 1
     run, rest = items[:end], list(items[end:])
-    whole = reading.text[run[0].start : run[-1].end]
+    whole = reading.text[run[0].start : run[-1].end] if len(run) > 1 else _own_text(reading, run[0])
     if any(item.kind == BRACED for item in run) or run[0].kind == GROUP:
         return formula_at(reading.card.line, run[0].start, run[-1].end), rest
     if run[0].kind == QUOTED:
@@ -133,6 +133,10 @@ def take_amount(reading: Reading, items: Sequence[Item]) -> tuple[Amount, list[I
             return None, list(items)
         return formula_at(reading.card.line, run[0].start, run[-1].end), rest
     return _word_amount(reading, run[0], whole, rest, items)
+
+
+def _own_text(reading: Reading, item: Item) -> str:
+    return item.text if item.kind == WORD else reading.text[item.start : item.end]
 
 
 def _word_amount(

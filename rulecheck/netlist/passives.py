@@ -20,6 +20,9 @@ from rulecheck.netlist.syntax import MARK, WORD, Item
 from rulecheck.netlist.terminals import terminal_error
 from rulecheck.values import error
 
+_BARE = re.compile(r"[+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)")
+_SCALE = re.compile(r"(?:meg|[tgkmunpµμ])(?:ohms?|[FHΩΩ])?", re.IGNORECASE)
+
 # Values that many take for another one, by letter.
 _TRAPS = {
     "R": (
@@ -76,12 +79,26 @@ def _model_and_value(
     left = list(rest)
     if left and left[0].kind == WORD and reading.is_model(left[0].text):
         model, left = left[0].text, left[1:]
+    left = _with_scale(reading, left)
+    item = left[0] if left else None
     value, left = take_amount(reading, left)
-    if isinstance(value, float) and rest:
-        _warn_of_trap(letter, reading, rest[1 if model else 0], value)
+    if isinstance(value, float) and item is not None:
+        _warn_of_trap(letter, reading, item, value)
     if not model and left and left[0].kind == WORD and reading.is_model(left[0].text):
         model, left = left[0].text, left[1:]
     return model, value, left
+
+
+def _with_scale(reading: Reading, items: list[Item]) -> list[Item]:
+    """`10 k`, `4.7 uF`: a scale behind a blank belongs to the number before it."""
+    if len(items) < 2 or items[0].kind != WORD or not _BARE.fullmatch(items[0].text):
+        return items
+    scale = items[1]
+    if not _SCALE.fullmatch(scale.text) or reading.is_model(scale.text):
+        return items
+    whole = items[0].text + scale.text
+    reading.remark(items[0], f"'{items[0].text} {scale.text}' is read as {whole}")
+    return [Item(WORD, items[0].start, scale.end, whole), *items[2:]]
 
 
 def _warn_of_trap(letter: str, reading: Reading, item: Item, value: float) -> None:
@@ -117,6 +134,8 @@ def read_coupling(letter: str, reading: Reading) -> Outcome:
         names.append(rest.pop(0).text)
     if len(names) < 2:
         return None
+    if len({name.lower() for name in names}) < len(names):
+        return error(reading.span, "a coupling names one inductor twice", "name each one once")
     value, left = take_amount(reading, rest)
     for pair in pairs:
         if value is None and pair.key.lower() in ("k", "coupling"):

@@ -6,7 +6,7 @@ from rulecheck.netlist.assignments import key_name
 from rulecheck.netlist.draft import Amount, Draft, Outcome, Reading
 from rulecheck.netlist.fields import net_words, pair_formula, plain_and_pairs, read_pairs
 from rulecheck.netlist.numbers import read_number
-from rulecheck.netlist.syntax import Item
+from rulecheck.netlist.syntax import BRACED, Item
 from rulecheck.netlist.terminals import ROWS, terminal_error
 
 _BARE_NUMBER = re.compile(r"[0-9]*\.?[0-9]+(?:[eE][+-]?[0-9]+)?")
@@ -208,7 +208,7 @@ def read_current_switch(letter: str, reading: Reading) -> Outcome:
 def read_instance(letter: str, reading: Reading) -> Outcome:
     """X: the subcircuit is the last word before the first key=value."""
     plain, pairs = plain_and_pairs(reading)
-    words = net_words(reading, plain)
+    words = net_words(reading, [item for item in plain if item.kind != BRACED])
     if not words:
         return terminal_error(letter, 0, reading.span)
     last = len(words) - 1

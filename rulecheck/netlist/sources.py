@@ -32,6 +32,7 @@ _WAVEFORMS = {
     "trrandom": "noise",
 }
 _KEYWORDS = frozenset({"dc", "ac", "tran", "distof1", "distof2", *_WAVEFORMS})
+_EXPRESSIONS = frozenset({"r", "v", "i", "table", "tbl", "value"})
 _LISTS_END = frozenset({"file", "repeat", "endrepeat", "for", "forever", "r", "td"})
 
 
@@ -45,7 +46,10 @@ def read_source(letter: str, reading: Reading) -> Outcome:
     if not any(item.text.lower() in _WAVEFORMS for item in rest):
         rest = with_decimal_commas(rest)
     value, wave = _value_and_wave(reading, rest)
-    parameters = dict(read_pairs(reading, pairs))
+    defined = next((pair for pair in pairs if pair.key.lower() in _EXPRESSIONS), None)
+    if wave is None and defined is not None:
+        wave = DraftWave("behavioural", (), reading.text[defined.start :].strip())
+    parameters = dict(read_pairs(reading, pairs, _EXPRESSIONS))
     if value is None and not isinstance(parameters.get("dc", ""), str):
         value = _number(parameters.pop("dc"))
     if value is None and wave is not None:

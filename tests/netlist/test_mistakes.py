@@ -34,6 +34,7 @@ from tests.kit.netlists import circuit, errors, names
         ("E1 a b c d gain", "2:1: no controlling nets and gain can be read",
          "write NAME NET NET NET NET GAIN, or VALUE={...}"),
         ("K1 L1 L2", "2:1: no coefficient of coupling", "write NAME L1 L2 COEFFICIENT"),
+        ("K1 L1 L1 0.9", "2:1: a coupling names one inductor twice", "name each one once"),
         ("X1", "2:1: an instance of a subcircuit has 1 to 9999 nets: as its subcircuit says; "
          "found 0", "write NAME, the nets, then the model"),
         ('R1 a b "10k', "2:8: a quote is opened and not closed",

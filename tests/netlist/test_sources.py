@@ -73,6 +73,16 @@ def test_waveforms(written: str, kind: str, values: tuple[float, ...]) -> None:
     assert errors(found) == []
 
 
+@pytest.mark.parametrize("rest", ["R=5", "table=(0,0,1,1)", "value={V(a)*2}"])
+def test_a_source_that_is_defined_by_an_expression_is_not_zero(rest: str) -> None:
+    found = circuit(f"I1 a 0 {rest}\n")
+    waveform = found.elements[0].waveform
+    assert waveform is not None
+    assert (waveform.kind, waveform.text) == ("behavioural", rest)
+    assert isinstance(found.elements[0].value, Unknown)
+    assert found.problems == ()
+
+
 def test_the_text_of_a_waveform_is_what_was_written() -> None:
     waveform = one("V1 a 0 DC 1 PULSE(0 12 0) Rser=1").waveform
     assert waveform is not None

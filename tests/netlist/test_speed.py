@@ -1,4 +1,4 @@
-"""The time to read stays small; the limits are several times what it takes, to find what blows up."""
+"""The time to read stays small; limits are several times what it takes, to find what blows up."""
 
 from time import process_time
 
