@@ -41,8 +41,9 @@ def trials_text(trials: Trials) -> str:
     lines = [line for trial in trials.trials if not trial.passed for line in _failure(trial)]
     count, failed = len(trials.trials), sum(not trial.passed for trial in trials.trials)
     rules = len({trial.rule for trial in trials.trials})
+    noun = "rule" if rules == 1 else "rules"
     verdict = f"{failed} not as expected" if failed else "all as expected"
-    return "\n".join([*lines, f"{count} examples of {rules} rules: {verdict}"]) + "\n"
+    return "\n".join([*lines, f"{count} examples of {rules} {noun}: {verdict}"]) + "\n"
 
 
 def _try_pack(name: str) -> list[Trial] | tuple[Problem, ...]:
