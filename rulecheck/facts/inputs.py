@@ -34,6 +34,8 @@ class Inputs:
     ports_at_net: Mapping[str, tuple[str, ...]]
     grounds: frozenset[str]
     """The ground and what looks like another, as far as something is on it."""
+    spelling: Mapping[str, str]
+    """Model texts, which have no case, by lower case -> as first written."""
     shared: frozenset[frozenset[str]]
     """Pairs of merged nets with a sharing or snubber part across them."""
 
@@ -90,6 +92,7 @@ def gather(stage: Stage, capabilities: Capabilities, demands: Demands) -> Inputs
             (net, port.name) for port in stage.ports for net in (*port.nets, port.neutral) if net
         ),
         _grounds(stage),
+        {part.text.casefold(): part.text for part in reversed(stage.parts.parts)},
         frozenset(
             frozenset(stage.merged.get(net, net) for net in parts[name].nets)
             for name, role in stage.roles.items()

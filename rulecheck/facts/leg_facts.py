@@ -7,7 +7,7 @@ from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.inputs import Inputs
 from rulecheck.facts.terms import SubjectTerm, count, link, number, text, texts, yes_no
 from rulecheck.stage import Role
-from rulecheck.values import Dimension, Unknown
+from rulecheck.values import Dimension, Unknown, natural_key
 
 LEG = SubjectTerm(
     "leg",
@@ -137,7 +137,8 @@ def _kinds(inputs: Inputs, positions: Iterable[str]) -> tuple[str, ...]:
 
 def _models(inputs: Inputs, positions: Iterable[str]) -> tuple[str, ...]:
     devices = (inputs.part_by_name[name] for name in inputs.parts_of_positions(positions))
-    return tuple(sorted({part.text.casefold() for part in devices if part.gated}))
+    models = {inputs.spelling[part.text.casefold()] for part in devices if part.gated}
+    return tuple(sorted(models, key=natural_key))
 
 
 def _switching(inputs: Inputs, midpoint: str) -> dict[str, Value]:

@@ -135,4 +135,4 @@ def collect_stage(inputs: Inputs) -> tuple[Subject, ...]:
         else Unknown("dead time", "switching: {dead-time: ...}"),
         "efficiency": stage.efficiency,
     }
-    return (Subject("stage", stage.netlist, values, {}, (), (), Span(stage.netlist, 1)),)
+    return (Subject("stage", "stage", values, {}, (), (), Span(stage.netlist, 1)),)

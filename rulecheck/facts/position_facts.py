@@ -21,6 +21,7 @@ from rulecheck.parts import Part
 from rulecheck.stage import Position
 from rulecheck.values import Interval, Quadrant, QuadrantSet, Unknown
 
+_FEW = 3
 _MIRRORED = {
     Quadrant.I: Quadrant.III,
     Quadrant.II: Quadrant.IV,
@@ -51,6 +52,7 @@ def _subject(
             **_demand_values(inputs, demand),
             **_capability_values(inputs, capability),
             **_build_values(inputs, position, capability, devices),
+            "forbids": _forbids(inputs, position.name),
             "across-voltage": (position.start, position.end) in inputs.voltage_between,
             "turned": _turned(demand.quadrants, capability.quadrants),
             "tied": position.name not in inputs.group_of_position,
@@ -154,6 +156,16 @@ def _build_values(
         "series-diode": series_diode(capability.forward.carried_by, inputs.part_by_name),
         "free-path-doubled": free_path_doubled(inputs, devices),
     }
+
+
+def _forbids(inputs: Inputs, name: str) -> str:
+    """In words: the states of its group that its free path takes away from a stage in need."""
+    group = inputs.group_of_position.get(name)
+    if group is None or name not in group.forbidding or not group.forbidden_states:
+        return "no needed state"
+    states = [" and ".join(on) or "nothing" for on in group.forbidden_states]
+    shown = ", or ".join(states[:_FEW]) + (", ..." if len(states) > _FEW else "")
+    return f"the needed state{'s' if len(states) > 1 else ''} with {shown} on"
 
 
 def _turned(needs: QuadrantSet | Unknown, has: QuadrantSet) -> bool | Unknown:

@@ -43,6 +43,7 @@ POSITION = SubjectTerm(
         text("reverse-voltage-state", "The state in which the reverse voltage is largest."),
         text("forward-current-state", "The state in which the forward current is largest."),
         text("reverse-current-state", "The state in which the reverse current is largest."),
+        text("forbids", "The needed states that its own free path forbids; `no needed state`."),
         texts("kinds", "Kinds of its devices, each once."),
         count("gated-devices", "How many of its devices have a gate."),
         count("gate-nets", "How many nets its gates are on."),
