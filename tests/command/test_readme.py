@@ -1,5 +1,6 @@
 """The README's commands run as printed, and its YAML is what the program accepts."""
 
+import os
 import re
 import shlex
 import subprocess
@@ -9,10 +10,12 @@ from pathlib import Path
 import pytest
 import yaml
 
+from rulecheck.cli.project import read_project
 from rulecheck.parts import read_part_data
 from rulecheck.reading import SourceText
+from rulecheck.rulebook import load_packs
 from rulecheck.stage import read_sheet
-from tests.command.running import ROOT, clean_environment
+from tests.command.running import ROOT, clean_environment, run
 
 README = (ROOT / "README.md").read_text(encoding="utf-8")
 FRESH = [line for line in README.splitlines() if line.startswith("python3 -m venv .venv && ")]
@@ -59,9 +62,48 @@ def test_every_printed_command_ends_as_it_says(hut, path_with_command):
         assert (command, done.returncode, done.stderr) == (command, status, "")
 
 
+READERS = {
+    "ports": read_sheet,
+    "parts": lambda source: read_part_data([source]),
+    "pack": lambda source: load_packs([source]),
+    "netlists": read_project,
+}
+
+
 @pytest.mark.parametrize("text", blocks("yaml"))
-def test_the_printed_yaml_is_accepted(text):
-    source = SourceText("printed.yaml", text)
-    first = next(iter(yaml.safe_load(text)))
-    read = {"ports": read_sheet, "parts": lambda source: read_part_data([source])}[first]
+def test_the_printed_yaml_is_accepted(text, hut):
+    source = SourceText(str(hut / "printed.yaml"), text)
+    read = READERS[next(iter(yaml.safe_load(text)))]
     assert read(source).problems == ()
+
+
+def test_the_printed_pack_passes_its_own_examples(hut):
+    (pack,) = (text for text in blocks("yaml") if text.startswith("pack:"))
+    (hut / "printed.rules.yaml").write_text(pack, encoding="utf-8")
+    assert run("rules", "--try", "printed.rules.yaml", folder=hut).returncode == 0
+
+
+def console_blocks(text: str) -> list[tuple[str, str]]:
+    """Each printed command with the output printed under it."""
+    found = re.findall(r"```console\n\$ rulecheck (.*?)\n(.*?)```", text, re.DOTALL)
+    return [(str(command), str(output)) for command, output in found]
+
+
+def test_the_printed_output_is_what_the_commands_print(hut):
+    """`REGENERATE=1` rewrites the README's blocks; read the difference before committing it."""
+    text = README
+    for command, printed in console_blocks(README):
+        shown = run(*command.split(), folder=hut).stdout
+        text = text.replace(
+            f"$ rulecheck {command}\n{printed}```", f"$ rulecheck {command}\n{shown}```"
+        )
+    if os.environ.get("REGENERATE"):
+        (ROOT / "README.md").write_text(text, encoding="utf-8")
+        return
+    assert console_blocks(README)
+    assert without_counts(text) == without_counts(README)
+
+
+def without_counts(text: str) -> str:
+    """How many checks hold grows with every rule that is added."""
+    return re.sub(r"\d+ hold", "N hold", text)
