@@ -6,7 +6,7 @@ open, off voltages and parallel currents share evenly (least squares); that is e
 the equations determine.
 """
 
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 
 import numpy as np
@@ -75,6 +75,8 @@ class _System:
 
     def form(self, row: Matrix) -> AffineForm:
         size = float(np.abs(row).max(initial=0.0))
+        if size < _RESIDUAL * 1e-3:
+            return AffineForm()
         return AffineForm.of(
             {
                 name: float(round(x, 12))
@@ -89,8 +91,14 @@ def _names(cluster: Cluster) -> tuple[str, ...]:
     return tuple(sorted({name for form in forms for name in form.names}))
 
 
-def solve_state(cluster: Cluster, on: frozenset[str]) -> Solution:
-    """Potentials and currents of the group with the named positions on, the others off."""
+def solve_state(
+    cluster: Cluster, on: frozenset[str], vanishes: Callable[[AffineForm], bool]
+) -> Solution:
+    """Potentials and currents of the group with the named positions on, the others off.
+
+    Where a contradiction does not vanish the state is illegal, and only its contradictions are
+    given: most combinations are, so nothing more is worked out for them.
+    """
     system = _System(cluster, on)
     for link in cluster.links:
         if link.name in on:
@@ -100,14 +108,18 @@ def solve_state(cluster: Cluster, on: frozenset[str]) -> Solution:
     _add_currents(system, on)
     left, right = np.array(system.left), np.array(system.right)
     unknowns, free, residual = _solve(left, right)
-    unknowns = _share_evenly(system, on, unknowns, free)
     forms = [system.form(row) for row in residual]
+    voltage = tuple(form for form in forms[:voltage_rows] if not vanishes(form))
+    current = tuple(form for form in forms[voltage_rows:] if not vanishes(form))
+    if current:
+        return Solution({}, {}, {}, voltage, current)
+    unknowns = _share_evenly(system, on, unknowns, free)
     return Solution(
         {k: system.form(row) for k, row in _off_voltages(system, on, unknowns).items()},
         {name: system.form(unknowns[k]) for name, k in system.currents.items() if name in on},
         {island: system.form(unknowns[k]) for island, k in system.islands.items()},
-        tuple(form for form in forms[:voltage_rows] if not form.is_zero),
-        tuple(form for form in forms[voltage_rows:] if not form.is_zero),
+        voltage,
+        current,
     )
 
 

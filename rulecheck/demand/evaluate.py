@@ -5,9 +5,9 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 from rulecheck.demand.demands import PositionDemand, Witness
-from rulecheck.demand.readings import Freedom, Reading, feasible, is_limited
+from rulecheck.demand.readings import Freedom, Reading, feasible, inequalities, is_limited
 from rulecheck.demand.states import RawState
-from rulecheck.demand.stiff import Box
+from rulecheck.demand.stiff import Box, bounded_by
 from rulecheck.stage import Position
 from rulecheck.values import AffineForm, Interval, QuadrantSet, Unknown, point
 
@@ -32,10 +32,12 @@ def demand_of(
     """Over all possible states: the range of voltage while off and of current while on."""
     off = off_samples(position, reading, index, box)
     on: list[Sample] = []
+    limits = _carried(position, reading.freedom[index])
     for state, narrowed in feasible(reading, index, box):
         if position.name in state.on:
+            forms = inequalities(reading.clusters[index], state, reading.freedom[index])
             form = state.solution.on_currents[position.name]
-            span = _clip(narrowed.range_of(form), _carried(position, reading.freedom[index]))
+            span = _clip(bounded_by(narrowed, form, forms), limits)
             on.append(Sample(state, form, span, narrowed))
     return from_samples(position, off, on, settle)
 
@@ -47,7 +49,9 @@ def off_samples(position: Position, reading: Reading, index: int, box: Box) -> l
     for state, narrowed in feasible(reading, index, box):
         if position.name not in state.on:
             form = state.solution.off_voltages[position.name]
-            samples.append(Sample(state, form, _clip(narrowed.range_of(form), limits), narrowed))
+            forms = inequalities(reading.clusters[index], state, reading.freedom[index])
+            span = _clip(bounded_by(narrowed, form, forms), limits)
+            samples.append(Sample(state, form, span, narrowed))
     return samples
 
 

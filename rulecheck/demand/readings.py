@@ -5,18 +5,21 @@ while its position is off. If without those states the stage cannot work, the de
 excuse itself from its own job: then all legal states count.
 """
 
+import math
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 from enum import IntEnum
+from itertools import product
 
-from rulecheck.demand.routes import Carrier, Route
+from rulecheck.demand.routes import Carrier, Route, Step
 from rulecheck.demand.sign_cases import Case
 from rulecheck.demand.states import RawState
 from rulecheck.demand.stiff import Box, tightened
 from rulecheck.demand.topology import Cluster, Link
 from rulecheck.stage import Position
-from rulecheck.values import AffineForm, Interval
+from rulecheck.values import AffineForm, Interval, total_of
 
+_MOST_MIXTURES = 64
 _VOLT_SECOND = 1e-6
 _NO_CURRENT = 1e-5
 """Ampere."""
@@ -104,23 +107,53 @@ def feasible(reading: Reading, index: int, box: Box) -> list[tuple[RawState, Box
 
 
 def reach(reading: Reading, route: Route, box: Box) -> Interval | None:
-    """The voltages that a carrier can see over the states; None where some group has no state."""
-    total = box.range_of(route.fixed)
-    for step in route.steps:
-        span = _step_reach(reading, step.cluster, step.enter, step.leave, box)
-        if span is None:
-            return None
-        total += span.scaled(step.weight)
-    return total
+    """The voltages that a carrier can see over the states; None where some group has no state.
 
-
-def _step_reach(reading: Reading, index: int, enter: str, leave: str, box: Box) -> Interval | None:
+    Over all mixtures of the groups' states, each summed as one form so that a voltage common to
+    two groups cancels; past a bound on the mixtures the groups' ranges are added instead.
+    """
+    choices = [feasible(reading, step.cluster, box) for step in route.steps]
+    if not all(choices):
+        return None
+    if math.prod(len(options) for options in choices) > _MOST_MIXTURES:
+        return _added(route, choices, box)
     span: Interval | None = None
-    for state, narrowed in feasible(reading, index, box):
-        potentials = state.solution.potentials
-        here = narrowed.range_of(potentials[enter] - potentials[leave])
+    for mixture in product(*choices):
+        forms = [
+            _across(step, state) for step, (state, _) in zip(route.steps, mixture, strict=True)
+        ]
+        common = _common_box(box, [narrowed for _, narrowed in mixture])
+        if common is None:
+            continue
+        here = common.range_of(total_of([route.fixed, *forms]))
         span = here if span is None else span.hull(here)
     return span
+
+
+def _across(step: Step, state: RawState) -> AffineForm:
+    potentials = state.solution.potentials
+    return (potentials[step.enter] - potentials[step.leave]).scaled(step.weight)
+
+
+def _common_box(box: Box, narrowed: Sequence[Box]) -> Box | None:
+    """What all of the states leave of the box."""
+    changed: dict[str, Interval] = {}
+    for other in narrowed:
+        for name, span in other.ranges.items():
+            if span != box.ranges[name]:
+                both = changed.get(name, box.ranges[name]).meet(span)
+                if both is None:
+                    return None
+                changed[name] = both
+    return box.with_ranges(changed) if changed else box
+
+
+def _added(route: Route, choices: Sequence[Sequence[tuple[RawState, Box]]], box: Box) -> Interval:
+    total = box.range_of(route.fixed)
+    for step, options in zip(route.steps, choices, strict=True):
+        spans = [narrowed.range_of(_across(step, state)) for state, narrowed in options]
+        total += Interval(min(s.low for s in spans), max(s.high for s in spans))
+    return total
 
 
 def disabled(reading: Reading, index: int, box: Box) -> tuple[str, ...]:

@@ -6,8 +6,9 @@
 Search is depth-first; a branch is left as soon as the on positions short a voltage.
 """
 
-from collections.abc import Callable, Iterator, Sequence
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
+from itertools import combinations
 
 from rulecheck.demand.equations import Solution, solve_state
 from rulecheck.demand.offsets import Offsets
@@ -48,12 +49,11 @@ def find_states(
 
     `never_on` names diodes that only carry charging pulses, which no state shows.
     """
-    found = []
     candidates = [link for link in cluster.positions if link.name not in never_on]
-    for on in _without_shorts(candidates, laws):
-        solution = solve_state(cluster, frozenset(on))
-        legal = all(laws.vanishes(form) for form in solution.contradictions)
-        if legal and not _idle(on, solution, laws):
+    found = []
+    for on in _worth_solving(candidates, cluster, laws):
+        solution = solve_state(cluster, frozenset(on), laws.vanishes)
+        if not solution.contradictions and not _idle(on, solution, laws):
             found.append(RawState(on, solution))
     return tuple(found)
 
@@ -61,17 +61,16 @@ def find_states(
 def find_connecting_states(cluster: Cluster, laws: Laws) -> tuple[RawState, ...]:
     """States that connect voltages, legal only while these are equal.
 
-    For groups without a stiff current, such as diodes between an AC source and a capacitor.
+    For groups without a stiff current, such as diodes between an AC source and a capacitor; at
+    most two positions conduct at a time.
     """
     found = []
-    positions = cluster.positions
-    for on in _combinations(positions, lambda chosen: True):
-        solution = solve_state(cluster, frozenset(on))
-        if any(not laws.vanishes(form) for form in solution.current_contradictions):
-            continue
-        equal = tuple(f for f in solution.voltage_contradictions if not laws.vanishes(f))
-        if len(on) <= 2:
-            found.append(RawState(on, solution, equal))
+    names = [link.name for link in cluster.positions]
+    for count in range(3):
+        for on in combinations(names, count):
+            solution = solve_state(cluster, frozenset(on), laws.vanishes)
+            if not solution.current_contradictions:
+                found.append(RawState(on, solution, solution.voltage_contradictions))
     return tuple(found)
 
 
@@ -79,31 +78,48 @@ def _idle(on: Sequence[str], solution: Solution, laws: Laws) -> bool:
     return any(laws.vanishes(solution.on_currents[name]) for name in on)
 
 
-def _without_shorts(candidates: Sequence[Link], laws: Laws) -> Iterator[tuple[str, ...]]:
-    def closes_no_short(chosen: Sequence[Link]) -> bool:
-        ties = Offsets()
-        for link in chosen:
-            around = ties.difference(link.start, link.end)
-            if around is None:
-                ties.tie(link.start, link.end, -link.step)
-            elif not laws.vanishes(around + link.step):
-                return False
-        return True
-
-    return _combinations(candidates, closes_no_short)
-
-
-def _combinations(
-    positions: Sequence[Link], allowed: Callable[[Sequence[Link]], bool]
+def _worth_solving(
+    candidates: Sequence[Link], cluster: Cluster, laws: Laws
 ) -> Iterator[tuple[str, ...]]:
-    """Depth-first over on and off; what `allowed` refuses is not followed further."""
+    """Depth-first over on and off, left where a voltage is shorted or a current cut off."""
+    cuts = _current_nodes(candidates, cluster, laws)
     open_ends: list[tuple[int, tuple[Link, ...]]] = [(0, ())]
     while open_ends:
         index, chosen = open_ends.pop()
-        if index == len(positions):
+        if index == len(candidates):
             yield tuple(link.name for link in chosen)
             continue
-        open_ends.append((index + 1, chosen))
-        more = (*chosen, positions[index])
-        if allowed(more):
+        on = {link.name for link in chosen}
+        if not any(last == index and not around & on for last, around in cuts):
+            open_ends.append((index + 1, chosen))
+        more = (*chosen, candidates[index])
+        if _closes_no_short(more, laws):
             open_ends.append((index + 1, more))
+
+
+def _current_nodes(
+    candidates: Sequence[Link], cluster: Cluster, laws: Laws
+) -> list[tuple[int, frozenset[str]]]:
+    """For islands that a stiff current enters and only positions leave: the last of these in the
+    order of the search, and all of them; one must be on."""
+    order = {link.name: k for k, link in enumerate(candidates)}
+    found = []
+    for island, form in cluster.into.items():
+        around = [link for link in cluster.links if island in (link.start, link.end)]
+        if laws.vanishes(form) or not all(link.position is not None for link in around):
+            continue
+        names = frozenset(link.name for link in around if link.name in order)
+        if names:
+            found.append((max(order[name] for name in names), names))
+    return found
+
+
+def _closes_no_short(chosen: Sequence[Link], laws: Laws) -> bool:
+    ties = Offsets()
+    for link in chosen:
+        around = ties.difference(link.start, link.end)
+        if around is None:
+            ties.tie(link.start, link.end, -link.step)
+        elif not laws.vanishes(around + link.step):
+            return False
+    return True

@@ -140,6 +140,27 @@ def tightened(box: Box, at_least_zero: Iterable[AffineForm]) -> Box | None:
     return box
 
 
+def bounded_by(box: Box, form: AffineForm, at_least_zero: Iterable[AffineForm]) -> Interval:
+    """The range of a form under inequalities that speak of several variables at once.
+
+    A form is at most itself plus any positive multiple of something that is at least zero; the
+    multiples tried are those that cancel a variable (one step of elimination).
+    """
+    span = box.range_of(form)
+    for inequality in at_least_zero:
+        if len(inequality.terms) < 2:
+            continue
+        for name, coefficient in inequality.terms:
+            own = dict(form.terms).get(name, 0.0)
+            if own == 0.0:
+                continue
+            factor = -own / coefficient
+            there = box.range_of(form + inequality.scaled(factor))
+            limit = Interval(-math.inf, there.high) if factor > 0 else Interval(there.low, math.inf)
+            span = span.meet(limit) or span
+    return span
+
+
 def _tolerance(box: Box, form: AffineForm) -> float:
     sizes = [box.ranges[n].magnitude for n in form.names]
     finite = [s for s in sizes if math.isfinite(s)]
