@@ -15,6 +15,7 @@ from rulecheck.demand.demands import (
     Variable,
     Witness,
 )
+from rulecheck.demand.evaluate import polarities_of
 from rulecheck.demand.text import demands_text
 
 __all__ = [
@@ -32,4 +33,5 @@ __all__ = [
     "Witness",
     "demands_text",
     "find_demands",
+    "polarities_of",
 ]

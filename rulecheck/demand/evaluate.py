@@ -137,9 +137,14 @@ def _open_by(samples: Sequence[Sample], what: str, settle: Mapping[str, str]) ->
     return Unknown(what, " and ".join(settle.get(name, name) for name in names))
 
 
+def polarities_of(off: Interval) -> list[bool]:
+    """The signs of voltage that a position must hold off, True for start over end."""
+    return _signs(off, max(SMALL_VOLTAGE, SMALL * _finite(off)))
+
+
 def quadrants_of(off: Interval, on: Interval) -> QuadrantSet:
     """The product of the signs; small values count as none."""
-    volts = _signs(off, max(SMALL_VOLTAGE, SMALL * _finite(off)))
+    volts = polarities_of(off)
     amperes = _signs(on, SMALL * _finite(on))
     return QuadrantSet.product(volts, amperes)
 

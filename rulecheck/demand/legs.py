@@ -136,15 +136,17 @@ def _leg(worked: Worked, index: int, cluster: Cluster, midpoint: str) -> Leg | N
     others = tuple(n for n in others if n in reachable)
     levels = _levels(worked, index, midpoint, rails)
     kind = _kind(worked, [positions[n] for n in (*high, *low)], rails, others)
-    if kind in ("chopper cell", "rectifier leg") and not _takes_turns(worked, index, high, low):
+    if len(rails) == 2 and not others and not _takes_turns(worked, index, kind, (*high, *low)):
         return None
     return Leg(midpoint, kind, midpoint, rails_named(rails, kind), high, low, others, levels)
 
 
-def _takes_turns(worked: Worked, index: int, high: Sequence[str], low: Sequence[str]) -> bool:
-    """Exactly one of the two is on in every legal state."""
-    two = {*high, *low}
-    return all(len(two & set(s.on)) == 1 for s in worked.reading.states[index]) or len(two) > 2
+def _takes_turns(worked: Worked, index: int, kind: str, names: Sequence[str]) -> bool:
+    """Two positions of which one is a diode are a cell only where exactly one is always on."""
+    if len(names) != 2 or kind not in ("chopper cell", "rectifier leg"):
+        return True
+    two = set(names)
+    return all(len(two & set(s.on)) == 1 for s in worked.reading.states[index])
 
 
 def rails_named(rails: Sequence[str], kind: str) -> tuple[str, ...]:

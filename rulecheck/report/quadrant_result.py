@@ -3,7 +3,15 @@
 from dataclasses import dataclass
 
 from rulecheck.capability import Capabilities, Capability
-from rulecheck.demand import Bridge, Demands, Group, Leg, PositionDemand, Undetermined
+from rulecheck.demand import (
+    Bridge,
+    Demands,
+    Group,
+    Leg,
+    PositionDemand,
+    Undetermined,
+    polarities_of,
+)
 from rulecheck.stage import Position, Stage
 from rulecheck.values import QuadrantSet, Unknown, natural_key
 
@@ -31,8 +39,20 @@ class PositionResult:
 
     @property
     def covered(self) -> bool | None:
-        """By quadrants alone; ratings are compared beside it. None where demand is not known."""
-        return None if isinstance(self.needs, Unknown) else not self.missing.members
+        """By quadrants, and by polarity where no current is asked; ratings are compared beside it.
+
+        None where demand is not known.
+        """
+        if isinstance(self.needs, Unknown):
+            return None
+        return not self.missing.members and self._holds_off()
+
+    def _holds_off(self) -> bool:
+        off = self.demand.off_voltage
+        if isinstance(off, Unknown):
+            return True
+        ways = {True: self.capability.forward, False: self.capability.reverse}
+        return all(ways[positive].holds_off for positive in polarities_of(off))
 
 
 @dataclass(frozen=True, slots=True)
