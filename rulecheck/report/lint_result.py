@@ -1,5 +1,6 @@
 """What the lint reports show: findings, the data that others wait for, and the tally."""
 
+import re
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field
 
@@ -11,6 +12,7 @@ from rulecheck.values import Gravity, Problem, natural_key
 
 LEVELS = ("error", "warning", "note")
 """From the gravest to the lightest, as SARIF names them."""
+_OF_A_CARD = re.compile(r"(.* of the card )(\S+ \(.*\))", re.DOTALL)
 
 
 @dataclass(frozen=True, slots=True)
@@ -132,12 +134,24 @@ def undecided_lines(report: LintReport) -> tuple[str, ...]:
         for finding in report.undecided
         if not finding.missing
     )
-    return (*(waiting_line(item) for item in report.waiting), *unexplained)
+    return (*waiting_lines(report.waiting), *unexplained)
 
 
-def waiting_line(item: Waiting) -> str:
-    checks = "1 check waits" if item.checks == 1 else f"{item.checks} checks wait"
-    return f"{checks} for {item.datum.settle}"
+def waiting_lines(waiting: Iterable[Waiting]) -> tuple[str, ...]:
+    """What checks wait for; the same datum of several cards is one line."""
+    checks: dict[str, int] = {}
+    cards: dict[str, list[str]] = {}
+    for item in waiting:
+        match = _OF_A_CARD.fullmatch(item.datum.settle)
+        datum, card = (match[1], match[2]) if match else (item.datum.settle, "")
+        checks[datum] = checks.get(datum, 0) + item.checks
+        cards.setdefault(datum, []).append(card)
+    return tuple(_waiting_line(checks[datum], datum, cards[datum]) for datum in checks)
+
+
+def _waiting_line(checks: int, datum: str, cards: list[str]) -> str:
+    lead = "1 check waits for" if checks == 1 else f"{checks} checks wait for"
+    return f"{lead} {datum}{', '.join(cards)}"
 
 
 def off_line(off: SwitchedOff) -> str:

@@ -51,7 +51,11 @@ def _print_report(console: Console, run: LintRun, report: LintReport, look: Look
 def _print_finding(console: Console, finding: Verdict, word: str, advice: str, look: Look) -> None:
     head = Text(f"{word:<{_LEVEL_WIDTH}} ", style=f"finding.{word}")
     head.append(visible(f"{finding.subject}  {finding.rule}", look), style="heading")
-    head.append(visible(f"  {finding.span}", look), style="place")
+    place = visible(str(finding.span), look)
+    room = look.width - head.cell_len - len(place)
+    head.append(
+        f"  {place}" if room >= 2 else f"\n{' ' * (_LEVEL_WIDTH + 1)}{place}", style="place"
+    )
     console.print()
     console.print(head, soft_wrap=True)
     margin = " " * (_LEVEL_WIDTH + 1)

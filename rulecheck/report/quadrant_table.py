@@ -3,6 +3,7 @@
 from typing import TextIO
 
 from rich import box
+from rich.cells import cell_len
 from rich.console import Console
 from rich.table import Table
 from rich.text import Text
@@ -19,7 +20,11 @@ from rulecheck.report.terminal_sections import print_cautions, print_sections
 from rulecheck.values import QuadrantSet, Unknown
 
 _WIDE = 110
-_HEADER = ("position", "from", "to", "needs", "has", "must block", "must carry", "result")
+_ALL = 4
+_FIGURES = ("must block", "must carry")
+_UNBROKEN = (*_FIGURES, "result")
+_WIDE_HEADER = ("position", "from", "to", "needs", "has", *_FIGURES, "result")
+_HEADER = ("position", "from, to", "needs", "has", *_FIGURES, "result")
 
 
 def render(result: QuadrantResult, stream: TextIO, look: Look = PLAIN) -> None:
@@ -51,41 +56,55 @@ def _bridges(result: QuadrantResult) -> tuple[str, ...]:
 
 
 def _table(result: QuadrantResult, look: Look) -> Table:
+    """On a wide terminal one line a position; on a narrow one two, so that no figure is broken."""
+    wide = look.width >= _WIDE
+    rows = [_cells(row, look, wide) for row in result.positions]
     table = Table(box=box.ASCII if look.ascii else box.SIMPLE_HEAD, padding=(0, 1, 0, 0))
-    for name in _HEADER:
-        table.add_column(name, overflow="fold")
-    for row in result.positions:
-        table.add_row(*_cells(row, look))
+    for number, name in enumerate(_WIDE_HEADER if wide else _HEADER):
+        least = max(_least_width(cells[number], name in _FIGURES) for cells in rows)
+        table.add_column(name, overflow="fold", min_width=least if name in _UNBROKEN else None)
+    for cells in rows:
+        table.add_row(*cells)
     return table
 
 
-def _cells(row: PositionResult, look: Look) -> tuple[Text, ...]:
-    between = " " if look.width >= _WIDE else "\n"
+def _cells(row: PositionResult, look: Look, wide: bool) -> list[Text]:
+    between = " " if wide else "\n"
+    ends = [Text(visible(net, look)) for net in (row.position.start, row.position.end)]
     blocks = f"of {rated_voltage(row, look)}"
     carries = f"of {rated_current(row, look)}"
-    return (
+    return [
         Text(visible(row.position.name, look)),
-        Text(visible(row.position.start, look)),
-        Text(visible(row.position.end, look)),
+        *(ends if wide else [Text("\n").join(ends)]),
         _needed(row, look),
         Text(_drawn(row.capability.quadrants, look)),
         Text(f"{range_figure(row.demand.off_voltage, 'V', look)}{between}{blocks}"),
         Text(f"{range_figure(row.demand.on_current, 'A', look)}{between}{carries}"),
         Text("\n".join(standing(row))),
-    )
+    ]
+
+
+def _least_width(cell: Text, whole_lines: bool) -> int:
+    """The widest line of a figure, or the widest word of a text."""
+    pieces = cell.plain.splitlines() if whole_lines else cell.plain.split()
+    return max(map(cell_len, pieces), default=0)
 
 
 def _needed(row: PositionResult, look: Look) -> Text:
     """The needed quadrants, those that the devices lack in colour; the result column says which."""
     if isinstance(row.needs, Unknown):
         return Text("unknown")
+    if not row.missing.members:
+        return Text(_drawn(row.needs, look))
     text = Text("" if look.ascii else f"{row.needs.block} ")
     for number, quadrant in enumerate(row.needs.members):
         style = "quadrant.missing" if quadrant in row.missing else ""
         text.append("+" if number else "")
         text.append(quadrant.name, style=style)
-    return text if row.needs.members else text.append("-")
+    return text
 
 
 def _drawn(quadrants: QuadrantSet, look: Look) -> str:
-    return quadrants.label if look.ascii else f"{quadrants.block} {quadrants.label}"
+    names = quadrants.numerals
+    label = {0: "none", _ALL: "I-IV"}.get(len(names), quadrants.label)
+    return label if look.ascii else f"{quadrants.block} {label}"

@@ -40,7 +40,7 @@ def console_for(stream: TextIO, look: Look) -> Console:
 
 def hanging(console: Console, lead: str, text: str, look: Look) -> None:
     """Print `lead` and then `text`, later lines indented under the first word of the text."""
-    words = Text(visible(text, look))
+    words = Text(visible(text.strip(), look))
     room = max(look.width - len(lead), 20)
     for number, line in enumerate(words.wrap(console, room)):
         line.rstrip()

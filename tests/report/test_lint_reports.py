@@ -21,7 +21,9 @@ from rulecheck.report import (
     lint_sarif,
     lint_table,
 )
-from rulecheck.values import Span
+from rulecheck.report.lint_result import waiting_lines
+from rulecheck.rulebook import Waiting
+from rulecheck.values import Span, Unknown
 from tests.report.examples import rendered
 from tests.report.lint_examples import BROKEN, EXCUSED, RATING, UNDECIDED, lint_run
 
@@ -225,3 +227,19 @@ def test_broken_findings_come_before_excused_and_undecided_ones():
 def test_an_undecided_check_that_cannot_say_why_is_still_shown(renderer):
     text = rendered(renderer.render, lint_run(dataclasses.replace(UNDECIDED, missing=())))
     assert "blocking-rating on Q2: Q2 must block 58 V" in text
+
+
+def test_the_same_datum_of_several_cards_is_one_line():
+    waiting = [
+        Waiting(
+            Unknown("voltage rating of C1", "ratings.voltage of the card C1 (hut.cir:7)"), 1, 1
+        ),
+        Waiting(
+            Unknown("voltage rating of C2", "ratings.voltage of the card C2 (hut.cir:8)"), 2, 2
+        ),
+        Waiting(RATING, 1, 1),
+    ]
+    assert waiting_lines(waiting) == (
+        "3 checks wait for ratings.voltage of the card C1 (hut.cir:7), C2 (hut.cir:8)",
+        f"1 check waits for {RATING.settle}",
+    )
