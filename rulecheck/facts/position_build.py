@@ -44,17 +44,17 @@ def _side_by_side(inputs: Inputs, devices: Sequence[Part]) -> list[list[Part]]:
 
 
 def peak_current(devices: Sequence[Part]) -> Value:
-    """The sum of the peak ratings of gated devices, which assumes that they share.
+    """The sum of the peak ratings of its gated devices, else of its diodes, if they share.
 
     Devices in series make the sum too large, so a position with them has no peak rating here
     unless all state one; then the smallest counts once.
     """
-    gated = [device for device in devices if device.gated]
-    ends = {frozenset((edge.tail, edge.head)) for device in gated for edge in device.edges}
+    gated = [device for device in devices if device.gated] or list(devices)
+    ends = {frozenset((edge.tail, edge.head)) for part in gated for edge in part.edges}
     stated = [device.datum("ratings.peak-current") for device in gated]
     known = [item.value for item in stated if not isinstance(item, Unknown)]
     numbers = [value.magnitude if isinstance(value, Interval) else value for value in known]
-    total = sum(numbers) if len(ends) <= 1 else min(numbers, default=0.0)
+    total = float(sum(numbers)) if len(ends) <= 1 else min(numbers, default=0.0)
     missing = tuple(item for item in stated if isinstance(item, Unknown))
     if not missing:
         return total
