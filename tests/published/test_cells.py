@@ -6,12 +6,15 @@ memory; the figures were confirmed by integration to the periodic steady state).
 duty ratio 0.4, 100 kHz, 100 uH each, 5 ohm of load. Ripple of one coil: v_on D / (L f).
 """
 
+import math
+
 import pytest
 
 from tests.kit.published import Study, dc, sheet
 
 V_IN, DUTY, LOAD = 48.0, 0.4, 5.0
 LF = 100e-6 * 100e3
+K_VALUES = (0.02, 0.1)
 UP_DOWN = DUTY / (1 - DUTY)
 V_OUT = UP_DOWN * V_IN
 I_OUT = V_OUT / LOAD
@@ -111,3 +114,39 @@ def test_synchronous_leg_needs_both_current_directions_only_when_used_both_ways(
     upper = {"I": "IV", "IV": "I"}.get(lower, lower)
     study.expect("M1", off=(96, 96), on=(-high, -low), quadrants=upper)
     study.expect("M2", off=(96, 96), on=(low, high), quadrants=lower)
+
+
+@pytest.mark.parametrize("k", K_VALUES)
+def test_buck_in_discontinuous_conduction(k: float) -> None:
+    """V_o / V_in = 2 / (1 + sqrt(1 + 4 K / D^2)) with K = 2 L f / R, peak (V_in - V_o) D / (L f).
+
+    Source: Erickson and Maksimovic, Fundamentals of Power Electronics, chapter on the
+    discontinuous conduction mode (from memory). While the coil is idle the transistor blocks the
+    difference and the diode the output.
+    """
+    duty = 0.4
+    v_out = V_IN * 2 / (1 + math.sqrt(1 + 4 * k / duty**2))
+    peak, current = (V_IN - v_out) * duty / LF, v_out * k / (2 * LF)
+    bound = current + v_out * (1 - v_out / V_IN) / LF / 2
+    output = dc("out", "OUT", voltage=v_out, draws=current)
+    cards = "M1 IN g SW SW FET\nD1 0 SW DX\nL1 SW OUT 100u\nC9 OUT 0 100u"
+    study = Study(cards, sheet(dc("in", "IN", voltage=V_IN), output))
+    study.expect("M1", off=(V_IN - v_out, V_IN), on=(0, None), quadrants="I")
+    study.expect("D1", off=(-V_IN, -v_out), on=(0, None), quadrants="II")
+    for name in ("M1", "D1"):
+        assert peak <= study.position(name)["demand"]["on_current"][1] <= bound * 1.001
+
+
+@pytest.mark.parametrize("k", K_VALUES)
+def test_boost_in_discontinuous_conduction(k: float) -> None:
+    """V_o / V_in = (1 + sqrt(1 + 4 D^2 / K)) / 2, peak V_in D / (L f); the same source."""
+    duty = 0.4
+    v_out = V_IN * (1 + math.sqrt(1 + 4 * duty**2 / k)) / 2
+    peak, current = V_IN * duty / LF, v_out * k / (2 * LF)
+    output = dc("out", "OUT", voltage=v_out, draws=current)
+    cards = "L1 IN SW 100u\nM1 SW g 0 0 FET\nD1 SW OUT DX\nC9 OUT 0 100u"
+    study = Study(cards, sheet(dc("in", "IN", voltage=V_IN), output))
+    study.expect("M1", off=(V_IN, v_out), on=(0, None), quadrants="I")
+    study.expect("D1", off=(-v_out, V_IN - v_out), on=(0, None), quadrants="II")
+    for name in ("M1", "D1"):
+        assert study.position(name)["demand"]["on_current"][1] >= peak
