@@ -18,7 +18,7 @@ from rulecheck.facts import (
 )
 from rulecheck.facts.facts import Facts, Subject
 from rulecheck.facts.inputs import Inputs, gather
-from rulecheck.facts.turned import turned_values
+from rulecheck.facts.turned import find_suspects, stage_values
 from rulecheck.facts.vocabulary import VOCABULARY
 from rulecheck.stage import Stage
 from rulecheck.values import natural_key
@@ -53,13 +53,13 @@ def collect_facts(stage: Stage, capabilities: Capabilities, demands: Demands) ->
     by_kind: dict[str, list[Subject]] = {kind: [] for kind in VOCABULARY}
     for subject in collected:
         by_kind[subject.kind].append(subject)
-    turned = turned_values(inputs, by_kind["position"])
+    suspects = find_suspects(inputs, by_kind["position"])
     by_kind["position"] = [
-        replace(p, values={**p.values, "all-turned": turned["all-turned"]})
+        replace(p, values={**p.values, "all-turned": p.name in suspects.positions})
         for p in by_kind["position"]
     ]
     (whole,) = net_facts.collect_stage(inputs)
-    values = {**whole.values, **turned}
+    values = {**whole.values, **stage_values(inputs, suspects)}
     by_kind["stage"] = [replace(whole, values=values, links=_links_of_stage(by_kind))]
     subjects = {kind: _distinct(found) for kind, found in by_kind.items()}
     by_name = {(s.kind, s.name): s for found in subjects.values() for s in found}

@@ -37,10 +37,9 @@ STAGE = SubjectTerm(
         number("frequency", Dimension.FREQUENCY, "The switching frequency stated for all legs."),
         number("dead-time", Dimension.TIME, "The dead time stated for all legs."),
         number("efficiency", Dimension.NUMBER, "The efficiency of the power balance."),
-        count("turned-positions", "Gated positions that would fit if drawn the other way up."),
-        count("one-way-positions", "Gated positions that hold off one polarity alone."),
-        yes_no("all-turned", "All of the latter are among the former, and there are two or more."),
-        texts("turned-models", "Models of the gated devices of turned positions."),
+        yes_no("pin-order-suspect", "All its transistors, or all its diodes, seem to be turned."),
+        count("suspect-devices", "How many devices that concerns."),
+        texts("suspect-models", "Models of those devices."),
     ),
     (
         link("parts", "part", "All parts."),

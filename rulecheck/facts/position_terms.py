@@ -57,7 +57,7 @@ POSITION = SubjectTerm(
         ),
         yes_no("across-voltage", "A stiff voltage stands straight across it."),
         yes_no("turned", "As drawn it does not fit its demand; drawn the other way up it would."),
-        yes_no("all-turned", "So it is with every gated position of the stage, of two or more."),
+        yes_no("all-turned", "So it is with every such position of the stage, of two or more."),
         yes_no("tied", "It joins two independent voltages and is on only where they are equal."),
     ),
     (

@@ -1,54 +1,71 @@
-"""Whether all gated devices of a stage look as if their pins came in another order.
+"""Whether all transistors, or all diodes, of a stage look as if their pins came in another order.
 
-Q1 and Q2 of a leg both fit only if drawn the other way up: no slip of the pen, but a pin order
-of the export that is not the one assumed here.
+Q1 and Q2 of a leg both fit only if drawn the other way up, or both have their gates on the rails
+and a main pin on what drives gates: no slip of the pen, but a pin order of the export that is not
+the one assumed here.
 """
 
-from collections.abc import Sequence
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
 
-from rulecheck.facts.facts import Bounds, Subject, Value
+from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.inputs import Inputs
-from rulecheck.values import Interval, Unknown
+from rulecheck.parts import Part
 
 FEWEST = 2
-"""A single position drawn upside down is a mistake of its own."""
+"""A single device drawn upside down is a mistake of its own."""
 
 
-def turned_values(inputs: Inputs, positions: Sequence[Subject]) -> dict[str, Value]:
-    """The stage's fields on positions that would fit the other way up."""
-    one_way = [subject for subject in positions if _holds_one_polarity(subject)]
-    answers = [subject.values["turned"] for subject in one_way]
-    turned = [s for s in one_way if s.values["turned"] is True]
-    models = {
-        inputs.part_by_name[name].text
-        for subject in turned
-        for name in subject.parts
-        if inputs.part_by_name[name].gated
-    }
-    return {
-        "turned-positions": _how_many(answers),
-        "one-way-positions": float(len(one_way)),
-        "all-turned": _all_turned(answers),
-        "turned-models": tuple(sorted(models)),
-    }
+@dataclass(frozen=True, slots=True)
+class Suspects:
+    """Positions whose devices are all of them turned, and the texts of all suspected devices."""
+
+    positions: frozenset[str]
+    devices: tuple[str, ...]
+
+
+def find_suspects(inputs: Inputs, positions: Sequence[Subject]) -> Suspects:
+    """Certain only where every single one of a class is; else each is judged by itself."""
+    turned: list[Subject] = []
+    for gated in (True, False):
+        same = [p for p in positions if p.values["gated"] is gated and _holds_one_polarity(p)]
+        if len(same) >= FEWEST and all(p.values["turned"] is True for p in same):
+            turned += same
+    devices = [name for position in turned for name in position.parts]
+    devices += [part.name for part in _misplaced(inputs)]
+    return Suspects(frozenset(p.name for p in turned), tuple(dict.fromkeys(devices)))
 
 
 def _holds_one_polarity(position: Subject) -> bool:
     values = position.values
-    one = values["holds-off-forward"] != values["holds-off-reverse"]
-    return one and values["gated"] is True
+    return values["holds-off-forward"] != values["holds-off-reverse"]
 
 
-def _how_many(answers: Sequence[Value]) -> Value:
-    """The number of yes among the answers, within bounds where some are not known."""
-    least = float(sum(answer is True for answer in answers))
-    unknown = tuple(dict.fromkeys(a for a in answers if isinstance(a, Unknown)))
-    if not unknown:
-        return least
-    most = least + sum(isinstance(answer, Unknown) for answer in answers)
-    return Bounds(Interval(least, most), unknown)
+def _misplaced(inputs: Inputs) -> Sequence[Part]:
+    """All gated devices, where each has its gate on a power net and a main pin on none."""
+    gated = [part for part in inputs.stage.parts.parts if part.gated]
+    power = {net for branch in inputs.stage.branches for net in (branch.start, branch.end)}
+    power |= set(inputs.ports_at_net)
+    if len(gated) < FEWEST or not all(_is_misplaced(inputs, part, power) for part in gated):
+        return ()
+    return gated
 
 
-def _all_turned(answers: Sequence[Value]) -> bool:
-    """Certain only where every single one is; else each position is judged by itself."""
-    return len(answers) >= FEWEST and all(answer is True for answer in answers)
+def _is_misplaced(inputs: Inputs, part: Part, power: set[str]) -> bool:
+    gates = {inputs.merged(pin.net) for pin in part.pins if pin.role in ("gate", "base")}
+    main = {inputs.merged(net) for edge in part.edges for net in (edge.tail, edge.head)}
+    return bool(gates & power) and not main <= power
+
+
+def stage_values(inputs: Inputs, suspects: Suspects) -> dict[str, Value]:
+    """The stage's fields on the pin order."""
+    return {
+        "pin-order-suspect": bool(suspects.devices),
+        "suspect-devices": float(len(suspects.devices)),
+        "suspect-models": tuple(sorted(_models(inputs, suspects.devices))),
+    }
+
+
+def _models(inputs: Inputs, names: Iterable[str]) -> set[str]:
+    texts = (inputs.part_by_name[name].text for name in names)
+    return {inputs.spelling[text.casefold()] for text in texts}

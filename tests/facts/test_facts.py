@@ -234,11 +234,11 @@ def test_a_stage_whose_devices_are_all_turned():
         "M2 SW G2 0 0", "M2 0 G2 SW SW"
     )
     facts = facts_of(turned)
-    assert value(facts, "stage", "stage", "all-turned") is True
-    assert value(facts, "stage", "stage", "turned-models") == ("FET",)
+    assert value(facts, "stage", "stage", "pin-order-suspect") is True
+    assert value(facts, "stage", "stage", "suspect-models") == ("FET",)
     assert value(facts, "position", "M1", "all-turned") is True
     one = facts_of(LEG.replace("M2 SW G2 0 0", "M2 0 G2 SW SW"))
-    assert value(one, "stage", "stage", "all-turned") is False
+    assert value(one, "stage", "stage", "pin-order-suspect") is False
 
 
 def test_a_range_keeps_its_form():
