@@ -7,7 +7,7 @@ from typing import Any
 
 from rulecheck.facts import Bounds, FieldTerm, Form, Value
 from rulecheck.rulebook.estimate import Estimate, Spread, anything, exactly, hull
-from rulecheck.rulebook.kleene import Answer, answer, undecided
+from rulecheck.rulebook.kleene import Answer, answer
 from rulecheck.rulebook.scope import Bound, Parameter, Scene, Scope, unit_of
 from rulecheck.rulebook.tree import LookedUp, Path, SourceOf
 from rulecheck.values import Interval, Unknown
@@ -77,7 +77,7 @@ def _as_spread(value: Value) -> Spread:
 
 
 def _as_answer(value: Value) -> Answer:
-    return undecided((value,)) if isinstance(value, Unknown) else answer(value is True)
+    return Answer(None, (value,)) if isinstance(value, Unknown) else answer(value is True)
 
 
 def _as_words(value: Value) -> Value:
