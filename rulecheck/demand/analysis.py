@@ -1,10 +1,11 @@
 """The whole procedure on one stage, step by step: voltages, topology, states, currents, ranges."""
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterable, Iterator, Mapping, Sequence
 from dataclasses import dataclass, replace
 from itertools import product
 
 from rulecheck.demand.alternating import alternating_parts
+from rulecheck.demand.balance import unbalanced
 from rulecheck.demand.currents import (
     CurrentRange,
     Means,
@@ -17,8 +18,8 @@ from rulecheck.demand.least_loss import without_lossy
 from rulecheck.demand.means import collect_unknowns
 from rulecheck.demand.power import PortCurrents
 from rulecheck.demand.readings import (
+    Amendment,
     Failure,
-    Freedom,
     Reading,
     disabled,
     failures,
@@ -195,7 +196,7 @@ def _names_by_cluster(
                 *solution.off_voltages.values(),
                 *solution.on_currents.values(),
                 *solution.potentials.values(),
-                *inequalities(cluster, state),
+                *inequalities(cluster, state, {}),
             ):
                 names |= set(form.names)
         found.append(frozenset(names))
@@ -217,18 +218,65 @@ def _names_of(
 def _choose_reading(
     topology: Topology, states: Sequence[Sequence[RawState]], routed: _Routed, box: Box
 ) -> tuple[Reading, list[Failure]]:
-    """Free paths limit the control where the stage still works so; elsewhere all legal states."""
-    freedom = dict.fromkeys(range(len(states)), Freedom.DRAWN)
-    reading = Reading(topology.clusters, states, freedom)
+    """The drawn devices limit the control where the stage still works so.
+
+    Where it does not, the fewest positions are amended with which it does: no device excuses
+    itself from its own job, and none is blamed for another's.
+    """
+    reading = Reading(topology.clusters, states)
     names = _names_by_cluster(topology, states)
-    for _ in (Freedom.CONTROLLED, Freedom.IDEAL):
-        failed = _failures(reading, routed, box)
-        relax = {index for failure in failed for index in failure.clusters}
-        relax |= {k for k in range(len(states)) if disabled(reading, k, box.only(names[k]))}
-        if not relax:
-            break
-        reading = reading.relaxed(relax)
+    troubled = _trouble(reading, routed, box, names, range(len(states)))
+    for group in _overlapping(troubled):
+        for amendments in _amendments(reading, group):
+            tried = reading.amending(amendments)
+            if not _trouble(tried, routed, box, names, group):
+                reading = tried
+                break
     return reading, _failures(reading, routed, box)
+
+
+def _trouble(
+    reading: Reading,
+    routed: _Routed,
+    box: Box,
+    names: Sequence[frozenset[str]],
+    clusters: Iterable[int],
+) -> list[frozenset[int]]:
+    """Sets of clusters that do not work together, among those given."""
+    among = set(clusters)
+    near = [(c, r) for c, r in routed.routes if among & {step.cluster for step in r.steps}]
+    found = [
+        frozenset(failure.clusters)
+        for failure in _failures(reading, replace(routed, routes=near), box)
+    ]
+    found += [frozenset((k,)) for k in sorted(among) if disabled(reading, k, box.only(names[k]))]
+    return found
+
+
+def _overlapping(sets: Sequence[frozenset[int]]) -> list[frozenset[int]]:
+    """The sets, those that share a member united."""
+    united: list[frozenset[int]] = []
+    for one in sets:
+        touching = [other for other in united if one & other]
+        united = [other for other in united if not one & other]
+        united.append(one.union(*touching))
+    return united
+
+
+def _amendments(reading: Reading, group: Iterable[int]) -> Iterator[dict[str, Amendment]]:
+    """What may be read otherwise than drawn: one position, all gated ones, all of them."""
+    limiting = [
+        link.position
+        for index in sorted(group)
+        for link in reading.clusters[index].positions
+        if link.position and (link.position.free_forward or link.position.free_reverse)
+    ]
+    gated = {p.name: Amendment.IGNORED for p in limiting if p.gated}
+    diodes = {p.name: Amendment.TURNED for p in limiting if not p.gated}
+    for name, amendment in (*diodes.items(), *gated.items()):
+        yield {name: amendment}
+    yield gated
+    yield {**gated, **dict.fromkeys(diodes, Amendment.IGNORED)}
 
 
 def _failures(reading: Reading, routed: _Routed, box: Box) -> list[Failure]:
@@ -238,7 +286,10 @@ def _failures(reading: Reading, routed: _Routed, box: Box) -> list[Failure]:
             continue
         mine = box.only(routed.local[carrier.name])
         found += failures(reading, [(carrier, route)], mine, routed.cases)
-    return found
+    if found:
+        return found
+    wanted = {name for carrier, _ in routed.routes for name in routed.local[carrier.name]}
+    return unbalanced(reading, routed.routes, box.only(wanted), routed.cases)
 
 
 def _currents(

@@ -48,7 +48,7 @@ def _clamped(worked: Worked, stage: Stage) -> tuple[Stage, tuple[str, ...]]:
 def _unclear(worked: Worked) -> tuple[int, int]:
     """What a reading leaves open, then how much it has to take from the drawn devices."""
     open_points = len(worked.failures) + len(worked.connecting)
-    return open_points, sum(worked.reading.freedom.values())
+    return open_points, len(worked.reading.amended)
 
 
 def _followers(worked: Worked) -> tuple[str, ...]:

@@ -5,7 +5,7 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 from rulecheck.demand.demands import PositionDemand, Witness
-from rulecheck.demand.readings import Freedom, Reading, feasible, inequalities, is_limited
+from rulecheck.demand.readings import Amendment, Reading, feasible, free_ways, inequalities
 from rulecheck.demand.states import RawState
 from rulecheck.demand.stiff import Box, bounded_by
 from rulecheck.stage import Position
@@ -32,10 +32,10 @@ def demand_of(
     """Over all possible states: the range of voltage while off and of current while on."""
     off = off_samples(position, reading, index, box)
     on: list[Sample] = []
-    limits = _carried(position, reading.freedom[index])
+    limits = _carried(position, reading.amended)
     for state, narrowed in feasible(reading, index, box):
         if position.name in state.on:
-            forms = inequalities(reading.clusters[index], state, reading.freedom[index])
+            forms = inequalities(reading.clusters[index], state, reading.amended)
             form = state.solution.on_currents[position.name]
             span = _clip(bounded_by(narrowed, form, forms), limits)
             on.append(Sample(state, form, span, narrowed))
@@ -44,33 +44,28 @@ def demand_of(
 
 def off_samples(position: Position, reading: Reading, index: int, box: Box) -> list[Sample]:
     """The off voltage in every possible state that leaves the position off."""
-    limits = _withstood(position, reading.freedom[index])
+    limits = _withstood(position, reading.amended)
     samples = []
     for state, narrowed in feasible(reading, index, box):
         if position.name not in state.on:
             form = state.solution.off_voltages[position.name]
-            forms = inequalities(reading.clusters[index], state, reading.freedom[index])
+            forms = inequalities(reading.clusters[index], state, reading.amended)
             span = _clip(bounded_by(narrowed, form, forms), limits)
             samples.append(Sample(state, form, span, narrowed))
     return samples
 
 
-def _carried(position: Position, freedom: Freedom) -> Interval:
+def _carried(position: Position, amended: Mapping[str, Amendment]) -> Interval:
     """What an ungated position can carry at all: a diode's current has one sign."""
-    both = (
-        position.gated or freedom is Freedom.IDEAL or position.free_forward == position.free_reverse
-    )
-    low = -math.inf if both or position.free_reverse else 0.0
-    high = math.inf if both or position.free_forward else 0.0
-    return Interval(low, high)
+    forward, reverse = free_ways(position, amended)
+    both = position.gated or forward == reverse
+    return Interval(-math.inf if both or reverse else 0.0, math.inf if both or forward else 0.0)
 
 
-def _withstood(position: Position, freedom: Freedom) -> Interval:
+def _withstood(position: Position, amended: Mapping[str, Amendment]) -> Interval:
     """What can stand across an off position: nothing that its free path would conduct."""
-    limited = is_limited(position, freedom)
-    high = 0.0 if limited and position.free_forward else math.inf
-    low = 0.0 if limited and position.free_reverse else -math.inf
-    return Interval(low, high)
+    forward, reverse = free_ways(position, amended)
+    return Interval(0.0 if reverse else -math.inf, 0.0 if forward else math.inf)
 
 
 def _clip(span: Interval, limits: Interval) -> Interval:

@@ -67,7 +67,7 @@ def _interrupted_in(
 def _all_names(cluster: Cluster, worked: Worked, index: int) -> set[str]:
     names: set[str] = set()
     for state in worked.reading.states[index]:
-        for form in inequalities(cluster, state):
+        for form in inequalities(cluster, state, {}):
             names |= set(form.names)
         for form in state.solution.on_currents.values():
             names |= set(form.names)
@@ -118,7 +118,7 @@ def _is_free(cluster: Cluster, state: RawState) -> bool:
 
 def _freewheeling(cluster: Cluster, state: RawState) -> list[AffineForm]:
     """Currents only in free directions, and no free path forward-biased while off."""
-    forms = inequalities(cluster, state)
+    forms = inequalities(cluster, state, {})
     for link in cluster.positions:
         position = link.position
         if position is None or link.name not in state.on or not position.gated:

@@ -4,7 +4,7 @@ from dataclasses import replace
 
 from rulecheck.demand.analysis import Worked
 from rulecheck.demand.demands import Group, State
-from rulecheck.demand.readings import Freedom, feasible
+from rulecheck.demand.readings import feasible
 from rulecheck.demand.states import RawState
 from rulecheck.values import AffineForm, natural_key
 
@@ -36,15 +36,14 @@ def group_of(worked: Worked, index: int) -> Group:
         return Group(names, (), False, why_not_analysed(worked, index) if names else "")
     box = worked.box.only({n for s in raw for f in forms_of(s) for n in f.names})
     legal = {state.on for state, _ in feasible(worked.reading, index, box)}
-    freedom = {**worked.reading.freedom, index: Freedom.DRAWN}
-    drawn = replace(worked.reading, freedom=freedom)
+    drawn = replace(worked.reading, amended={})
     available = {state.on for state, _ in feasible(drawn, index, box)}
     states = tuple(
         State(s.on, s.solution.off_voltages, s.solution.on_currents, s.on in available)
         for s in raw
         if s.on in legal
     )
-    relaxed = worked.reading.freedom[index] is not Freedom.DRAWN
+    relaxed = bool(worked.reading.amended.keys() & set(names))
     forbidden = tuple(s.on for s in states if not s.available) if relaxed else ()
     forbidding = _forbidding(worked, index, forbidden)
     return Group(names, states, True, "", forbidden, forbidding)

@@ -10,7 +10,7 @@ volts in it, and never carries more diode current.
 
 from collections.abc import Sequence
 
-from rulecheck.demand.readings import Freedom, inequalities
+from rulecheck.demand.readings import Amendment, inequalities
 from rulecheck.demand.states import Laws, RawState
 from rulecheck.demand.stiff import tightened
 from rulecheck.demand.topology import Cluster
@@ -41,9 +41,11 @@ def _undercuts(other: RawState, state: RawState, cluster: Cluster, laws: Laws) -
     saved = _loss(state, cluster) - _loss(other, cluster)
     if laws.vanishes(saved):
         return False
-    names = {n for form in inequalities(cluster, state, Freedom.CONTROLLED) for n in form.names}
+    obeying = dict.fromkeys(cluster.gated, Amendment.IGNORED)
+    limits = inequalities(cluster, state, obeying)
+    names = {n for form in limits for n in form.names}
     box = laws.box.only((names | set(saved.names)) & laws.box.ranges.keys())
-    narrowed = tightened(box, inequalities(cluster, state, Freedom.CONTROLLED))
+    narrowed = tightened(box, limits)
     return narrowed is not None and narrowed.range_of(saved).low >= -1e-9
 
 

@@ -81,7 +81,7 @@ def _without(stage: Stage, capacitor: Branch, diodes: tuple[Position, ...]) -> S
 
 
 def _peak(worked: Worked, capacitor: Branch, diodes: tuple[Position, ...]) -> Interval | None:
-    if worked.failures or worked.connecting or any(worked.reading.freedom.values()):
+    if worked.failures or worked.connecting or worked.reading.amended:
         return None
     spans: list[Interval] = []
     for diode in diodes:

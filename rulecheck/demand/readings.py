@@ -6,9 +6,9 @@ excuse itself from its own job: then all legal states count.
 """
 
 import math
-from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass
-from enum import IntEnum
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass, field, replace
+from enum import StrEnum
 from itertools import product
 
 from rulecheck.demand.routes import Carrier, Route, Step
@@ -35,72 +35,73 @@ class Failure:
     why: str
 
 
-class Freedom(IntEnum):
-    """What the drawn devices are allowed to forbid."""
+class Amendment(StrEnum):
+    """How a position is read that the stage cannot work with as it is drawn."""
 
-    DRAWN = 0
-    """Free paths conduct where they must: of diodes and of gated positions."""
-    CONTROLLED = 1
-    """Only diodes do; a gated position is taken to obey its gate."""
-    IDEAL = 2
-    """No device forbids anything: what the stage would ask of an ideal switch."""
+    IGNORED = "ignored"
+    """Its free paths forbid nothing: it is taken to obey its gate."""
+    TURNED = "turned"
+    """A diode is taken to point the other way."""
 
 
 @dataclass(frozen=True, slots=True)
 class Reading:
-    """For each cluster its states and its freedom."""
+    """For each cluster its states, and the positions that are not taken as drawn."""
 
     clusters: Sequence[Cluster]
     states: Sequence[Sequence[RawState]]
-    freedom: Mapping[int, Freedom]
+    amended: Mapping[str, Amendment] = field(default_factory=dict)
 
-    def relaxed(self, clusters: Iterable[int]) -> "Reading":
-        """The reading with the next freedom in these clusters."""
-        changed = {k: Freedom(min(self.freedom[k] + 1, Freedom.IDEAL)) for k in clusters}
-        return Reading(self.clusters, self.states, {**self.freedom, **changed})
+    def amending(self, more: Mapping[str, Amendment]) -> "Reading":
+        return replace(self, amended={**self.amended, **more})
+
+
+def free_ways(position: Position, amended: Mapping[str, Amendment]) -> tuple[bool, bool]:
+    """In which directions the position conducts freely, as it is read: forward, reverse."""
+    forward, reverse = position.free_forward, position.free_reverse
+    amendment = amended.get(position.name)
+    if amendment is Amendment.TURNED:
+        return reverse, forward
+    return (False, False) if amendment is Amendment.IGNORED else (forward, reverse)
 
 
 def inequalities(
-    cluster: Cluster, state: RawState, freedom: Freedom = Freedom.DRAWN
+    cluster: Cluster, state: RawState, amended: Mapping[str, Amendment]
 ) -> list[AffineForm]:
     """Forms that are zero or positive in the state: diodes, free paths, connected voltages."""
     forms: list[AffineForm] = []
     for link in cluster.positions:
-        forms += _of_position(link, state, freedom)
+        forms += _of_position(link, state, amended)
     for form in state.equal:
         forms += [form, -form]
     return forms
 
 
-def is_limited(position: Position, freedom: Freedom) -> bool:
-    """True where the position's free path has its way in that freedom."""
-    return freedom is Freedom.DRAWN or (freedom is Freedom.CONTROLLED and not position.gated)
-
-
-def _of_position(link: Link, state: RawState, freedom: Freedom) -> list[AffineForm]:
+def _of_position(link: Link, state: RawState, amended: Mapping[str, Amendment]) -> list[AffineForm]:
     position = link.position
-    if position is None or not is_limited(position, freedom):
+    if position is None:
         return []
+    forward, reverse = free_ways(position, amended)
     if link.name in state.on:
-        if position.gated or position.free_forward == position.free_reverse:
+        if position.gated or forward == reverse:
             return []
         current = state.solution.on_currents[link.name]
-        return [current if position.free_forward else -current]
+        return [current if forward else -current]
     voltage = state.solution.off_voltages[link.name]
     forms = []
-    if position.free_forward:
+    if forward:
         forms.append(-voltage)
-    if position.free_reverse:
+    if reverse:
         forms.append(voltage)
     return forms
 
 
 def feasible(reading: Reading, index: int, box: Box) -> list[tuple[RawState, Box]]:
     """The cluster's states that the box leaves possible, each with its narrowed box."""
-    cluster, freedom = reading.clusters[index], reading.freedom[index]
+    cluster, amended = reading.clusters[index], reading.amended
     found = []
     for state in reading.states[index]:
-        narrowed = tightened(box, inequalities(cluster, state, freedom))
+        narrowed = tightened(box, inequalities(cluster, state, amended))
         if narrowed is not None:
             found.append((state, narrowed))
     return found
@@ -119,9 +120,7 @@ def reach(reading: Reading, route: Route, box: Box) -> Interval | None:
         return _added(route, choices, box)
     span: Interval | None = None
     for mixture in product(*choices):
-        forms = [
-            _across(step, state) for step, (state, _) in zip(route.steps, mixture, strict=True)
-        ]
+        forms = [across(step, state) for step, (state, _) in zip(route.steps, mixture, strict=True)]
         common = _common_box(box, [narrowed for _, narrowed in mixture])
         if common is None:
             continue
@@ -130,7 +129,8 @@ def reach(reading: Reading, route: Route, box: Box) -> Interval | None:
     return span
 
 
-def _across(step: Step, state: RawState) -> AffineForm:
+def across(step: Step, state: RawState) -> AffineForm:
+    """The step's part of its carrier's voltage in a state of its group."""
     potentials = state.solution.potentials
     return (potentials[step.enter] - potentials[step.leave]).scaled(step.weight)
 
@@ -151,7 +151,7 @@ def _common_box(box: Box, narrowed: Sequence[Box]) -> Box | None:
 def _added(route: Route, choices: Sequence[Sequence[tuple[RawState, Box]]], box: Box) -> Interval:
     total = box.range_of(route.fixed)
     for step, options in zip(route.steps, choices, strict=True):
-        spans = [narrowed.range_of(_across(step, state)) for state, narrowed in options]
+        spans = [narrowed.range_of(across(step, state)) for state, narrowed in options]
         total += Interval(min(s.low for s in spans), max(s.high for s in spans))
     return total
 

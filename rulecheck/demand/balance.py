@@ -1,0 +1,100 @@
+"""Volt-second balance of all inductances of a group at once.
+
+Each carrier alone may see both signs of voltage, and yet no sharing of the period among the
+states may bring all means to zero together: a rectifier transistor drawn drain for source leaves
+a transformer polarity that cannot feed the coil. The means can be zero exactly where zero lies in
+the convex hull of the states' voltage vectors; by Caratheodory's theorem one state more than
+there are carriers is enough to show it.
+"""
+
+from collections.abc import Iterator, Mapping, Sequence
+from itertools import combinations
+
+import numpy as np
+import numpy.typing as npt
+
+from rulecheck.demand.readings import Failure, Reading, across, feasible
+from rulecheck.demand.routes import Carrier, Route
+from rulecheck.demand.sign_cases import Case
+from rulecheck.demand.stiff import Box
+
+Vectors = npt.NDArray[np.float64]
+_MOST_STATES = 16
+_MOST_CARRIERS = 4
+_SHARE = 1e-6
+
+
+def unbalanced(
+    reading: Reading,
+    routes: Sequence[tuple[Carrier, Route]],
+    box: Box,
+    cases: Mapping[str, Sequence[Case]],
+) -> list[Failure]:
+    """Groups of which no sharing of the period balances all carriers, in some required case."""
+    by_cluster: dict[int, list[tuple[Carrier, Route]]] = {}
+    for carrier, route in routes:
+        if carrier.part and len(route.steps) == 1 and not route.floating:
+            by_cluster.setdefault(route.steps[0].cluster, []).append((carrier, route))
+    found = []
+    for index, mine in sorted(by_cluster.items()):
+        if 2 <= len(mine) <= _MOST_CARRIERS:
+            found += _unbalanced_in(reading, index, mine, box, cases[mine[0][0].name])
+    return found
+
+
+def _unbalanced_in(
+    reading: Reading,
+    index: int,
+    mine: Sequence[tuple[Carrier, Route]],
+    box: Box,
+    cases: Sequence[Case],
+) -> list[Failure]:
+    for case in cases:
+        options = feasible(reading, index, case.narrow(box))
+        if not options or len(options) > _MOST_STATES:
+            continue
+        forms = [
+            [route.fixed + across(route.steps[0], state) for _, route in mine]
+            for state, _ in options
+        ]
+        names = sorted({n for row in forms for form in row for n in form.names})
+        narrow = case.narrow(box)
+        if any(not narrow.ranges[name].bounded for name in names):
+            continue
+        weights = np.array(
+            [[[dict(f.terms).get(n, 0.0) for n in names] for f in row] for row in forms]
+        )
+        if not any(_holds_zero(weights @ point) for point in _samples(narrow, names)):
+            together = " and ".join(carrier.name for carrier, _ in mine)
+            why = f"no sharing of the period among the states balances {together} together"
+            return [Failure(mine[0][0], case, (index,), why)]
+    return []
+
+
+def _samples(box: Box, names: Sequence[str]) -> Iterator[Vectors]:
+    """Points of the box: its middle, then its ends in every mixture of the first few variables."""
+    low = np.array([box.ranges[n].low for n in names])
+    high = np.array([box.ranges[n].high for n in names])
+    yield (low + high) / 2
+    count = min(len(names), 4)
+    for mixture in range(2**count):
+        ends = np.array([(mixture >> min(k, count - 1)) & 1 for k in range(len(names))])
+        yield low + (high - low) * ends
+    yield low + (high - low) * 0.25
+    yield low + (high - low) * 0.75
+
+
+def _holds_zero(vectors: Vectors) -> bool:
+    """True where zero is a mean of the vectors with shares that are not negative."""
+    scale = float(np.abs(vectors).max(initial=0.0)) or 1.0
+    vectors = np.unique(np.round(vectors / scale, 9), axis=0)
+    count, carriers = vectors.shape
+    goal = np.zeros(carriers + 1)
+    goal[-1] = 1.0
+    for size in range(1, min(carriers + 1, count) + 1):
+        for chosen in combinations(range(count), size):
+            rows = np.vstack([vectors[list(chosen)].T, np.ones(size)])
+            shares, *_ = np.linalg.lstsq(rows, goal, rcond=None)
+            if (shares > -_SHARE).all() and np.abs(rows @ shares - goal).max() < _SHARE:
+                return True
+    return False
