@@ -5,7 +5,7 @@ from collections.abc import Mapping
 from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.gate_source import find_gate_source
 from rulecheck.facts.inputs import Inputs
-from rulecheck.facts.terms import SubjectTerm, count, link, number, text, yes_no
+from rulecheck.facts.terms import SubjectTerm, count, link, number, text, texts, yes_no
 from rulecheck.parts import Part
 from rulecheck.values import Dimension, natural_key
 
@@ -15,6 +15,7 @@ GATE_DRIVE = SubjectTerm(
     (
         count("gates", "How many devices have their gate on it."),
         count("positions-driven", "How many positions those devices are in."),
+        texts("kinds", "Kinds of the devices with their gate on it."),
         yes_no("driven", "Something besides gates is on the net."),
         text("driven-by", "`driver` or `source` behind its resistors; empty where neither is."),
         text("driver", "The name of that driver or source."),
@@ -44,6 +45,7 @@ def _gate_drive(inputs: Inputs, gate: str) -> Subject:
     values: dict[str, Value] = {
         "gates": float(len(devices)),
         "positions-driven": float(len(positions)),
+        "kinds": tuple(sorted({part.kind.value for part in parts})),
         "driven": _driven(inputs, gate, devices),
         "driven-by": source.by,
         "driver": source.part,

@@ -9,7 +9,7 @@ from rulecheck.rulebook.pack_reading import Change, Pack, read_pack
 from rulecheck.rulebook.places import place_in_text
 from rulecheck.rulebook.ready import Missing, make_ready
 from rulecheck.rulebook.rulebook import ReadyRule, Rule, Rulebook, SwitchedOff
-from rulecheck.rulebook.scope import Parameter
+from rulecheck.rulebook.scope import OTHER, Parameter
 from rulecheck.values import Problem, error
 
 
@@ -75,15 +75,18 @@ def _set(layers: _Layers, pack: Pack, name: str, new: Parameter) -> None:
         layers.problems.append(error(new.span, f"no earlier pack has a parameter '{name}'", remedy))
         return
     layers.parameters[name] = _with_new_value(layers, old, new)
-    layers.changes.append(f"{pack.name} sets {name} ({new.source})")
+    sources = ", ".join(dict.fromkeys(row.source for row in new.rows.values()))
+    layers.changes.append(f"{pack.name} sets {name} ({sources})")
 
 
 def _with_new_value(layers: _Layers, old: Parameter, new: Parameter) -> Parameter:
+    """The new rows; a table without a row `other` leaves all that it does not name as it was."""
     if new.dimension is not old.dimension:
         what = f"'{new.name}' is in {old.dimension.value or 'plain numbers'}"
         layers.problems.append(error(new.span, what, f"the first stands at {old.span}"))
         return old
-    return replace(new, meaning=new.meaning or old.meaning)
+    rows = new.rows if OTHER in new.rows else {**old.rows, **new.rows}
+    return replace(new, rows=rows, meaning=new.meaning or old.meaning)
 
 
 def _change(layers: _Layers, pack: Pack, change: Change) -> None:

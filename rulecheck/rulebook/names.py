@@ -2,18 +2,15 @@
 
 import difflib
 import math
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from typing import Any
 
 from rulecheck.facts import Bounds, FieldTerm, Form, Value
-from rulecheck.rulebook.estimate import Estimate, Spread, anything, exactly, hull
+from rulecheck.rulebook.estimate import Estimate, Spread, anything, exactly
 from rulecheck.rulebook.kleene import Answer, answer
-from rulecheck.rulebook.scope import Bound, Parameter, Scene, Scope, unit_of
+from rulecheck.rulebook.scope import OTHER, Bound, Parameter, Scene, Scope, unit_of
 from rulecheck.rulebook.tree import LookedUp, Path, SourceOf
 from rulecheck.values import Interval, Unknown
-
-OTHER = "other"
-"""The row of a table that stands for every word without one of its own."""
 
 
 def bind_path(node: Path, scope: Scope) -> Bound | None:
@@ -94,60 +91,89 @@ _CONVERTERS: Mapping[Form, Any] = {
 
 
 def _plain_parameter(node: Path, parameter: Parameter, scope: Scope) -> Bound | None:
-    if isinstance(parameter.value, Mapping):
+    if not parameter.plain:
         scope.fail(
             node.at,
-            f"parameter '{node.dotted}' may be a table",
+            f"parameter '{node.dotted}' has rows by word",
             f"say for which words: `{node.dotted} of kinds`",
         )
         return None
-    value = exactly(parameter.value)
+    value = exactly(parameter.rows[OTHER].value)
     return Bound(Form.NUMBER, lambda scene: value, unit_of(parameter.dimension))
 
 
 def bind_looked_up(node: LookedUp, scope: Scope) -> Bound | None:
-    """The smallest entry of the table over the words; a plain number stands for all words."""
-    parameter = scope.parameters.get(node.parameter.dotted)
+    """The smallest row of the parameter over the words."""
+    parameter = _parameter(node.at, node.parameter, scope)
+    words = _words(node.words, scope)
+    if parameter is None or words is None:
+        return None
+
+    def run(scene: Scene) -> Estimate:
+        found = words(scene)
+        if isinstance(found, Unknown):
+            return _any_of(parameter, found)
+        return exactly(parameter.row_for(found).value)
+
+    return Bound(Form.NUMBER, run, unit_of(parameter.dimension))
+
+
+def _parameter(at: int, path: Path, scope: Scope) -> Parameter | None:
+    parameter = scope.parameters.get(path.dotted)
     if parameter is None:
-        what = f"'{node.parameter.dotted}' is no parameter"
-        scope.fail(node.at, what, nearest(node.parameter, scope))
+        scope.fail(at, f"'{path.dotted}' is no parameter", nearest(path, scope))
+    return parameter
+
+
+def _words(path: Path, scope: Scope) -> Callable[[Scene], tuple[str, ...] | Unknown] | None:
+    bound = bind_path(path, scope)
+    if bound is None:
         return None
-    words = bind_path(node.words, scope)
-    if words is None:
+    if bound.form not in (Form.TEXT, Form.TEXTS):
+        what = f"'{path.dotted}' holds no words"
+        scope.fail(path.at, what, "name a field of the form text or texts")
         return None
-    if words.form not in (Form.TEXT, Form.TEXTS):
-        what = f"'{node.words.dotted}' holds no words"
-        scope.fail(node.words.at, what, "name a field of the form text or texts")
-        return None
-    value = parameter.value
-    table = value if isinstance(value, Mapping) else {OTHER: value}
-    run = words.run
-    return Bound(
-        Form.NUMBER, lambda scene: _smallest(table, run(scene)), unit_of(parameter.dimension)
-    )
+    run, single = bound.run, bound.form is Form.TEXT
+
+    def words(scene: Scene) -> tuple[str, ...] | Unknown:
+        found: str | tuple[str, ...] | Unknown = run(scene)
+        if isinstance(found, str):
+            return (found,) if single else ()
+        return found
+
+    return words
 
 
-def _smallest(table: Mapping[str, float], words: str | tuple[str, ...] | Unknown) -> Estimate:
-    if isinstance(words, Unknown):
-        return _any_of(table, words)
-    several = (words,) if isinstance(words, str) else words
-    return exactly(min((table.get(w, table[OTHER]) for w in several), default=table[OTHER]))
-
-
-def _any_of(table: Mapping[str, float], missing: Unknown) -> Estimate:
-    lowest, highest = exactly(min(table.values())), exactly(max(table.values()))
-    whole = hull(lowest, highest)
-    return Estimate(whole.low, whole.high, () if whole.exact else (missing,))
+def _any_of(parameter: Parameter, missing: Unknown) -> Estimate:
+    values = [row.value for row in parameter.rows.values()]
+    low, high = min(values), max(values)
+    return Estimate(low, high, () if low == high else (missing,))
 
 
 def bind_source(node: SourceOf, scope: Scope) -> Bound | None:
-    parameter = scope.parameters.get(node.parameter.dotted)
+    """The source of the row that decides; of a parameter with rows by word, say of which."""
+    parameter = _parameter(node.at, node.parameter, scope)
     if parameter is None:
-        what = f"'{node.parameter.dotted}' is no parameter"
-        scope.fail(node.at, what, nearest(node.parameter, scope))
         return None
-    source = parameter.source
-    return Bound(Form.TEXT, lambda scene: source)
+    if node.words is None:
+        if not parameter.plain:
+            what = f"parameter '{node.parameter.dotted}' has rows by word"
+            remedy = f"say for which words: `source of {node.parameter.dotted} of kinds`"
+            scope.fail(node.at, what, remedy)
+            return None
+        source = parameter.rows[OTHER].source
+        return Bound(Form.TEXT, lambda scene: source)
+    words = _words(node.words, scope)
+    if words is None:
+        return None
+
+    def run(scene: Scene) -> str:
+        found = words(scene)
+        if isinstance(found, Unknown):
+            return "; ".join(dict.fromkeys(row.source for row in parameter.rows.values()))
+        return parameter.row_for(found).source
+
+    return Bound(Form.TEXT, run)
 
 
 def subjects_along(scope: Scope, path: Path) -> tuple[str, str, str] | None:

@@ -6,12 +6,11 @@ from dataclasses import dataclass, field
 from rulecheck.facts import VOCABULARY
 from rulecheck.reading import SourceText, YamlReading, read_yaml
 from rulecheck.rulebook.message import read_template
-from rulecheck.rulebook.names import OTHER
 from rulecheck.rulebook.pack_file import ChangeEntry, PackFile, ParameterEntry, RuleEntry
 from rulecheck.rulebook.parsing import parse_condition
 from rulecheck.rulebook.places import place_in_text
 from rulecheck.rulebook.rulebook import Example, Rule
-from rulecheck.rulebook.scope import Parameter
+from rulecheck.rulebook.scope import OTHER, Parameter, Row
 from rulecheck.rulebook.tree import Flaw, Node
 from rulecheck.values import (
     Dimension,
@@ -120,21 +119,18 @@ def _parameter(
     if not entry.source.strip():
         reader.fail(path, f"parameter '{name}' has no source", "add 'source: ...'")
     rows = entry.value if isinstance(entry.value, dict) else {OTHER: entry.value}
-    if OTHER not in rows:
+    if OTHER not in rows and path[0] != "set":
         reader.fail(where, f"the table of '{name}' has no row '{OTHER}'", f"add '{OTHER}: ...'")
         return None
     quantities = {word: _quantity(reader, where, raw) for word, raw in rows.items()}
     known = {word: quantity for word, quantity in quantities.items() if quantity is not None}
-    if len(known) < len(rows):
-        return None
     dimensions = {quantity.dimension for quantity in known.values()}
     if len(dimensions) > 1:
         reader.fail(where, f"the rows of '{name}' differ in unit", "give all the same unit")
+    if len(known) < len(rows) or len(dimensions) != 1:
         return None
-    values = {word: quantity.value for word, quantity in known.items()}
-    value: float | dict[str, float] = values if isinstance(entry.value, dict) else values[OTHER]
-    span = reader.reading.span(path)
-    return Parameter(name, value, dimensions.pop(), entry.source, entry.meaning, span)
+    read = {word: Row(quantity.value, entry.source) for word, quantity in known.items()}
+    return Parameter(name, read, dimensions.pop(), entry.meaning, reader.reading.span(path))
 
 
 def _quantity(reader: PackReader, path: Path, raw: str | int | float) -> Quantity | None:

@@ -164,7 +164,7 @@ _MAKERS: dict[str, Maker] = {
     "every": lambda at, c: Quantified(at, "every", str(c[0]), c[1], c[2]),
     "some": lambda at, c: Quantified(at, "some", str(c[0]), c[1], c[2]),
     "looked_up": lambda at, c: LookedUp(at, c[0], c[1]),
-    "source": lambda at, c: SourceOf(at, c[0]),
+    "source": lambda at, c: SourceOf(at, c[0], c[1]),
     "call": lambda at, c: Call(at, str(c[0]), tuple(c[1:])),
     "count_all": lambda at, c: Gathered(at, "count", None, "", c[0], None),
     "count_some": lambda at, c: Gathered(at, "count", None, str(c[0]), c[1], c[2]),

@@ -51,13 +51,14 @@ def _used(rule: Rule, parameters: Mapping[str, Parameter]) -> tuple[Parameter, .
 def parameter_line(parameter: Parameter) -> str:
     """`parameter derate.blocking = 0.8: share of the rating that may be used (source)`."""
     unit = parameter.dimension.value
-    if isinstance(parameter.value, Mapping):
-        rows = (f"{word} {write_quantity(v, unit)}" for word, v in parameter.value.items())
-        value = ", ".join(rows)
-    else:
-        value = write_quantity(parameter.value, unit)
-    meaning = f": {parameter.meaning}" if parameter.meaning else ""
-    return f"parameter {parameter.name} = {value}{meaning} ({_one_line(parameter.source)})"
+    by_source: dict[str, list[str]] = {}
+    for word, row in parameter.rows.items():
+        figure = write_quantity(row.value, unit)
+        shown = figure if parameter.plain else f"{word} {figure}"
+        by_source.setdefault(row.source, []).append(shown)
+    values = "; ".join(f"{', '.join(v)} ({_one_line(s)})" for s, v in by_source.items())
+    meaning = f", {parameter.meaning}" if parameter.meaning else ""
+    return f"parameter {parameter.name}{meaning}: {values}"
 
 
 def _one_line(text: str) -> str:

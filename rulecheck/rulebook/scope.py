@@ -14,16 +14,36 @@ OWN = ""
 """The word under which the rule's own subject is known: none."""
 
 
+OTHER = "other"
+"""The row of a parameter that stands for every word without a row of its own."""
+
+
+@dataclass(frozen=True, slots=True)
+class Row:
+    value: float
+    source: str
+
+
 @dataclass(frozen=True, slots=True)
 class Parameter:
-    """A number that packs set, or a table of numbers by word with a row `other`."""
+    """A number that packs set, or a table of numbers by word; each row has its own source."""
 
     name: str
-    value: float | Mapping[str, float]
+    rows: Mapping[str, Row]
+    """With a row `other`, unless it is to be laid over the rows of an earlier pack."""
     dimension: Dimension
-    source: str
     meaning: str
     span: Span
+
+    @property
+    def plain(self) -> bool:
+        """One number for all words."""
+        return set(self.rows) == {OTHER}
+
+    def row_for(self, words: tuple[str, ...]) -> Row:
+        """The smallest row over the words, the first by word where two are equal."""
+        rows = [self.rows.get(word, self.rows[OTHER]) for word in sorted(words)]
+        return min(rows, key=lambda row: row.value, default=self.rows[OTHER])
 
 
 @dataclass(frozen=True, slots=True)

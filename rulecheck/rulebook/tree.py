@@ -124,8 +124,11 @@ class LookedUp:
 
 @dataclass(frozen=True, slots=True)
 class SourceOf:
+    """The source of a parameter's value, or of its row for the words of a field."""
+
     at: int
     parameter: Path
+    words: Path | None = None
 
 
 @dataclass(frozen=True, slots=True)

@@ -7,7 +7,7 @@ from rulecheck.reading import SourceText
 from rulecheck.rulebook.binding import bind
 from rulecheck.rulebook.kleene import Answer
 from rulecheck.rulebook.parsing import parse_condition
-from rulecheck.rulebook.scope import OWN, Bound, Parameter, Scene
+from rulecheck.rulebook.scope import OTHER, OWN, Bound, Parameter, Row, Scene
 from rulecheck.rulebook.tree import Flaw
 from rulecheck.values import Dimension, Interval, Span, Unknown
 
@@ -68,7 +68,9 @@ def flaws(text: str, kind: str = "position",
 
 
 def parameter(value: float | Mapping[str, float], source: str = "common practice") -> Parameter:
-    return Parameter("derate", value, Dimension.NUMBER, source, "", HERE)
+    table = value if isinstance(value, Mapping) else {OTHER: value}
+    rows = {word: Row(number, source) for word, number in table.items()}
+    return Parameter("derate", rows, Dimension.NUMBER, "", HERE)
 
 
 def pack(text: str, file: str = "team.rules.yaml") -> SourceText:

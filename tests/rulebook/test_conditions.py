@@ -146,7 +146,11 @@ def test_parameters_are_numbers_or_tables_by_word():
     assert ask(rule.format(""), q1, parameters={"derate": plain}).truth
     assert ask(rule.format(" of kinds"), q1, parameters={"derate": plain}).truth
     assert ask(rule.format(" of kinds"), q1, parameters={"derate": table}).truth is False
-    assert ask('source of derate = "common practice"', q1, parameters={"derate": table}).truth
+    assert ask('source of derate = "common practice"', q1, parameters={"derate": plain}).truth
+    known = 'source of derate of kinds = "common practice"'
+    assert ask(known, q1, parameters={"derate": table}).truth
+    assert flaws(rule.format(""), parameters={"derate": table})
+    assert flaws('source of derate = "x"', parameters={"derate": table})
 
 
 def test_a_table_of_an_unknown_word_takes_in_all_its_rows():

@@ -4,6 +4,7 @@ import pytest
 
 from rulecheck.reading import SourceText
 from rulecheck.rulebook import load_packs, rule_text, rules_text
+from rulecheck.rulebook.scope import Row
 from tests.rulebook.making import pack
 
 EXAMPLES = """    examples:
@@ -135,8 +136,7 @@ change:
     book = load(BASE, team)
     assert book.problems == ()
     assert book.rules[0].level == "note"
-    assert book.parameters["share"].value == 0.7
-    assert book.parameters["share"].source == "team handbook"
+    assert book.parameters["share"].rows == {"other": Row(0.7, "team handbook")}
     assert book.changes == (
         "team sets share (team handbook)",
         "team changes team-rule: tried first",
@@ -173,6 +173,14 @@ def test_a_change_has_to_be_sound(change, what):
     assert what in " ".join(lines(BASE, f"pack: team\nchange:\n  - {change}\n"))
 
 
+def test_a_table_without_other_leaves_the_rest_as_it_was():
+    book = load(BASE, "pack: p\nset:\n  share: {value: {diode: 0.7}, source: handbook}\n")
+    rows = book.parameters["share"].rows
+    assert rows == {"other": Row(0.8, "common practice"), "diode": Row(0.7, "handbook")}
+    again = load(BASE, "pack: p\nset:\n  share: {value: 0.6, source: handbook}\n")
+    assert again.parameters["share"].rows == {"other": Row(0.6, "handbook")}
+
+
 def test_a_parameter_keeps_its_unit():
     found = lines(BASE, "pack: team\nset:\n  share: {value: 3 V, source: s}\n")
     assert found[0].startswith("p2.rules.yaml:3:3: error: 'share' is in plain numbers")
@@ -184,7 +192,7 @@ def test_the_rules_print_as_a_list_and_as_pages():
     assert rules_text(book) == (
         "team-rule  error    position    base\n"
         "off: second, by team: not our boards\n"
-        "parameter share = 0.8 (common practice)\n"
+        "parameter share: 0.8 (common practice)\n"
     )
     page = rule_text(book.rules[0], book)
     for word in ("requires: gated", "why: because", "remedy: mend it", "source: common practice"):

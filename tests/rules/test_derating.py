@@ -31,9 +31,8 @@ SEVERE, BENIGN = "derating/rac-severe", "derating/rac-benign"
     ],
 )
 def test_the_published_limits(profile, parameter, word, rating, limit):
-    value = rulebook(profile).parameters[parameter].value
-    factor = value if isinstance(value, float) else value[word]
-    assert rating * factor == pytest.approx(limit)
+    row = rulebook(profile).parameters[parameter].row_for((word,))
+    assert rating * row.value == pytest.approx(limit)
 
 
 @pytest.mark.parametrize("profile", PROFILES)
@@ -42,15 +41,18 @@ def test_a_profile_loads_after_the_packs_and_names_its_source(profile):
     assert [problem.line() for problem in book.problems] == []
     changed = [line for line in book.changes if profile in line]
     assert len(changed) >= 3
-    for name in ("derate.blocking", "derate.current", "derate.capacitor-voltage"):
-        value = book.parameters[name].value
-        rows = (value,) if isinstance(value, float) else tuple(value.values())
-        assert all(0.0 < row <= 1.0 for row in rows)
-        if not isinstance(value, float):
-            assert value["other"] == min(rows)
+    for parameter in book.parameters.values():
+        assert all(0.0 < row.value <= 1.0 for row in parameter.rows.values())
+        assert all(row.source for row in parameter.rows.values())
+
+
+@pytest.mark.parametrize("profile", [ECSS, NASA, SEVERE, BENIGN])
+def test_what_a_source_does_not_name_is_not_laid_at_its_door(profile):
+    own = rulebook().parameters["derate.blocking"].row_for(("igbt",))
+    assert rulebook(profile).parameters["derate.blocking"].row_for(("igbt",)) == own
 
 
 @pytest.mark.parametrize("profile", [ECSS, NASA])
 def test_a_factor_from_memory_says_so(profile):
     for name in ("derate.blocking", "derate.current", "derate.gate-voltage"):
-        assert "from memory" in rulebook(profile).parameters[name].source
+        assert "from memory" in rulebook(profile).parameters[name].row_for(("mosfet",)).source
