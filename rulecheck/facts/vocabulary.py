@@ -12,6 +12,8 @@ from rulecheck.facts.port_facts import PORT
 from rulecheck.facts.position_terms import POSITION
 from rulecheck.facts.state_facts import GROUP, SWITCH_STATE
 from rulecheck.facts.terms import SubjectTerm
+from rulecheck.parts import Kind
+from rulecheck.stage import Role
 
 VOCABULARY: Mapping[str, SubjectTerm] = {
     term.name: term
@@ -33,13 +35,19 @@ VOCABULARY: Mapping[str, SubjectTerm] = {
     )
 }
 
-EVERY_SUBJECT = ("name", "Its name.")
-"""The field that every subject has besides its own."""
+TABLE_WORDS = (
+    *(kind.value for kind in Kind),
+    *("ceramic", "film", "electrolytic", "tantalum"),
+    *(role.value for role in Role),
+)
+"""The words that a table of a parameter may have rows for: kinds, dielectrics, roles."""
+
+_NAME = ("name", "text", "Its name; every kind of subject has this field.")
 
 
 def vocabulary_text() -> str:
     """The whole vocabulary as a listing: subject, fields with unit and sentence, links."""
-    return "\n".join(_subject_text(term) for term in VOCABULARY.values())
+    return "\n".join((_row(*_NAME) + "\n", *map(_subject_text, VOCABULARY.values())))
 
 
 def _subject_text(term: SubjectTerm) -> str:

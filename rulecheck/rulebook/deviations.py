@@ -109,13 +109,13 @@ def _deviation(entry: DeviationEntry, span: Span) -> Deviation:
 def apply_deviations(
     verdicts: Verdicts, deviations: Sequence[Deviation], today: datetime.date
 ) -> Verdicts:
-    """Excuse what valid deviations cover; an expired one that covers something is a finding."""
+    """Excuse what valid deviations cover; an expired one that would is a finding here."""
     valid = [deviation for deviation in deviations if not deviation.expired(today)]
     judged = tuple(_excused(verdicts.netlist, v, valid) for v in verdicts.verdicts)
     late = tuple(
-        _expired(deviation, verdicts.netlist)
+        _expired(deviation)
         for deviation in deviations
-        if deviation.expired(today) and deviation.belongs_to(verdicts.netlist)
+        if deviation.expired(today) and _covers_any(deviation, verdicts)
     )
     everything = (*judged, *late)
     return replace(verdicts, verdicts=everything, tally=tally_of(everything))
@@ -133,17 +133,19 @@ def _excused(netlist: str, verdict: Verdict, deviations: Sequence[Deviation]) ->
 def unused_deviations(
     runs: Sequence[Verdicts], deviations: Sequence[Deviation], today: datetime.date
 ) -> tuple[Verdict, ...]:
-    """Deviations that excuse nothing in any of the netlists of a run, as findings."""
+    """Deviations that cover nothing in any of the netlists of a run, as findings."""
     return tuple(
-        _unused(deviation)
+        _expired(deviation) if deviation.expired(today) else _unused(deviation)
         for deviation in deviations
-        if not deviation.expired(today)
-        and not any(deviation.covers(run.netlist, v) for run in runs for v in run.verdicts)
+        if not any(_covers_any(deviation, run) for run in runs)
     )
 
 
-def _expired(deviation: Deviation, netlist: str) -> Verdict:
-    del netlist
+def _covers_any(deviation: Deviation, run: Verdicts) -> bool:
+    return any(deviation.covers(run.netlist, verdict) for verdict in run.verdicts)
+
+
+def _expired(deviation: Deviation) -> Verdict:
     until = deviation.until.isoformat() if deviation.until else ""
     message = (
         f"the deviation from {deviation.rule} on {deviation.subject} ended on {until}; "

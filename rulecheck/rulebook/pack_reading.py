@@ -1,9 +1,10 @@
 """Read one pack: the file's entries become rules with parsed conditions, every flaw located."""
 
+import difflib
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 
-from rulecheck.facts import VOCABULARY
+from rulecheck.facts import TABLE_WORDS, VOCABULARY
 from rulecheck.reading import SourceText, YamlReading, read_yaml
 from rulecheck.rulebook.message import read_template
 from rulecheck.rulebook.pack_file import ChangeEntry, PackFile, ParameterEntry, RuleEntry
@@ -122,6 +123,11 @@ def _parameter(
     if OTHER not in rows and path[0] != "set":
         reader.fail(where, f"the table of '{name}' has no row '{OTHER}'", f"add '{OTHER}: ...'")
         return None
+    for word in rows:
+        if word not in (*TABLE_WORDS, OTHER):
+            close = difflib.get_close_matches(word, TABLE_WORDS, 1)
+            hint = f"did you mean '{close[0]}'?" if close else "rows are for kinds and dielectrics"
+            reader.fail((*where, word), f"no part is of kind '{word}'", hint)
     quantities = {word: _quantity(reader, where, raw) for word, raw in rows.items()}
     known = {word: quantity for word, quantity in quantities.items() if quantity is not None}
     dimensions = {quantity.dimension for quantity in known.values()}

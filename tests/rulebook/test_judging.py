@@ -164,8 +164,17 @@ def test_an_expired_deviation_excuses_nothing_and_is_a_finding():
         "deviation-expired",
     ]
     assert late.tally.broken == 2
+    assert unused_deviations([late], known, TODAY) == ()
     last_day = read(deviation(until="2026-12-01")).deviations
     assert apply_deviations(judged, last_day, TODAY).tally.excused == 1
+
+
+def test_an_expired_deviation_that_covers_nothing_is_a_finding_of_the_run():
+    runs = [replace(verdicts(q("Q1")), netlist=name) for name in ("a.cir", "b.cir")]
+    known = read(deviation(until="2026-11-30")).deviations
+    late = [apply_deviations(run, known, TODAY) for run in runs]
+    assert [run.tally.broken for run in late] == [0, 0]
+    assert [v.rule for v in unused_deviations(late, known, TODAY)] == ["deviation-expired"]
 
 
 @pytest.mark.parametrize(

@@ -81,6 +81,7 @@ def test_a_sound_pack_loads_without_a_word():
         ("pack: x\nparameters:\n  a: {value: 3}\n", "3:3", "parameter 'a' has no source"),
         ("pack: x\nparameters:\n  a: {value: {diode: 1}, source: s}\n", "3:7", "no row 'other'"),
         ("pack: x\nparameters:\n  a: {value: {diode: 1 V, other: 1}, source: s}\n", "3:7", "diff"),
+        ("pack: x\nparameters:\n  a: {value: {diod: 1, other: 1}, source: s}\n", "3:15", "did you"),
         ("pack: x\nset:\n  a: {value: 1, source: s}\n", "3:3", "no earlier pack has a para"),
         ("pack: x\nchange:\n  - {rule: nix, reason: r, off: true}\n", "3:6", "no earlier pack has"),
     ],
