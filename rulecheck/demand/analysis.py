@@ -273,7 +273,9 @@ def _amendments(reading: Reading, group: Iterable[int]) -> Iterator[dict[str, Am
     ]
     gated = {p.name: Amendment.IGNORED for p in limiting if p.gated}
     diodes = {p.name: Amendment.TURNED for p in limiting if not p.gated}
-    for name, amendment in (*diodes.items(), *gated.items()):
+    for name in (*diodes, *gated):
+        yield {name: Amendment.TURNED}
+    for name, amendment in gated.items():
         yield {name: amendment}
     yield gated
     yield {**gated, **dict.fromkeys(diodes, Amendment.IGNORED)}

@@ -3,6 +3,7 @@
 from rulecheck.demand.analysis import Worked, work_out
 from rulecheck.demand.duty import with_duty
 from rulecheck.demand.peak_charged import find_peaks, with_peaks
+from rulecheck.demand.voltages import name_of
 from rulecheck.demand.wired import wire_leakages, without_followers, without_magnetising
 from rulecheck.stage import Branch, BranchKind, Stage
 
@@ -68,6 +69,7 @@ def _followers(worked: Worked) -> tuple[str, ...]:
         if branch.kind is BranchKind.VOLTAGE
         and branch.part
         and {branch.start, branch.end} & nets
+        and worked.voltages.forms[branch.name].names == (name_of(branch),)
         and (branch.name in unstated or _is_small(branch))
     )
 

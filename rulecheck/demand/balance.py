@@ -19,7 +19,7 @@ from rulecheck.demand.sign_cases import Case
 from rulecheck.demand.stiff import Box
 
 Vectors = npt.NDArray[np.float64]
-_MOST_STATES = 16
+_MOST_VECTORS = 16
 _MOST_CARRIERS = 4
 _SHARE = 1e-6
 
@@ -51,7 +51,7 @@ def _unbalanced_in(
 ) -> list[Failure]:
     for case in cases:
         options = feasible(reading, index, case.narrow(box))
-        if not options or len(options) > _MOST_STATES:
+        if not options:
             continue
         forms = [
             [route.fixed + across(route.steps[0], state) for _, route in mine]
@@ -85,10 +85,15 @@ def _samples(box: Box, names: Sequence[str]) -> Iterator[Vectors]:
 
 
 def _holds_zero(vectors: Vectors) -> bool:
-    """True where zero is a mean of the vectors with shares that are not negative."""
+    """True where zero is a mean of the vectors with shares that are not negative.
+
+    Of very many different vectors it is taken for true.
+    """
     scale = float(np.abs(vectors).max(initial=0.0)) or 1.0
     vectors = np.unique(np.round(vectors / scale, 9), axis=0)
     count, carriers = vectors.shape
+    if count > _MOST_VECTORS:
+        return True
     goal = np.zeros(carriers + 1)
     goal[-1] = 1.0
     for size in range(1, min(carriers + 1, count) + 1):

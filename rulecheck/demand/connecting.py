@@ -4,6 +4,7 @@ Such a position is on only where the two voltages are equal. Its off voltage is 
 their difference, its on current the mean that the ports behind it leave to it.
 """
 
+import math
 from collections.abc import Mapping
 
 from rulecheck.demand.analysis import Worked
@@ -29,10 +30,10 @@ def connecting_demand(
         off_range = off_range.hull(Interval(0.0, 0.0))
     if not position.gated:
         limits = Interval(
-            0.0 if position.free_reverse else off_range.low,
-            0.0 if position.free_forward else off_range.high,
+            0.0 if position.free_reverse else -math.inf,
+            0.0 if position.free_forward else math.inf,
         )
-        off_range = off_range.meet(limits) or Interval(0.0, 0.0)
+        off_range = off_range.meet(limits) or off_range
     off = [Sample(RawState((), _NOTHING), form, off_range, box)]
     on = _on_samples(position, worked, box, box.range_of(form), bool(assumed))
     demand = from_samples(position, off, on, settle)
@@ -63,8 +64,12 @@ def _on_samples(
         return []
     span = box.range_of(mean)
     if not position.gated:
-        limits = Interval(0.0 if position.free_forward else span.low, max(span.high, 0.0))
-        span = span.meet(limits) or Interval(0.0, 0.0)
+        limits = Interval(
+            -math.inf if position.free_reverse else 0.0, math.inf if position.free_forward else 0.0
+        )
+        kept = span.meet(limits)
+        # a diode drawn against the current does not make the current go away
+        span = kept if kept is not None and kept.magnitude > 0.0 else span
     return [Sample(RawState((position.name,), _NOTHING), mean, span, box)]
 
 

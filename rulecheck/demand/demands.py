@@ -66,6 +66,8 @@ class Group:
     states: tuple[State, ...]
     analysed: bool
     why_not: str = ""
+    cannot_work: bool = False
+    """Not analysed because no reading of the drawn stage works, not for want of time or data."""
     forbidden_states: tuple[tuple[str, ...], ...] = ()
     """States the stage needs but which a drawn device's free path forbids."""
     forbidding: tuple[str, ...] = ()

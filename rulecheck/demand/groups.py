@@ -33,7 +33,8 @@ def group_of(worked: Worked, index: int) -> Group:
     raw = worked.reading.states[index]
     analysed = bool(raw) and not failed and index not in worked.too_large
     if not analysed:
-        return Group(names, (), False, why_not_analysed(worked, index) if names else "")
+        why = why_not_analysed(worked, index) if names else ""
+        return Group(names, (), False, why, cannot_work=index not in worked.too_large)
     box = worked.box.only({n for s in raw for f in forms_of(s) for n in f.names})
     legal = {state.on for state, _ in feasible(worked.reading, index, box)}
     drawn = replace(worked.reading, amended={})
@@ -46,7 +47,7 @@ def group_of(worked: Worked, index: int) -> Group:
     relaxed = bool(worked.reading.amended.keys() & set(names))
     forbidden = tuple(s.on for s in states if not s.available) if relaxed else ()
     forbidding = _forbidding(worked, index, forbidden)
-    return Group(names, states, True, "", forbidden, forbidding)
+    return Group(names, states, True, "", forbidden_states=forbidden, forbidding=forbidding)
 
 
 def _forbidding(

@@ -41,7 +41,7 @@ class Amendment(StrEnum):
     IGNORED = "ignored"
     """Its free paths forbid nothing: it is taken to obey its gate."""
     TURNED = "turned"
-    """A diode is taken to point the other way."""
+    """Its free path is taken to point the other way."""
 
 
 @dataclass(frozen=True, slots=True)

@@ -76,7 +76,7 @@ def without_magnetising(stage: Stage) -> tuple[Stage, tuple[str, ...]]:
     clamped = {
         stage.merged.get(net, net)
         for name, role in stage.roles.items()
-        if role in (Role.CLAMP, Role.SNUBBER)
+        if role is Role.CLAMP
         for net in stage.parts.by_name[name].nets
     }
     cores = []

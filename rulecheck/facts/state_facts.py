@@ -11,6 +11,7 @@ GROUP = SubjectTerm(
     "Positions whose switching states depend on each other.",
     (
         yes_no("analysed", "Its states were enumerated and the stage works with them."),
+        text("why-not", "Why it was not analysed; empty where it was."),
         count("legal-states", "How many states neither short a voltage nor break a current."),
         count("forbidden-states", "Needed states that a drawn device's own free path forbids."),
         texts("forbidding", "The positions whose free paths forbid them."),
@@ -51,7 +52,8 @@ def _group(inputs: Inputs, group: Group) -> Subject:
     known: Value | None = None if group.analysed else _not_analysed(group)
     parts = inputs.parts_of_positions(group.positions)
     values: dict[str, Value] = {
-        "analysed": True if known is None else known,
+        "analysed": _analysed(group, known),
+        "why-not": group.why_not,
         "legal-states": float(len(group.states)) if known is None else known,
         "forbidden-states": float(len(group.forbidden_states)) if known is None else known,
         "forbidding": group.forbidding if known is None else known,
@@ -62,6 +64,13 @@ def _group(inputs: Inputs, group: Group) -> Subject:
     }
     span, related = inputs.span_of_parts(parts), inputs.related_spans(parts)
     return Subject("group", name, values, links, parts, (), span, related)
+
+
+def _analysed(group: Group, known: Value | None) -> Value:
+    """No, where it was found that the stage cannot work; not known where it was too large."""
+    if known is None or group.cannot_work:
+        return group.analysed
+    return known
 
 
 def _not_analysed(group: Group) -> Unknown:

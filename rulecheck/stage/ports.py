@@ -1,7 +1,7 @@
 """Resolve the sheet's ports against the nets of the circuit, or take the netlist's own sources."""
 
 import difflib
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass
 
 from rulecheck.parts import Kind, Part
@@ -33,7 +33,27 @@ def resolve_ports(sheet: Sheet, merged: Mapping[str, str]) -> Ports:
             problems.append(problem)
             continue
         ports.append(_port(entry, found, neutral))
+    problems += _contradictions(ports)
     return Ports(tuple(ports), tuple(problems))
+
+
+def _contradictions(ports: Sequence[Port]) -> Iterator[Problem]:
+    """Two voltages on one pair of nets whose ranges have nothing in common."""
+    first: dict[frozenset[str], Port] = {}
+    for port in ports:
+        if port.voltage is None or port.kind is not PortKind.DC:
+            continue
+        other = first.setdefault(frozenset(port.nets), port)
+        if other is port or other.voltage is None:
+            continue
+        voltage = port.voltage if port.nets == other.nets else -port.voltage
+        if voltage.meet(other.voltage) is None:
+            yield error(
+                port.span,
+                f"ports '{other.name}' and '{port.name}' stand on the same nets "
+                f"({' and '.join(port.nets)}, wires merged) with voltages that never agree",
+                "correct the ranges or the nets, or find the wire that joins them",
+            )
 
 
 def _port(entry: SheetPort, nets: tuple[str, ...], neutral: str) -> Port:
