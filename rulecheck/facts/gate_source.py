@@ -24,12 +24,15 @@ class GateSource:
 
     by: str
     part: str
+    net: str
+    """The merged net of the output."""
     voltage: Value
     """The largest magnitude that it puts on the gate, volts."""
 
 
 def find_gate_source(inputs: Inputs, gate: str) -> GateSource:
     """The nearest driver or source; of several equally near the first by name."""
+    barred = _beyond(inputs, gate)
     seen = {gate}
     waiting = deque([gate])
     while waiting and len(seen) < _FARTHEST:
@@ -37,13 +40,20 @@ def find_gate_source(inputs: Inputs, gate: str) -> GateSource:
         here = [inputs.part_by_name[name] for name in sorted(inputs.parts_at_net.get(net, ()))]
         for part in here:
             if part.kind in _SOURCES and _gives_out(inputs, part, net):
-                return GateSource(_SOURCES[part.kind], part.name, _voltage(part))
+                return GateSource(_SOURCES[part.kind], part.name, net, _voltage(part))
         for part in here:
-            for other in _through(inputs, part) - seen:
+            for other in _through(inputs, part) - seen - barred:
                 seen.add(other)
                 waiting.append(other)
     unknown = Unknown(f"drive voltage of {gate}", f"a driver or source at gate net {gate}")
-    return GateSource("", "", unknown)
+    return GateSource("", "", "", unknown)
+
+
+def _beyond(inputs: Inputs, gate: str) -> set[str]:
+    """Where a pull-down or a clamp leads: the power path and the devices' own returns."""
+    devices = (inputs.part_by_name[name] for name in inputs.devices_at_gate[gate])
+    ends = {inputs.merged(net) for part in devices for e in part.edges for net in (e.tail, e.head)}
+    return (ends | inputs.power_nets | inputs.grounds) - {gate}
 
 
 def _through(inputs: Inputs, part: Part) -> set[str]:

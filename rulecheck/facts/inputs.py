@@ -32,6 +32,8 @@ class Inputs:
     branch_parts: frozenset[str]
     """The parts that are power branches."""
     ports_at_net: Mapping[str, tuple[str, ...]]
+    power_nets: frozenset[str]
+    """Merged nets at the ends of power branches and at ports."""
     grounds: frozenset[str]
     """The ground and what looks like another, as far as something is on it."""
     spelling: Mapping[str, str]
@@ -91,6 +93,7 @@ def gather(stage: Stage, capabilities: Capabilities, demands: Demands) -> Inputs
         _grouped(
             (net, port.name) for port in stage.ports for net in (*port.nets, port.neutral) if net
         ),
+        _power_nets(stage),
         _grounds(stage),
         {part.text.casefold(): part.text for part in reversed(stage.parts.parts)},
         frozenset(
@@ -99,6 +102,11 @@ def gather(stage: Stage, capabilities: Capabilities, demands: Demands) -> Inputs
             if role in (Role.SHARING, Role.SNUBBER) and name in parts
         ),
     )
+
+
+def _power_nets(stage: Stage) -> frozenset[str]:
+    ends = {net for branch in stage.branches for net in (branch.start, branch.end)}
+    return frozenset(ends | {net for port in stage.ports for net in (*port.nets, port.neutral)})
 
 
 def _grounds(stage: Stage) -> frozenset[str]:

@@ -4,6 +4,7 @@ from collections.abc import Iterable
 
 from rulecheck.demand import Bridge, Leg
 from rulecheck.facts.facts import Subject, Value
+from rulecheck.facts.gate_source import find_gate_source
 from rulecheck.facts.inputs import Inputs
 from rulecheck.facts.terms import SubjectTerm, count, link, number, text, texts, yes_no
 from rulecheck.stage import Role
@@ -19,8 +20,8 @@ LEG = SubjectTerm(
         text("low-rail", "The rail of lower potential."),
         count("levels", "How many potentials the midpoint takes."),
         count("gated-positions", "How many of its positions follow a gate."),
-        yes_no("gates-joined", "A gate net is common to a position above and one below."),
-        texts("joined-gates", "The gate nets common to a position above and one below."),
+        yes_no("gates-joined", "A gate net, or the output behind it, serves above and below."),
+        texts("joined-gates", "The gate nets and outputs that serve above and below."),
         yes_no("high-turned", "A gated position above is drawn from the midpoint to the rail."),
         yes_no("low-turned", "A gated position below is drawn from the rail to the midpoint."),
         yes_no("midpoint-loaded", "Something other than its switches and their aids is there."),
@@ -100,14 +101,16 @@ def _leg(inputs: Inputs, leg: Leg) -> Subject:
 
 
 def _gates(inputs: Inputs, positions: Iterable[str]) -> set[str]:
+    """The gate nets of the positions, and the outputs of the drivers behind them."""
     devices = (inputs.part_by_name[name] for name in inputs.parts_of_positions(positions))
-    return {
+    gates = {
         inputs.merged(pin.net)
         for device in devices
         if device.gated
         for pin in device.pins
         if pin.role in ("gate", "base")
     }
+    return gates | ({find_gate_source(inputs, gate).net for gate in gates} - {""})
 
 
 def _turned(inputs: Inputs, names: Iterable[str], starts_at: set[str], ends_at: set[str]) -> bool:

@@ -3,7 +3,7 @@
 from rulecheck.demand import Group, State
 from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.inputs import Inputs, group_name
-from rulecheck.facts.terms import SubjectTerm, count, link, texts, yes_no
+from rulecheck.facts.terms import SubjectTerm, count, link, text, texts, yes_no
 from rulecheck.values import Unknown
 
 GROUP = SubjectTerm(

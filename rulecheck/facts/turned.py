@@ -44,17 +44,15 @@ def _holds_one_polarity(position: Subject) -> bool:
 def _misplaced(inputs: Inputs) -> Sequence[Part]:
     """All gated devices, where each has its gate on a power net and a main pin on none."""
     gated = [part for part in inputs.stage.parts.parts if part.gated]
-    power = {net for branch in inputs.stage.branches for net in (branch.start, branch.end)}
-    power |= set(inputs.ports_at_net)
-    if len(gated) < FEWEST or not all(_is_misplaced(inputs, part, power) for part in gated):
+    if len(gated) < FEWEST or not all(_is_misplaced(inputs, part) for part in gated):
         return ()
     return gated
 
 
-def _is_misplaced(inputs: Inputs, part: Part, power: set[str]) -> bool:
+def _is_misplaced(inputs: Inputs, part: Part) -> bool:
     gates = {inputs.merged(pin.net) for pin in part.pins if pin.role in ("gate", "base")}
     main = {inputs.merged(net) for edge in part.edges for net in (edge.tail, edge.head)}
-    return bool(gates & power) and not main <= power
+    return bool(gates & inputs.power_nets) and not main <= inputs.power_nets
 
 
 def stage_values(inputs: Inputs, suspects: Suspects) -> dict[str, Value]:

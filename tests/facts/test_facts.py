@@ -165,8 +165,8 @@ def test_devices_side_by_side_and_in_series():
 
 def test_without_states_nobody_knows_the_legs():
     facts = facts_of(LEG.replace("M1 BUS G1 SW SW FET blocking=200 current=120\n", ""))
-    analysed = value(facts, "group", "M2", "analysed")
-    assert isinstance(analysed, Unknown)
+    assert value(facts, "group", "M2", "analysed") is False
+    assert "L1" in value(facts, "group", "M2", "why-not")
     assert isinstance(facts.by_name["position", "M2"].links["legs"], Unknown)
 
 
