@@ -3,9 +3,6 @@
 import os
 import re
 import shlex
-import subprocess
-import sys
-from pathlib import Path
 
 import pytest
 import yaml
@@ -15,7 +12,7 @@ from rulecheck.parts import read_part_data
 from rulecheck.reading import SourceText
 from rulecheck.rulebook import load_packs
 from rulecheck.stage import read_sheet
-from tests.command.running import ROOT, clean_environment, run
+from tests.command.running import ROOT, run
 
 README = (ROOT / "README.md").read_text(encoding="utf-8")
 FRESH = [line for line in README.splitlines() if line.startswith("python3 -m venv .venv && ")]
@@ -33,33 +30,21 @@ def demo_commands() -> list[tuple[str, int]]:
     return [(m[1], int(m[2])) if m else (line, 0) for line, m in matches]
 
 
-@pytest.fixture(scope="module")
-def path_with_command(tmp_path_factory: pytest.TempPathFactory) -> Path:
-    """A folder whose `rulecheck` is this checkout's."""
-    folder = tmp_path_factory.mktemp("bin")
-    script = folder / "rulecheck"
-    script.write_text(f'#!/bin/sh\nexec {shlex.quote(sys.executable)} -m rulecheck "$@"\n')
-    script.chmod(0o755)
-    return folder
-
-
 def test_two_commands_serve_a_fresh_machine():
     assert len(FRESH) == 2
     assert "rulecheck demo" in FRESH[0]
     assert FRESH[1].endswith("pytest -n auto")
 
 
-def test_every_printed_command_ends_as_it_says(hut, path_with_command):
-    environment = clean_environment()
-    environment["PATH"] = f"{path_with_command}:{environment['PATH']}"
+def test_every_printed_command_ends_as_it_says(hut):
     commands = demo_commands()
     assert len(commands) > 8
     for command, status in commands:
-        done = subprocess.run(
-            ["sh", "-c", command], cwd=hut, env=environment, capture_output=True, text=True,
-            check=False,
+        program, *arguments = shlex.split(command)
+        done = run(*arguments, folder=hut)
+        assert (program, command, done.returncode, done.stderr) == (
+            "rulecheck", command, status, "",
         )  # fmt: skip
-        assert (command, done.returncode, done.stderr) == (command, status, "")
 
 
 READERS = {
