@@ -75,14 +75,14 @@ def console_blocks(text: str) -> list[tuple[str, str]]:
 
 
 def test_the_printed_output_is_what_the_commands_print(hut):
-    """`REGENERATE=1` rewrites the README's blocks; read the difference before committing it."""
+    """`RULECHECK_REGENERATE=1` rewrites the README's blocks; read the difference before committing it."""
     text = README
     for command, printed in console_blocks(README):
         shown = run(*command.split(), folder=hut).stdout
         text = text.replace(
             f"$ rulecheck {command}\n{printed}```", f"$ rulecheck {command}\n{shown}```"
         )
-    if os.environ.get("REGENERATE"):
+    if os.environ.get("RULECHECK_REGENERATE"):
         (ROOT / "README.md").write_text(text, encoding="utf-8")
         return
     assert console_blocks(README)
