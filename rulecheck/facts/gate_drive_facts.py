@@ -16,7 +16,7 @@ GATE_DRIVE = SubjectTerm(
         count("gates", "How many devices have their gate on it."),
         count("positions-driven", "How many positions those devices are in."),
         texts("kinds", "Kinds of the devices with their gate on it."),
-        yes_no("driven", "Something besides gates is on the net."),
+        yes_no("driven", "Something leads to it from elsewhere than its devices' own terminals."),
         text("driven-by", "`driver` or `source` behind its resistors; empty where neither is."),
         text("driver", "The name of that driver or source."),
         number("drive-voltage", Dimension.VOLTAGE, "The largest voltage that it puts on the gate."),
@@ -66,10 +66,19 @@ def _distinct(table: Mapping[str, tuple[str, ...]], names: tuple[str, ...]) -> t
 
 
 def _driven(inputs: Inputs, gate: str, devices: tuple[str, ...]) -> bool:
+    """Whether anything leads to the gate from elsewhere than its devices' own terminals."""
+    own = {gate} | {
+        inputs.merged(pin.net) for name in devices for pin in inputs.part_by_name[name].pins
+    }
     others = set(inputs.parts_at_net.get(gate, ())) - set(devices)
-    if others or gate in inputs.ports_at_net:
-        return True
-    return any(_at_another_pin(inputs, gate, name) for name in devices)
+    led = any(
+        inputs.merged(net) not in own for name in others for net in inputs.part_by_name[name].nets
+    )
+    return (
+        led
+        or gate in inputs.power_nets
+        or any(_at_another_pin(inputs, gate, name) for name in devices)
+    )
 
 
 def _at_another_pin(inputs: Inputs, gate: str, name: str) -> bool:

@@ -8,11 +8,11 @@ from dataclasses import dataclass
 
 from rulecheck.facts.inputs import Inputs
 from rulecheck.parts import Kind
-from rulecheck.values import natural_key
+from rulecheck.values import Unknown, natural_key
 
 _APART = frozenset({Kind.ISOLATOR, Kind.WINDING_SET, Kind.CONTROLLER, Kind.DRIVER, Kind.OTHER})
 
-_LEAVES = _APART | {Kind.CONNECTOR, Kind.UNKNOWN, Kind.SENSOR}
+_LEAVES = _APART | {Kind.CONNECTOR, Kind.SENSOR}
 """Kinds beyond which a potential may be fixed by what the netlist does not show."""
 
 
@@ -22,7 +22,8 @@ class Island:
 
     head: str
     size: int
-    grounded: bool
+    grounded: bool | Unknown
+    """Not known where a part that is not understood may hold it."""
 
 
 def find_islands(inputs: Inputs) -> Mapping[str, Island]:
@@ -59,5 +60,13 @@ def _described(inputs: Inputs, roots: Mapping[str, str]) -> Mapping[str, Island]
     for part in inputs.stage.parts.parts:
         if part.kind in _LEAVES or part.name in wound:
             held |= {roots[net] for net in part.nets}
-    islands = {root: Island(nets[0], len(nets), root in held) for root, nets in members.items()}
+    unclear: dict[str, Unknown] = {}
+    for part in inputs.stage.parts.parts:
+        if part.kind is Kind.UNKNOWN:
+            for net in part.nets:
+                unclear.setdefault(roots[net], part.missing("kind"))
+    islands = {
+        root: Island(nets[0], len(nets), root in held or unclear.get(root, False))
+        for root, nets in members.items()
+    }
     return {net: islands[root] for net, root in roots.items()}

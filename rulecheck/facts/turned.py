@@ -11,6 +11,7 @@ from dataclasses import dataclass
 from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.inputs import Inputs
 from rulecheck.parts import Part
+from rulecheck.values import Unknown
 
 FEWEST = 2
 """A single device drawn upside down is a mistake of its own."""
@@ -22,18 +23,26 @@ class Suspects:
 
     positions: frozenset[str]
     devices: tuple[str, ...]
+    open: tuple[Unknown, ...]
+    """Where no suspicion is certain: what would have to be known to rule it out."""
 
 
 def find_suspects(inputs: Inputs, positions: Sequence[Subject]) -> Suspects:
     """Certain only where every single one of a class is; else each is judged by itself."""
     turned: list[Subject] = []
+    open_points: list[Unknown] = []
     for gated in (True, False):
         same = [p for p in positions if p.values["gated"] is gated and _holds_one_polarity(p)]
-        if len(same) >= FEWEST and all(p.values["turned"] is True for p in same):
-            turned += same
+        answers = [p.values["turned"] for p in same]
+        if len(same) < FEWEST or False in answers:
+            continue
+        unknown = [answer for answer in answers if isinstance(answer, Unknown)]
+        open_points += unknown
+        turned += [] if unknown else same
     devices = [name for position in turned for name in position.parts]
     devices += [part.name for part in _misplaced(inputs)]
-    return Suspects(frozenset(p.name for p in turned), tuple(dict.fromkeys(devices)))
+    names = frozenset(position.name for position in turned)
+    return Suspects(names, tuple(dict.fromkeys(devices)), tuple(dict.fromkeys(open_points)))
 
 
 def _holds_one_polarity(position: Subject) -> bool:
@@ -57,8 +66,11 @@ def _is_misplaced(inputs: Inputs, part: Part) -> bool:
 
 def stage_values(inputs: Inputs, suspects: Suspects) -> dict[str, Value]:
     """The stage's fields on the pin order."""
+    suspected: Value = bool(suspects.devices)
+    if not suspects.devices and suspects.open:
+        suspected = suspects.open[0]
     return {
-        "pin-order-suspect": bool(suspects.devices),
+        "pin-order-suspect": suspected,
         "suspect-devices": float(len(suspects.devices)),
         "suspect-models": tuple(sorted(_models(inputs, suspects.devices))),
     }
