@@ -16,9 +16,10 @@ ROOT2, ROOT3 = math.sqrt(2), math.sqrt(3)
 
 
 def test_single_phase_diode_bridge() -> None:
-    """sqrt(2) V each: 325.27 V on 230 V."""
-    cards = "D1 L P DX\nD2 N P DX\nD3 0 L DX\nD4 0 N DX\nL1 P OUT 10m"
-    ports = ac("mains", "L", "N", voltage="230 V rms"), dc("out", "OUT", draws=10)
+    """sqrt(2) V each: 325.27 V on 230 V; into a large coil 2 sqrt(2) / pi V on the average."""
+    cards = "D1 L P DX\nD2 N P DX\nD3 0 L DX\nD4 0 N DX\nL1 P OUT 1"
+    output = dc("out", "OUT", voltage=230 * 2 * ROOT2 / math.pi, draws=10)
+    ports = ac("mains", "L", "N", voltage="230 V rms"), output
     study = Study(cards, sheet(*ports))
     for number in range(1, 5):
         study.expect(f"D{number}", off=(-230 * ROOT2, None), on=(None, 10), quadrants="II")
@@ -33,22 +34,22 @@ def test_centre_tapped_rectifier() -> None:
     K1 L1 L2 L3 1
     D1 S1 P DX
     D2 S2 P DX
-    L4 P OUT 10m
+    L4 P OUT 1
     """
-    ports = ac("mains", "L", "N", voltage="230 V rms"), dc("out", "OUT", draws=10)
+    output = dc("out", "OUT", voltage=230 * 2 * ROOT2 / math.pi, draws=10)
+    ports = ac("mains", "L", "N", voltage="230 V rms"), output
     study = Study(cards, sheet(*ports))
     for name in ("D1", "D2"):
         study.expect(name, off=(-2 * 230 * ROOT2, None), on=(None, 10), quadrants="II")
 
 
 def test_three_phase_diode_bridge() -> None:
-    """sqrt(2) V line to line: 565.7 V on 400 V."""
+    """sqrt(2) V line to line: 565.7 V on 400 V; 3 sqrt(2) / pi V = 540.19 V on the average."""
     upper = [f"D{k} {net} P DX" for k, net in enumerate("abc", start=1)]
     lower = [f"D{k + 3} 0 {net} DX" for k, net in enumerate("abc", start=1)]
     mains = phases("mains", "a", "b", "c", line_voltage="400 V rms")
-    study = Study(
-        "\n".join([*upper, *lower, "L1 P OUT 10m"]), sheet(mains, dc("o", "OUT", draws=9))
-    )
+    output = dc("out", "OUT", voltage=400 * 3 * ROOT2 / math.pi, draws=9)
+    study = Study("\n".join([*upper, *lower, "L1 P OUT 1"]), sheet(mains, output))
     for number in range(1, 7):
         study.expect(f"D{number}", off=(-400 * ROOT2, None), on=(None, 9), quadrants="II")
 
