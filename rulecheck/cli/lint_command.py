@@ -63,7 +63,8 @@ def run(request: Request) -> int:
     result = _lint_run(request, basis, judged, today)
     default = "table" if sys.stdout.isatty() else "lines"
     reports = documents(result, request, LINT, default) if result.reports else []
-    if request.record is not None:
+    # a record with a netlist missing would make its old findings look new
+    if request.record is not None and not result.unusable:
         runs = [answer.verdicts for answer in judged if answer.verdicts is not None]
         reports.append(Document(record_text(runs), request.record))
     problems = tuple(problem for answer in answers for problem in answer.problems)
@@ -111,7 +112,11 @@ def _lint_run(
         for answer in answers
         if answer.verdicts is not None and answer.points is not None
     )
-    unusable = any(answer.verdicts is None for answer in answers)
+    unusable = tuple(
+        str(task.netlist)
+        for task, answer in zip(basis.tasks, answers, strict=True)
+        if answer.verdicts is None
+    )
     whole = not request.names and not unusable
     undecided_fails = basis.project.undecided_fails
     return LintRun(
@@ -121,6 +126,7 @@ def _lint_run(
         undecided_fails if request.undecided is None else request.undecided == "fail",
         basis.rulebook.switched_off,
         {rule.id: rule.remedy for rule in basis.rulebook.rules},
+        unusable,
     )
 
 

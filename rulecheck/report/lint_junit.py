@@ -7,7 +7,7 @@ from typing import TextIO
 from xml.etree import ElementTree
 
 from rulecheck.report.lint_lines import finding_line
-from rulecheck.report.lint_result import LintReport, LintRun
+from rulecheck.report.lint_result import LintReport, LintRun, unusable_line
 from rulecheck.report.look import PLAIN, Look
 from rulecheck.rulebook import Verdict
 
@@ -18,6 +18,8 @@ def render(run: LintRun, stream: TextIO, look: Look = PLAIN) -> None:
     root = ElementTree.Element("testsuites", name="rulecheck")
     for report in run.reports:
         root.append(_suite(run, report))
+    for netlist in run.unusable:
+        root.append(_unusable_suite(netlist))
     ElementTree.indent(root, " ")
     stream.write('<?xml version="1.0" encoding="UTF-8"?>\n')
     stream.write(ElementTree.tostring(root, encoding="unicode") + "\n")
@@ -36,6 +38,15 @@ def _suite(run: LintRun, report: LintReport) -> ElementTree.Element:
     attributes = {name: str(count) for name, count in counts.items()}
     suite = ElementTree.Element("testsuite", {"name": _legal(report.netlist), **attributes})
     suite.extend(cases)
+    return suite
+
+
+def _unusable_suite(netlist: str) -> ElementTree.Element:
+    counts = {"tests": "1", "failures": "0", "errors": "1", "skipped": "0"}
+    suite = ElementTree.Element("testsuite", {"name": _legal(netlist), **counts})
+    attributes = {"classname": _legal(netlist), "name": "analysis", "time": "0"}
+    case = ElementTree.SubElement(suite, "testcase", attributes)
+    ElementTree.SubElement(case, "error", message=_legal(unusable_line(netlist)))
     return suite
 
 

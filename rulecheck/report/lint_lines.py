@@ -16,6 +16,7 @@ from rulecheck.report.lint_result import (
     sentence,
     tally_line,
     undecided_lines,
+    unusable_line,
 )
 from rulecheck.report.look import PLAIN, Look
 from rulecheck.report.one_line import one_line
@@ -28,6 +29,8 @@ def render(run: LintRun, stream: TextIO, look: Look = PLAIN) -> None:
     for report in run.reports:
         for line in _lines(report, look):
             stream.write(one_line(line, look) + "\n")
+    for netlist in run.unusable:
+        stream.write(one_line(f"rulecheck: error: {unusable_line(netlist)}", look) + "\n")
     for off in run.switched_off:
         line = f"{off.span}: note: rule switched off: {off_line(off)}"
         stream.write(one_line(line, look) + "\n")

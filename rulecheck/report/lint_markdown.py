@@ -10,6 +10,7 @@ from rulecheck.report.lint_result import (
     off_line,
     tally_line,
     undecided_lines,
+    unusable_line,
 )
 from rulecheck.report.look import PLAIN, Look
 from rulecheck.report.markdown_text import bullets, escaped, heading_rule, row
@@ -25,6 +26,9 @@ def render(run: LintRun, stream: TextIO, look: Look = PLAIN) -> None:
         stream.write(f"## {escaped(report.netlist)}: {tally_line(report.tally)}\n\n")
         _write_findings(run, report, stream)
         _write_open_points(report, stream, look)
+    if run.unusable:
+        lines = bullets(tuple(unusable_line(netlist) for netlist in run.unusable))
+        stream.write(f"### Not analysed\n\n{lines}\n")
     if run.switched_off:
         lines = bullets(tuple(off_line(off) for off in run.switched_off))
         stream.write(f"### Rules switched off\n\n{lines}\n")

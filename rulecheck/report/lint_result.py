@@ -59,6 +59,8 @@ class LintRun:
     switched_off: tuple[SwitchedOff, ...] = ()
     remedies: Mapping[str, str] = field(default_factory=dict)
     """By rule: what to do."""
+    unusable: tuple[str, ...] = ()
+    """Netlists that could not be analysed at all: nothing is known of them."""
 
     def fails(self, report: LintReport, finding: Verdict) -> bool:
         """Whether this finding turns the run's exit status to 1."""
@@ -152,6 +154,10 @@ def waiting_lines(waiting: Iterable[Waiting]) -> tuple[str, ...]:
 def _waiting_line(checks: int, datum: str, cards: list[str]) -> str:
     lead = "1 check waits for" if checks == 1 else f"{checks} checks wait for"
     return f"{lead} {datum}{', '.join(cards)}"
+
+
+def unusable_line(netlist: str) -> str:
+    return f"{netlist} could not be analysed: nothing in it was checked"
 
 
 def off_line(off: SwitchedOff) -> str:

@@ -19,6 +19,7 @@ from rulecheck.report.lint_result import (
     sentence,
     tally_line,
     undecided_lines,
+    unusable_line,
 )
 from rulecheck.report.look import PLAIN, Look
 from rulecheck.report.open_points import merged
@@ -51,7 +52,10 @@ def _run(run: LintRun) -> dict[str, object]:
         },
         "columnKind": "unicodeCodePoints",
         "invocations": [
-            {"executionSuccessful": True, "toolExecutionNotifications": _notifications(run)}
+            {
+                "executionSuccessful": not run.unusable,
+                "toolExecutionNotifications": _notifications(run),
+            }
         ],
         "results": [
             _result(report, finding, places)
@@ -124,7 +128,12 @@ def _notifications(run: LintRun) -> list[dict[str, object]]:
     """What a reader of the results alone would miss: the open points and the cautions."""
     lines = [line for report in run.reports for line in _open_lines(report)]
     lines += [f"rule switched off: {off_line(off)}" for off in run.switched_off]
-    return [{"level": "note", "message": {"text": line}} for line in (*lines, *CAUTIONS)]
+    failed = [_notification("error", unusable_line(netlist)) for netlist in run.unusable]
+    return [*failed, *(_notification("note", line) for line in (*lines, *CAUTIONS))]
+
+
+def _notification(level: str, text: str) -> dict[str, object]:
+    return {"level": level, "message": {"text": text}}
 
 
 def _open_lines(report: LintReport) -> list[str]:

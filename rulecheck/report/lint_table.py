@@ -12,6 +12,7 @@ from rulecheck.report.lint_result import (
     off_line,
     tally_line,
     undecided_lines,
+    unusable_line,
 )
 from rulecheck.report.look import PLAIN, Look
 from rulecheck.report.one_line import visible
@@ -30,9 +31,11 @@ def render(run: LintRun, stream: TextIO, look: Look = PLAIN) -> None:
         if number:
             console.print()
         _print_report(console, run, report, look)
-    print_sections(
-        console, (("Rules switched off", tuple(off_line(off) for off in run.switched_off)),), look
+    sections = (
+        ("Not analysed", tuple(unusable_line(netlist) for netlist in run.unusable)),
+        ("Rules switched off", tuple(off_line(off) for off in run.switched_off)),
     )
+    print_sections(console, sections, look)
     if not look.quiet:
         print_cautions(console, look)
 

@@ -75,7 +75,7 @@ def console_blocks(text: str) -> list[tuple[str, str]]:
 
 
 def test_the_printed_output_is_what_the_commands_print(hut):
-    """`RULECHECK_REGENERATE=1` rewrites the README's blocks; read the difference before committing it."""
+    """`RULECHECK_REGENERATE=1` rewrites the README's blocks; read what changed, then commit."""
     text = README
     for command, printed in console_blocks(README):
         shown = run(*command.split(), folder=hut).stdout

@@ -116,3 +116,10 @@ def test_deviations_excuse_expire_and_go_unused(hut):
     assert "[deviation-unused]" in run("lint", folder=hut).stdout
     part = run("lint", "battery-bus.cir", folder=hut)
     assert "[deviation-unused]" not in part.stdout
+
+
+def test_no_record_is_written_where_a_netlist_could_not_be_analysed(hut):
+    done = run("lint", "battery-bus.cir", "no.cir", "--record", "known.json", folder=hut)
+    assert done.returncode == 2
+    assert "no.cir could not be analysed" in done.stdout
+    assert not (hut / "known.json").exists()

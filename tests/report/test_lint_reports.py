@@ -243,3 +243,21 @@ def test_the_same_datum_of_several_cards_is_one_line():
         "3 checks wait for ratings.voltage of the card C1 (hut.cir:7), C2 (hut.cir:8)",
         f"1 check waits for {RATING.settle}",
     )
+
+
+@pytest.mark.parametrize(
+    "renderer", [lint_table, lint_lines, lint_markdown, lint_sarif, lint_junit]
+)
+def test_a_netlist_that_could_not_be_analysed_is_named(renderer):
+    run = dataclasses.replace(lint_run(), unusable=("pump.cir",))
+    text = rendered(renderer.render, run, Look(200)).replace("\\", "")
+    assert "pump.cir could not be analysed" in text
+
+
+def test_sarif_and_junit_say_that_the_run_was_not_whole():
+    run = dataclasses.replace(lint_run(), unusable=("pump.cir",))
+    log = json.loads(rendered(lint_sarif.render, run))
+    jsonschema.validate(log, sarif_schema())
+    assert log["runs"][0]["invocations"][0]["executionSuccessful"] is False
+    suites = ElementTree.fromstring(rendered(lint_junit.render, run)).findall("testsuite")
+    assert [suite.get("errors") for suite in suites] == ["0", "1"]
