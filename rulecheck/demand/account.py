@@ -1,15 +1,26 @@
 """Give an account of the stiff quantities: range, reason, and how to state what nobody does."""
 
+import math
 from collections.abc import Iterable
 
 from rulecheck.demand.alternating import alternating_parts
 from rulecheck.demand.analysis import Worked
 from rulecheck.demand.demands import Undetermined, Variable
 from rulecheck.demand.groups import forms_of
-from rulecheck.demand.topology import magnetising_name
+from rulecheck.demand.topology import loop_name, magnetising_name
 from rulecheck.demand.voltages import name_of
 from rulecheck.stage import BranchKind, Stage
 from rulecheck.values import Unknown, natural_key
+
+
+def settling_of(worked: Worked) -> Iterable[tuple[str, str, str]]:
+    """The same as `settling_lines`, but for a current of unknown ripple what the ripple needs."""
+    lines = [*settling_lines(worked.stage)]
+    by_name = {name: line for name, _, line in lines}
+    for name, what, line in lines:
+        current = worked.currents.get(name)
+        needs = [by_name.get(item, item) for item in current.settle] if current else []
+        yield name, what, " and ".join(needs) or line
 
 
 def settling_lines(stage: Stage) -> Iterable[tuple[str, str, str]]:
@@ -28,6 +39,12 @@ def settling_lines(stage: Stage) -> Iterable[tuple[str, str, str]]:
         else:
             word = "voltage" if branch.kind is BranchKind.VOLTAGE else "draws"
             yield name, f"{key} of port {branch.port}", f"ports: {{{branch.port}: {{{word}: ...}}}}"
+    for core in stage.transformers:
+        yield (
+            loop_name(core.name),
+            f"current that runs through the windings of {core.name} without magnetising it",
+            f"a coupling below 0.9, which reads {', '.join(core.parts)} as separate inductors",
+        )
     for core in stage.transformers:
         yield (
             magnetising_name(core),
@@ -57,8 +74,9 @@ def account_of_variables(worked: Worked, settle: dict[str, str]) -> tuple[Variab
                 None if own else form,
             )
         )
+    loops = {loop_name(core.name) for core in stage.transformers}
     for name, span in sorted(box.ranges.items(), key=lambda item: natural_key(item[0])):
-        if not name.startswith("i("):
+        if not name.startswith("i(") or name in loops:
             continue
         current = worked.currents.get(name)
         origin = current.origin if current else _port_origin(worked, name)
@@ -85,10 +103,11 @@ def undetermined_quantities(worked: Worked) -> tuple[Undetermined, ...]:
     }
     means = worked.box.means
     used |= {name for known in used & means.keys() for name in means[known].names}
-    used -= means.keys()
+    ripples = worked.box.ripples
+    used -= {name for name in means if math.isfinite(ripples.get(name, 0.0))}
     alternating = {f"i({part})" for part in alternating_parts(worked.stage)}
     found = []
-    for name, what, line in settling_lines(worked.stage):
+    for name, what, line in settling_of(worked):
         span = worked.box.ranges.get(name)
         if span is None or span.bounded or name not in used:
             continue

@@ -9,7 +9,7 @@ from rulecheck.demand.balance import unbalanced
 from rulecheck.demand.currents import (
     CurrentRange,
     Means,
-    Surroundings,
+    currents_without_route,
     derive_means,
     range_of_current,
 )
@@ -23,6 +23,7 @@ from rulecheck.demand.readings import (
     Reading,
     disabled,
     failures,
+    feasible,
     inequalities,
 )
 from rulecheck.demand.routes import Carrier, Route, find_carriers, find_routes
@@ -35,10 +36,11 @@ from rulecheck.demand.states import (
     find_states,
 )
 from rulecheck.demand.stiff import Box
+from rulecheck.demand.surroundings import Surroundings
 from rulecheck.demand.topology import Cluster, Topology, build_topology
 from rulecheck.demand.voltages import Voltages, derive_voltages, name_of
 from rulecheck.stage import Position, Stage
-from rulecheck.values import AffineForm
+from rulecheck.values import AffineForm, Interval
 
 _MOST_RECTIFIER_STATES = 32
 
@@ -99,7 +101,10 @@ def work_out(stage: Stage, pulsed: frozenset[str] = frozenset()) -> Worked:
     cases = {name: cases_for(found, by_port) for name, found in local.items()}
     routed = _Routed(routes, local, cases)
     reading, failed = _choose_reading(topology, states, routed, box)
+    box = _with_peaks(box, reading, connecting)
     currents = _currents(stage, routed, means, box, reading)
+    given = {name_of(b) for b in stage.branches if b.given is not None}
+    currents |= currents_without_route(carriers, currents, given, means, box)
     box = _with_currents(box, currents)
     return Worked(
         stage,
@@ -317,6 +322,20 @@ def _currents(
         )
         found[carrier.name] = range_of_current(carrier, means, around)
     return found
+
+
+def _with_peaks(box: Box, reading: Reading, connecting: Iterable[int]) -> Box:
+    """A capacitor that diodes connect to known voltages has one that some state gives it."""
+    for index in connecting:
+        spans: dict[str, Interval] = {}
+        for _, narrowed in feasible(reading, index, box):
+            for name in narrowed.ranges.keys() & box.unsettled:
+                span = narrowed.ranges[name]
+                if name.startswith("v(") and span.bounded:
+                    spans[name] = spans[name].hull(span) if name in spans else span
+        ranges = {**box.ranges, **spans}
+        box = replace(box, ranges=ranges, unsettled=box.unsettled - spans.keys())
+    return box
 
 
 def _with_currents(box: Box, currents: Mapping[str, CurrentRange]) -> Box:

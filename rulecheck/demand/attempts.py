@@ -62,7 +62,6 @@ def _followers(worked: Worked) -> tuple[str, ...]:
         if link.position
         for net in (link.position.start, link.position.end)
     }
-    unstated = {branch.name for branch in worked.voltages.undetermined}
     return tuple(
         branch.name
         for branch in worked.stage.branches
@@ -70,7 +69,7 @@ def _followers(worked: Worked) -> tuple[str, ...]:
         and branch.part
         and {branch.start, branch.end} & nets
         and worked.voltages.forms[branch.name].names == (name_of(branch),)
-        and (branch.name in unstated or _is_small(branch))
+        and _is_small(branch)
     )
 
 

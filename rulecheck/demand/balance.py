@@ -7,8 +7,9 @@ the convex hull of the states' voltage vectors; by Caratheodory's theorem one st
 there are carriers is enough to show it.
 """
 
-from collections.abc import Iterator, Mapping, Sequence
-from itertools import combinations
+import math
+from collections.abc import Hashable, Iterator, Mapping, Sequence
+from itertools import combinations, product
 
 import numpy as np
 import numpy.typing as npt
@@ -16,9 +17,13 @@ import numpy.typing as npt
 from rulecheck.demand.readings import Failure, Reading, across, feasible
 from rulecheck.demand.routes import Carrier, Route
 from rulecheck.demand.sign_cases import Case
+from rulecheck.demand.states import RawState
 from rulecheck.demand.stiff import Box
+from rulecheck.demand.unions import Unions
+from rulecheck.values import AffineForm, total_of
 
 Vectors = npt.NDArray[np.float64]
+_MOST_MIXTURES = 300
 _MOST_VECTORS = 16
 _MOST_CARRIERS = 4
 _SHARE = 1e-6
@@ -31,44 +36,66 @@ def unbalanced(
     cases: Mapping[str, Sequence[Case]],
 ) -> list[Failure]:
     """Groups of which no sharing of the period balances all carriers, in some required case."""
-    by_cluster: dict[int, list[tuple[Carrier, Route]]] = {}
-    for carrier, route in routes:
-        if carrier.part and len(route.steps) == 1 and not route.floating:
-            by_cluster.setdefault(route.steps[0].cluster, []).append((carrier, route))
+    switched = [(c, r) for c, r in routes if c.part and r.steps and not r.floating]
+    sets = [frozenset(step.cluster for step in route.steps) for _, route in switched]
     found = []
-    for index, mine in sorted(by_cluster.items()):
+    for clusters in _united(sets):
+        mine = [item for item, own in zip(switched, sets, strict=True) if own <= clusters]
         if 2 <= len(mine) <= _MOST_CARRIERS:
-            found += _unbalanced_in(reading, index, mine, box, cases[mine[0][0].name])
+            found += _unbalanced_in(reading, sorted(clusters), mine, box, cases[mine[0][0].name])
     return found
+
+
+def _united(sets: Sequence[frozenset[int]]) -> list[frozenset[int]]:
+    """The sets, those that share a member made one."""
+    parent = Unions([])
+    for own in sets:
+        first, *others = sorted(own)
+        for other in others:
+            parent.join(first, other)
+    classes: dict[Hashable, set[int]] = {}
+    for index in sorted(frozenset().union(*sets)):
+        classes.setdefault(parent.root(index), set()).add(index)
+    return [frozenset(members) for members in classes.values()]
 
 
 def _unbalanced_in(
     reading: Reading,
-    index: int,
+    clusters: Sequence[int],
     mine: Sequence[tuple[Carrier, Route]],
     box: Box,
     cases: Sequence[Case],
 ) -> list[Failure]:
+    failing = []
     for case in cases:
-        options = feasible(reading, index, case.narrow(box))
-        if not options:
-            continue
-        forms = [
-            [route.fixed + across(route.steps[0], state) for _, route in mine]
-            for state, _ in options
-        ]
-        names = sorted({n for row in forms for form in row for n in form.names})
         narrow = case.narrow(box)
-        if any(not narrow.ranges[name].bounded for name in names):
-            continue
-        weights = np.array(
-            [[[dict(f.terms).get(n, 0.0) for n in names] for f in row] for row in forms]
-        )
-        if not any(_holds_zero(weights @ point) for point in _samples(narrow, names)):
-            together = " and ".join(carrier.name for carrier, _ in mine)
-            why = f"no sharing of the period among the states balances {together} together"
-            return [Failure(mine[0][0], case, (index,), why)]
-    return []
+        options = [[state for state, _ in feasible(reading, k, narrow)] for k in clusters]
+        if math.prod(len(states) for states in options) > _MOST_MIXTURES:
+            return []
+        forms = [
+            [_voltage(route, dict(zip(clusters, mixture, strict=True))) for _, route in mine]
+            for mixture in product(*options)
+        ]
+        if forms and not _can_balance(forms, narrow):
+            failing.append(case)
+    if not failing:
+        return []
+    together = " and ".join(carrier.name for carrier, _ in mine)
+    why = f"no sharing of the period among the states balances {together} together"
+    always = len(failing) == len(cases)
+    return [Failure(mine[0][0], failing[0], tuple(clusters), why, always)]
+
+
+def _voltage(route: Route, states: Mapping[int, RawState]) -> AffineForm:
+    return total_of([route.fixed, *(across(step, states[step.cluster]) for step in route.steps)])
+
+
+def _can_balance(forms: Sequence[Sequence[AffineForm]], box: Box) -> bool:
+    names = sorted({n for row in forms for form in row for n in form.names})
+    if any(not box.ranges[name].bounded for name in names):
+        return True
+    weights = np.array([[[dict(f.terms).get(n, 0.0) for n in names] for f in row] for row in forms])
+    return any(_holds_zero(weights @ point) for point in _samples(box, names))
 
 
 def _samples(box: Box, names: Sequence[str]) -> Iterator[Vectors]:

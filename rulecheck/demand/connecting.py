@@ -34,12 +34,28 @@ def connecting_demand(
             0.0 if position.free_forward else math.inf,
         )
         off_range = off_range.meet(limits) or off_range
-    off = [Sample(RawState((), _NOTHING), form, off_range, box)]
+    off = _held_up_by_rivals(position, worked) or [
+        Sample(RawState((), _NOTHING), form, off_range, box)
+    ]
     on = _on_samples(position, worked, box, box.range_of(form), bool(assumed))
     demand = from_samples(position, off, on, settle)
     if not on and (assumed or box.range_of(form).contains(0.0)):
         demand = _current_unknown(demand, position)
     return demand, assumed
+
+
+def _held_up_by_rivals(position: Position, worked: Worked) -> list[Sample]:
+    """Of diodes that feed one capacitor, an off one stands against the source that feeds it."""
+    rigid, box = worked.voltages.potentials, worked.box
+    samples = []
+    for rival in worked.voltages.rivals.get(position.name, ()):
+        reference = next(b for b in worked.stage.branches if b.start == position.end and b.part)
+        own = rigid.offset(position.start) - rigid.offset(reference.end)
+        form = own - rival
+        span = box.range_of(form)
+        limited = Interval(min(span.low, 0.0), min(span.high, 0.0))
+        samples.append(Sample(RawState((), _NOTHING), form, limited, box))
+    return samples
 
 
 def _difference(position: Position, worked: Worked) -> tuple[AffineForm, str]:

@@ -12,11 +12,12 @@ from dataclasses import dataclass
 import numpy as np
 import numpy.typing as npt
 
-from rulecheck.demand.topology import Cluster, Link
+from rulecheck.demand.topology import Cluster, Link, loop_name
 from rulecheck.values import AffineForm
 
 Matrix = npt.NDArray[np.float64]
 _RANK = 1e-9
+_LOOSE = 1e-6
 _RESIDUAL = 1e-7
 
 
@@ -73,6 +74,9 @@ class _System:
             row[self._column[name]] = coefficient
         return row
 
+    def column(self, name: str) -> int:
+        return self._column[name]
+
     def form(self, row: Matrix) -> AffineForm:
         size = float(np.abs(row).max(initial=0.0))
         if size < _RESIDUAL * 1e-3:
@@ -88,7 +92,8 @@ class _System:
 
 def _names(cluster: Cluster) -> tuple[str, ...]:
     forms = [link.step for link in cluster.links] + list(cluster.into.values())
-    return tuple(sorted({name for form in forms for name in form.names}))
+    loops = {loop_name(link.core) for link in cluster.links if link.core}
+    return tuple(sorted({name for form in forms for name in form.names} | loops))
 
 
 def solve_state(
@@ -113,6 +118,7 @@ def solve_state(
     current = tuple(form for form in forms[voltage_rows:] if not vanishes(form))
     if current:
         return Solution({}, {}, {}, voltage, current)
+    unknowns, free = _with_loops(system, unknowns, free)
     unknowns = _share_evenly(system, on, unknowns, free)
     return Solution(
         {k: system.form(row) for k, row in _off_voltages(system, on, unknowns).items()},
@@ -180,7 +186,7 @@ def _share_evenly(system: _System, on: frozenset[str], unknowns: Matrix, free: M
         if link.position is not None and link.name not in on:
             row = (system.across(link), system.vector(link.step))
             (gated if link.position.gated else diodes).append(row)
-        elif link.name in system.currents:
+        elif link.name in system.currents and not link.core:
             gated.append((system.through(link), np.zeros(len(system.names))))
     for rows in (gated, diodes):
         if free.size and rows:
@@ -190,6 +196,27 @@ def _share_evenly(system: _System, on: frozenset[str], unknowns: Matrix, free: M
             unknowns = unknowns - free @ step
             free = free @ left
     return unknowns
+
+
+def _with_loops(system: _System, unknowns: Matrix, free: Matrix) -> tuple[Matrix, Matrix]:
+    """Let a current that runs freely through windings be a variable of its own.
+
+    Only currents of parallel positions share evenly; what circulates through windings without
+    magnetising their core is fixed by nothing in the state. Gives the solution, and what is still
+    free in it.
+    """
+    for core, windings in _cores(system.cluster).items():
+        rows = [system.currents[w.name] for w in windings]
+        if not free.size or np.abs(free[rows]).max() < _LOOSE:
+            continue
+        row = rows[int(np.abs(free[rows]).max(axis=1).argmax())]
+        along = free @ free[row]
+        unknowns = unknowns.copy()
+        unknowns[:, system.column(loop_name(core))] += along / along[row]
+        _, sizes, directions = np.linalg.svd(free[rows], full_matrices=True)
+        held = int(np.sum(sizes > _LOOSE))
+        free = free @ directions[held:].T
+    return unknowns, free
 
 
 def _off_voltages(system: _System, on: frozenset[str], unknowns: Matrix) -> dict[str, Matrix]:

@@ -6,7 +6,7 @@ from rulecheck.demand.means import current_names
 from rulecheck.demand.power import PortCurrents, find_port_currents
 from rulecheck.demand.sign_cases import voltage_names
 from rulecheck.demand.stiff import EVERYTHING, Box, PhaseSet
-from rulecheck.demand.topology import magnetising_name
+from rulecheck.demand.topology import loop_name, magnetising_name
 from rulecheck.demand.voltages import Voltages, name_of
 from rulecheck.stage import BranchKind, Port, PortKind, Stage
 from rulecheck.values import Interval
@@ -20,12 +20,14 @@ def first_box(stage: Stage, voltages: Voltages) -> tuple[Box, PortCurrents]:
     for branch in stage.branches:
         name = name_of(branch)
         if branch.kind is BranchKind.VOLTAGE or branch.kind is BranchKind.CURRENT:
-            ranges[name] = branch.given or EVERYTHING
+            ranges[name] = branch.given or voltages.ranges.get(name, EVERYTHING)
         if branch.kind is not BranchKind.RESISTOR and branch.given is None:
             unsettled.add(name)
+    unsettled -= voltages.ranges.keys()
     for core in stage.transformers:
-        ranges[magnetising_name(core)] = EVERYTHING
-        unsettled.add(magnetising_name(core))
+        for name in (magnetising_name(core), loop_name(core.name)):
+            ranges[name] = EVERYTHING
+            unsettled.add(name)
     sets = tuple(_phase_sets(stage.ports))
     box = Box(ranges, phase_sets=sets, unsettled=frozenset(unsettled))
     found = find_port_currents(stage.ports, stage.branches, voltages, box, stage.efficiency)

@@ -34,7 +34,7 @@ def group_of(worked: Worked, index: int) -> Group:
     analysed = bool(raw) and not failed and index not in worked.too_large
     if not analysed:
         why = why_not_analysed(worked, index) if names else ""
-        return Group(names, (), False, why, cannot_work=index not in worked.too_large)
+        return Group(names, (), False, why, cannot_work=_cannot_work(worked, index))
     box = worked.box.only({n for s in raw for f in forms_of(s) for n in f.names})
     legal = {state.on for state, _ in feasible(worked.reading, index, box)}
     drawn = replace(worked.reading, amended={})
@@ -48,6 +48,17 @@ def group_of(worked: Worked, index: int) -> Group:
     forbidden = tuple(s.on for s in states if not s.available) if relaxed else ()
     forbidding = _forbidding(worked, index, forbidden)
     return Group(names, states, True, "", forbidden_states=forbidden, forbidding=forbidding)
+
+
+def _cannot_work(worked: Worked, index: int) -> bool:
+    """True where it is sure: no legal state, or a balance that fails in all of its cases.
+
+    A balance that fails only in some cases may be that of a current which rests in them.
+    """
+    if index in worked.too_large:
+        return False
+    failures = [failure for failure in worked.failures if index in failure.clusters]
+    return not failures or any(failure.always for failure in failures)
 
 
 def _forbidding(

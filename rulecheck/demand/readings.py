@@ -33,6 +33,8 @@ class Failure:
     case: Case
     clusters: tuple[int, ...]
     why: str
+    always: bool = True
+    """It fails in every one of the cases that the carrier has to serve."""
 
 
 class Amendment(StrEnum):
@@ -186,13 +188,18 @@ def failures(
         if not clusters:
             continue
         controlled = any(reading.clusters[index].gated for index in clusters)
-        for case in _instants(cases_of[carrier.name], box, controlled):
-            span = reach(reading, route, case.narrow(box))
-            why = _why_not_fed(carrier, span, box) if carrier.feeds else _why_not(span)
-            if why:
-                found.append(Failure(carrier, case, clusters, why))
-                break
+        cases = _instants(cases_of[carrier.name], box, controlled)
+        whys = [_why_in(reading, carrier, route, case.narrow(box), box) for case in cases]
+        failing = [(case, why) for case, why in zip(cases, whys, strict=True) if why]
+        if failing:
+            case, why = failing[0]
+            found.append(Failure(carrier, case, clusters, why, len(failing) == len(cases)))
     return found
+
+
+def _why_in(reading: Reading, carrier: Carrier, route: Route, narrow: Box, box: Box) -> str:
+    span = reach(reading, route, narrow)
+    return _why_not_fed(carrier, span, box) if carrier.feeds else _why_not(span)
 
 
 def _instants(cases: Sequence[Case], box: Box, controlled: bool) -> list[Case]:

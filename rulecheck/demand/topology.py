@@ -121,6 +121,11 @@ def magnetising_name(core: Transformer) -> str:
     return f"i(magnetising {core.name})"
 
 
+def loop_name(core: str) -> str:
+    """A current that may run through windings of a core without magnetising it."""
+    return f"i(loop through {core})"
+
+
 def _injections(
     branches: Sequence[Branch], transformers: Sequence[Transformer], rigid: Offsets
 ) -> dict[str, AffineForm]:

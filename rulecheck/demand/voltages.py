@@ -30,6 +30,10 @@ class Voltages:
     charged_through: Mapping[str, tuple[str, AffineForm]]
     """Connecting position -> the net before it, and that net's voltage over the far side's
     discharged capacitor."""
+    ranges: Mapping[str, Interval]
+    """Of variables that no branch states but that follow from stated ones."""
+    rivals: Mapping[str, tuple[AffineForm, ...]]
+    """By diode into a capacitor: what else can hold the capacitor up while it is off."""
 
 
 def name_of(branch: Branch) -> str:
@@ -47,6 +51,8 @@ class _Found:
         self.rigid = Offsets()
         self.averages = Offsets()
         self.charged_through: dict[str, tuple[str, AffineForm]] = {}
+        self.ranges: dict[str, Interval] = {}
+        self.rivals: dict[str, tuple[AffineForm, ...]] = {}
 
     def settle(self, branch: Branch, form: AffineForm, origin: str) -> None:
         self.forms[branch.name] = form
@@ -85,7 +91,14 @@ def derive_voltages(
     for branch in left:
         found.state(branch, "nobody states it and nothing derives it")
     return Voltages(
-        found.forms, found.origins, left, found.rigid, found.averages, found.charged_through
+        found.forms,
+        found.origins,
+        left,
+        found.rigid,
+        found.averages,
+        found.charged_through,
+        found.ranges,
+        found.rivals,
     )
 
 
@@ -176,17 +189,34 @@ def _through_ties(
     """A capacitor behind a connecting switch has, in operation, the voltage before the switch.
 
     Only where the switch's far end stands rigidly over the capacitor's second net, by a voltage
-    that keeps its sign: behind an alternating one the capacitor would hold a peak.
+    that keeps its sign: behind an alternating one the capacitor would hold a peak. Behind several
+    diodes it follows the highest of the voltages before them.
     """
     for branch in left:
-        for position in positions:
-            form = _before(branch, position, found.rigid)
-            if form is None or any(_alternates(voltages.get(n)) for n in form.names):
-                continue
+        before = [(p, form) for p in positions if (form := _before(branch, p, found.rigid))]
+        if any(_alternates(voltages.get(n)) for _, form in before for n in form.names):
+            continue
+        if len(before) == 1:
+            position, form = before[0]
             found.settle(branch, form, f"equal to {form.text()} while {position.name} connects it")
-            before = position.end if position.start == branch.start else position.start
-            found.charged_through[position.name] = (before, form)
-            break
+            net = position.end if position.start == branch.start else position.start
+            found.charged_through[position.name] = (net, form)
+        elif before and all(not p.gated and p.end == branch.start for p, _ in before):
+            spans = [_range(form, voltages) for _, form in before]
+            names = " and ".join(p.name for p, _ in before)
+            found.state(branch, f"the highest voltage before {names}")
+            found.ranges[name_of(branch)] = Interval(
+                max(span.low for span in spans), max(span.high for span in spans)
+            )
+            for p, _ in before:
+                found.rivals[p.name] = tuple(form for q, form in before if q is not p)
+
+
+def _range(form: AffineForm, voltages: Mapping[str, Interval]) -> Interval:
+    total = Interval(0.0, 0.0)
+    for name, coefficient in form.terms:
+        total += voltages[name].scaled(coefficient)
+    return total
 
 
 def _alternates(voltage: Interval | None) -> bool:
