@@ -1,20 +1,16 @@
 """Ranges of the stiff currents: stated, mean plus ripple, clipped where a diode stops them."""
 
 import math
-from collections.abc import Mapping, Sequence
+from collections.abc import Collection, Mapping, Sequence
 from dataclasses import dataclass, replace
 
+from rulecheck.demand.evaluate import SMALL
 from rulecheck.demand.means import Unknowns, find_means, magnetising_means
-from rulecheck.demand.readings import Reading, sustainable
-from rulecheck.demand.ripple import swing
-from rulecheck.demand.routes import Carrier, Route
-from rulecheck.demand.sign_cases import Case
+from rulecheck.demand.routes import Carrier
 from rulecheck.demand.stiff import EVERYTHING, Box
-from rulecheck.stage import Stage, Transformer
+from rulecheck.demand.surroundings import Ripple, Surroundings, ripple_of
+from rulecheck.stage import Transformer
 from rulecheck.values import AffineForm, Interval, write_quantity
-
-_MUCH_SLOWER = 3.0
-"""A leg that switches this many times slower stands still within a period of the others."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -102,34 +98,17 @@ def _same_rails(unknowns: Unknowns, names: Sequence[str], net: str) -> bool:
 class CurrentRange:
     range: Interval
     ripple: float
+    """Half of it, peak to peak, in amperes; infinite where nobody can tell."""
     origin: str
     settled: bool
     """False where not even the sign is known."""
-
-
-@dataclass(frozen=True, slots=True)
-class Surroundings:
-    """What decides one carrier's range besides its mean."""
-
-    stage: Stage
-    reading: Reading
-    route: Route
-    box: Box
-    cases: Sequence[Case]
-    alternates: bool
-    """It carries no DC: a winding or a capacitor is in series with it."""
-
-    def keeps(self, name: str, span: Interval, positive: bool) -> bool:
-        """True where a current of that sign, within the span, can be kept."""
-        wide = self.box.with_ranges({name: span})
-        return bool(self.route.steps) and sustainable(
-            self.reading, self.route, wide, self.cases, name, positive
-        )
+    settle: tuple[str, ...] = ()
+    """What would settle the ripple: sheet lines, or variables by name."""
 
 
 def range_of_current(carrier: Carrier, means: Means, around: Surroundings) -> CurrentRange:
     """The whole instantaneous range of one carrier that nobody states."""
-    ripple, note = _ripple(carrier, around)
+    ripple = ripple_of(carrier, around)
     form = means.forms.get(carrier.name)
     if form is not None:
         mean = around.box.range_of(form)
@@ -139,9 +118,64 @@ def range_of_current(carrier: Carrier, means: Means, around: Surroundings) -> Cu
         origin = f"mean, rectified: {means.rectified[carrier.name][0].text()} or its negative"
     else:
         return _without_mean(carrier, ripple, means, around)
-    span = Interval(mean.low - ripple, mean.high + ripple)
-    note = f", +- {write_quantity(ripple, 'A')} of ripple" if ripple else note
-    return _clipped(carrier, around, CurrentRange(span, ripple, origin + note, True))
+    return _around_mean(carrier, around, mean, ripple, origin)
+
+
+def _around_mean(
+    carrier: Carrier, around: Surroundings, mean: Interval, ripple: Ripple, origin: str
+) -> CurrentRange:
+    if not ripple.known:
+        return _without_ripple(carrier, around, mean, ripple, origin)
+    half = ripple.half
+    note = f", +- {write_quantity(half, 'A')} of ripple" if half else ripple.note
+    span = Interval(mean.low - half, mean.high + half)
+    return _clipped(carrier, around, CurrentRange(span, half, origin + note, True))
+
+
+def _without_ripple(
+    carrier: Carrier, around: Surroundings, mean: Interval, ripple: Ripple, origin: str
+) -> CurrentRange:
+    """Ripple of unknown size: no magnitude is known, and the sign only where it cannot turn."""
+    found = CurrentRange(EVERYTHING, ripple.half, origin + ripple.note, False, ripple.settle)
+    up, down = (
+        around.keeps(carrier.name, EVERYTHING, positive)
+        and around.alternates_with(carrier.name, positive)
+        for positive in (True, False)
+    )
+    half = EVERYTHING.part_of_sign(up)
+    if up != down and half is not None and half.meet(mean) is not None:
+        origin = f"{found.origin}; a diode stops it at zero"
+        return replace(found, range=half, origin=origin, settled=True)
+    return replace(found, settled=_takes_both_signs(mean))
+
+
+def _takes_both_signs(mean: Interval) -> bool:
+    """True where ripple of any size leaves both signs, neither of them small."""
+    small = SMALL * mean.magnitude if mean.bounded else 0.0
+    return mean.low <= -small and mean.high >= small
+
+
+def currents_without_route(
+    carriers: Sequence[Carrier],
+    found: Mapping[str, CurrentRange],
+    stated: Collection[str],
+    means: Means,
+    box: Box,
+) -> dict[str, CurrentRange]:
+    """Inductors in series with a port of unknown voltage: a mean, and ripple of unknown size."""
+    more: dict[str, CurrentRange] = {}
+    for carrier in carriers:
+        mean = means.forms.get(carrier.name)
+        if carrier.name in found or carrier.name in stated or carrier.port or mean is None:
+            continue
+        ports = sorted({c.port for c in carriers if c.port and c.name in mean.names})
+        settle = tuple(f"ports: {{{port}: {{voltage: ...}}}}" for port in ports)
+        origin = (
+            f"{means.origins[carrier.name]}, its ripple unknown: no voltage is stated beyond it"
+        )
+        both = _takes_both_signs(box.range_of(mean))
+        more[carrier.name] = CurrentRange(EVERYTHING, math.inf, origin, both, settle)
+    return more
 
 
 def _hull(box: Box, forms: Sequence[AffineForm]) -> Interval:
@@ -149,41 +183,6 @@ def _hull(box: Box, forms: Sequence[AffineForm]) -> Interval:
     for form in forms[1:]:
         span = span.hull(box.range_of(form))
     return span
-
-
-def _ripple(carrier: Carrier, around: Surroundings) -> tuple[float, str]:
-    """Half the peak-to-peak ripple in amperes, or why none is included."""
-    if not around.route.steps:
-        return 0.0, ""
-    frequencies = _frequencies(around)
-    fastest = max(frequencies, default=0.0)
-    if not carrier.inductance or not fastest:
-        missing = "inductance" if not carrier.inductance else "switching frequency"
-        return 0.0, f", ripple not included: the {missing} is not stated"
-    boxes = [case.narrow(around.box) for case in around.cases]
-    slow = frozenset(k for k, f in enumerate(frequencies) if f < fastest / _MUCH_SLOWER)
-    volts = swing(around.reading, around.route, boxes, slow)
-    lowest = min(f for k, f in enumerate(frequencies) if k not in slow)
-    return volts / (carrier.inductance * lowest) / 2, ""
-
-
-def _frequencies(around: Surroundings) -> list[float]:
-    """The switching frequency of each step of the route, hertz; 0 where nobody states it."""
-    found = []
-    for step in around.route.steps:
-        nets = {
-            net
-            for link in around.reading.clusters[step.cluster].positions
-            if link.position
-            for net in (link.position.start, link.position.end)
-        }
-        own = [
-            switching.frequency
-            for net, switching in around.stage.leg_switching.items()
-            if net in nets and switching.frequency
-        ]
-        found.append(min(own, default=around.stage.switching.frequency or 0.0))
-    return found
 
 
 def _by_positions(carrier: Carrier, means: Means, around: Surroundings) -> Interval | None:
@@ -220,23 +219,27 @@ def _alone(
 
 
 def _without_mean(
-    carrier: Carrier, ripple: float, means: Means, around: Surroundings
+    carrier: Carrier, ripple: Ripple, means: Means, around: Surroundings
 ) -> CurrentRange:
     """A magnetising current is its ripple; another current may still have a known sign."""
     flow = _by_positions(carrier, means, around)
     if flow is not None:
         why = "at least the mean current of a position that carries it; magnitude not stated"
-        return CurrentRange(flow, 0.0, why, True)
+        return _around_mean(carrier, around, flow, ripple, why)
     up, down = (around.keeps(carrier.name, EVERYTHING, positive) for positive in (True, False))
-    if carrier.name.startswith("i(magnetising") and ripple > 0.0 and (up or down):
-        low = -ripple if up and down else 0.0 if up else -2 * ripple
-        high = ripple if up and down else 2 * ripple if up else 0.0
+    magnetising = carrier.name.startswith("i(magnetising")
+    half = ripple.half
+    if magnetising and 0.0 < half < math.inf and (up or down):
+        low = -half if up and down else 0.0 if up else -2 * half
+        high = half if up and down else 2 * half if up else 0.0
         return CurrentRange(Interval(low, high), 0.0, "the ripple of a flux that balances", True)
+    settle = ripple.settle if magnetising else ()
     if up != down:
-        half = EVERYTHING.part_of_sign(up) or EVERYTHING
-        return CurrentRange(half, 0.0, "only this sign can be kept; magnitude not stated", True)
+        side = EVERYTHING.part_of_sign(up) or EVERYTHING
+        why = "only this sign can be kept; magnitude not stated"
+        return CurrentRange(side, 0.0, why, True, settle)
     why = "alternates; magnitude not stated" if around.alternates else "nobody states it"
-    return CurrentRange(EVERYTHING, 0.0, why, around.alternates)
+    return CurrentRange(EVERYTHING, 0.0, why, around.alternates, settle)
 
 
 def _clipped(carrier: Carrier, around: Surroundings, found: CurrentRange) -> CurrentRange:

@@ -6,17 +6,18 @@ from itertools import pairwise
 
 import networkx as nx
 
+from rulecheck.demand.account import settling_of
 from rulecheck.demand.analysis import Worked
 from rulecheck.demand.demands import FreeShort, InterruptedCurrent, PositionDemand
 from rulecheck.demand.readings import inequalities
-from rulecheck.demand.routes import Carrier
+from rulecheck.demand.routes import Carrier, find_carriers
 from rulecheck.demand.states import RawState
 from rulecheck.demand.stiff import Box, tightened
 from rulecheck.demand.topology import Cluster, Link
 from rulecheck.demand.voltages import name_of
 from rulecheck.parts import Kind
 from rulecheck.stage import BranchKind, Position
-from rulecheck.values import AffineForm, Interval, natural_key
+from rulecheck.values import AffineForm, Interval, Unknown, natural_key, variable
 
 
 def find_interrupted(
@@ -25,15 +26,22 @@ def find_interrupted(
     """Currents that all gates off would interrupt, and those that no device here could carry.
 
     Where every position that could carry a current must also block both polarities, no free path
-    can exist: such a stage commutates by overlap or in steps, and that is only noted.
+    can exist: such a stage commutates by overlap or in steps, and that is only noted. Of a current
+    whose sign nobody knows both directions are tried, and the current itself stays unknown.
     """
     found: dict[tuple[str, str], InterruptedCurrent] = {}
     noted: list[str] = []
-    carriers = {carrier.name: carrier for carrier, _ in worked.routes}
+    carriers = {
+        carrier.name: carrier
+        for carrier in find_carriers(
+            worked.stage.branches, worked.stage.transformers, worked.stage.ports
+        )
+    }
+    settle = {name: line for name, _, line in settling_of(worked)}
     for index, cluster in enumerate(worked.topology.clusters):
         if not cluster.gated or index in worked.connecting or not worked.reading.states[index]:
             continue
-        for item in _interrupted_in(worked, index, carriers):
+        for item in _interrupted_in(worked, index, carriers, settle):
             if _could_freewheel(item.positions, demands):
                 before = found.get((item.carrier, item.direction))
                 more = before.positions if before else ()
@@ -49,7 +57,7 @@ def find_interrupted(
 
 
 def _interrupted_in(
-    worked: Worked, index: int, carriers: Mapping[str, Carrier]
+    worked: Worked, index: int, carriers: Mapping[str, Carrier], settle: Mapping[str, str]
 ) -> Iterator[InterruptedCurrent]:
     cluster = worked.topology.clusters[index]
     names = {n for form in cluster.into.values() for n in form.names}
@@ -61,7 +69,18 @@ def _interrupted_in(
         for positive in (True, False):
             item = _interrupted(worked, index, box, carrier, positive)
             if item is not None:
-                yield item
+                yield replace(item, within=_known(item.within, carrier, box, settle))
+
+
+def _known(
+    within: Interval | Unknown, carrier: Carrier, box: Box, settle: Mapping[str, str]
+) -> Interval | Unknown:
+    """The range, or what would settle it where its sign is not known."""
+    open_names = box.says_nothing(variable(carrier.name))
+    if not open_names:
+        return within
+    lines = " and ".join(settle.get(name, name) for name in open_names)
+    return Unknown(f"current of {carrier.part or carrier.port}", lines)
 
 
 def _all_names(cluster: Cluster, worked: Worked, index: int) -> set[str]:
@@ -78,8 +97,6 @@ def _interrupted(
     worked: Worked, index: int, box: Box, carrier: Carrier, positive: bool
 ) -> InterruptedCurrent | None:
     span = box.ranges[carrier.name]
-    if carrier.name in box.unsettled and not span.bounded:
-        return None
     small = 0.02 * span.magnitude if span.bounded else 1e-3
     signed = span.part_of_sign(positive, small)
     if signed is None or small == 0.0:

@@ -16,7 +16,7 @@ import numpy.typing as npt
 from rulecheck.demand.readings import Reading, feasible
 from rulecheck.demand.routes import Route, Step
 from rulecheck.demand.stiff import Box
-from rulecheck.values import AffineForm, total_of
+from rulecheck.values import AffineForm, total_of, variable
 
 _MOST_COMBINATIONS = 64
 _MOST_POINTS = 20000
@@ -43,6 +43,22 @@ def swing(
     if route.floating:
         return max((_own_leg_swing(reading, route, box) for box in boxes), default=0.0)
     return max((_swing_in(reading, route, box, slow) for box in boxes), default=0.0)
+
+
+def open_voltages(reading: Reading, route: Route, boxes: Sequence[Box]) -> tuple[str, ...]:
+    """The variables in the levels that the carrier sees whose magnitude nobody knows."""
+    return tuple(sorted({name for box in boxes for name in _open_in(reading, route, box)}))
+
+
+def _open_in(reading: Reading, route: Route, box: Box) -> set[str]:
+    names = {n for form in levels_seen(reading, route, box) for n in form.names}
+    return {name for name in names if not box.range_of(variable(name)).bounded}
+
+
+def levels_seen(reading: Reading, route: Route, box: Box) -> frozenset[AffineForm]:
+    """The different voltages that the carrier sees over the states that the box leaves."""
+    choices = [_levels(reading, step, box) for step in route.steps]
+    return frozenset(level.form for level in _combined(route.fixed, choices))
 
 
 def _own_leg_swing(reading: Reading, route: Route, box: Box) -> float:
@@ -132,14 +148,15 @@ def _repeats(levels: Sequence[Level], volts: Grid, up: Grid) -> Grid:
 def _grid(levels: Sequence[Level], box: Box) -> tuple[tuple[str, ...], Grid] | None:
     """Sample points of the variables: ends and an even spread between them."""
     names = tuple(sorted({n for level in levels for n in level.form.names}))
-    if any(not box.ranges[n].bounded for n in names):
+    spans = {name: box.range_of(variable(name)) for name in names}
+    if not all(span.bounded for span in spans.values()):
         return None
-    spread = [n for n in names if box.ranges[n].high > box.ranges[n].low]
+    spread = [name for name, span in spans.items() if span.high > span.low]
     each = 129 if len(spread) == 1 else max(2, int(_MOST_POINTS ** (1 / max(1, len(spread)))))
     each = min(each, 129)
     axes = [
-        np.linspace(box.ranges[n].low, box.ranges[n].high, each if n in spread else 1)
-        for n in names
+        np.linspace(span.low, span.high, each if name in spread else 1)
+        for name, span in spans.items()
     ]
     if not axes:
         return names, np.zeros((0, 1))

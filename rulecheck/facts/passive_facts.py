@@ -1,5 +1,7 @@
 """Facts of inductors, capacitors and resistors: what they see beside what they are rated for."""
 
+import math
+
 from rulecheck.demand import Variable
 from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.inputs import Inputs, stated_number
@@ -103,7 +105,7 @@ def _inductor(inputs: Inputs, part: Part, variables: dict[str, Variable]) -> Sub
         "inductance": part.value,
         "current": span,
         "largest-current": _magnitude(span),
-        "ripple": variable.ripple if variable else Unknown(f"ripple of {part.name}", "its current"),
+        "ripple": _ripple(part, variable),
         "saturation-current": stated_number(part, "ratings.current"),
         "rms-rating": stated_number(part, "ratings.rms-current"),
         "power": part.name in inputs.branch_parts,
@@ -114,6 +116,14 @@ def _inductor(inputs: Inputs, part: Part, variables: dict[str, Variable]) -> Sub
         if item.carrier == part.name
     )
     return _subject(inputs, part, values, {"interruptions": interrupted})
+
+
+def _ripple(part: Part, variable: Variable | None) -> Value:
+    if variable is not None and math.isfinite(variable.ripple):
+        return variable.ripple
+    span = variable.range if variable is not None else None
+    settle = span.settle if isinstance(span, Unknown) else "its current"
+    return Unknown(f"ripple of {part.name}", settle)
 
 
 def _capacitor(inputs: Inputs, part: Part, variables: dict[str, Variable]) -> Subject:
