@@ -5,7 +5,7 @@ from dataclasses import replace
 from rulecheck.demand.account import (
     account_of_variables,
     derivations,
-    settling_lines,
+    settling_of,
     undetermined_quantities,
 )
 from rulecheck.demand.analysis import Worked
@@ -18,8 +18,11 @@ from rulecheck.demand.demands import (
 from rulecheck.demand.evaluate import demand_of
 from rulecheck.demand.gates_off import find_free_shorts, find_interrupted
 from rulecheck.demand.groups import forms_of, group_of, why_not_analysed
-from rulecheck.demand.legs import find_bridges, find_hard_commutations, find_legs
+from rulecheck.demand.idle import find_idle, with_idle
+from rulecheck.demand.legs import find_bridges, find_legs
+from rulecheck.demand.recovering import find_hard_commutations
 from rulecheck.demand.resting import with_rest
+from rulecheck.demand.shared import with_shares
 from rulecheck.stage import Stage
 from rulecheck.values import Interval, QuadrantSet, Unknown
 
@@ -31,7 +34,7 @@ def find_demands(stage: Stage) -> Demands:
     the magnetising current of clamped cores is left to the clamp; what works first is taken.
     """
     worked, assumed = first_that_works(stage)
-    settle = {name: line for name, _, line in settling_lines(worked.stage)}
+    settle = {name: line for name, _, line in settling_of(worked)}
     positions, more = _positions(worked, settle)
     legs = find_legs(worked)
     interrupted, noted = find_interrupted(worked, positions)
@@ -49,7 +52,7 @@ def find_demands(stage: Stage) -> Demands:
         undetermined_quantities(worked),
         tuple(interrupted),
         tuple(find_free_shorts(worked)),
-        find_hard_commutations(legs, worked.stage.positions, positions),
+        find_hard_commutations(legs, worked, positions),
         (*assumed, *more, *derivations(worked)),
         (*_not_covered(worked, positions), *noted),
     )
@@ -64,16 +67,21 @@ def _positions(
     for index, cluster in enumerate(worked.topology.clusters):
         names = {n for s in worked.reading.states[index] for f in forms_of(s) for n in f.names}
         box = worked.box.only(names)
+        idle = find_idle(worked, index)
         for link in cluster.positions:
             assert link.position is not None
             if index in worked.too_large or index in failed or not _states(worked, index):
                 found[link.name] = _not_analysed(link.name, why_not_analysed(worked, index))
                 continue
             demand = demand_of(link.position, worked.reading, index, box, settle)
+            demand = with_idle(demand, link.position, idle, worked.reading.amended)
             demand = with_rest(demand, link.position, worked)
             if index in worked.connecting or link.name in worked.pulsed:
                 demand = _pulsed(demand)
             found[link.name] = demand
+        if _states(worked, index) and index not in failed:
+            found, sentences = with_shares(found, worked, index, box)
+            assumed += sentences
     for position in worked.topology.tie_positions:
         found[position.name], sentence = connecting_demand(position, worked, settle)
         assumed += [sentence] if sentence else []

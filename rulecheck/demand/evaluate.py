@@ -2,7 +2,7 @@
 
 import math
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from rulecheck.demand.demands import PositionDemand, Witness
 from rulecheck.demand.readings import Amendment, Reading, feasible, free_ways, inequalities
@@ -37,20 +37,20 @@ def demand_of(
         if position.name in state.on:
             forms = inequalities(reading.clusters[index], state, reading.amended)
             form = state.solution.on_currents[position.name]
-            span = _clip(bounded_by(narrowed, form, forms), limits)
+            span = clipped(bounded_by(narrowed, form, forms), limits)
             on.append(Sample(state, form, span, narrowed))
     return from_samples(position, off, on, settle)
 
 
 def off_samples(position: Position, reading: Reading, index: int, box: Box) -> list[Sample]:
     """The off voltage in every possible state that leaves the position off."""
-    limits = _withstood(position, reading.amended)
+    limits = withstood(position, reading.amended)
     samples = []
     for state, narrowed in feasible(reading, index, box):
         if position.name not in state.on:
             form = state.solution.off_voltages[position.name]
             forms = inequalities(reading.clusters[index], state, reading.amended)
-            span = _clip(bounded_by(narrowed, form, forms), limits)
+            span = clipped(bounded_by(narrowed, form, forms), limits)
             samples.append(Sample(state, form, span, narrowed))
     return samples
 
@@ -62,13 +62,14 @@ def _carried(position: Position, amended: Mapping[str, Amendment]) -> Interval:
     return Interval(-math.inf if both or reverse else 0.0, math.inf if both or forward else 0.0)
 
 
-def _withstood(position: Position, amended: Mapping[str, Amendment]) -> Interval:
+def withstood(position: Position, amended: Mapping[str, Amendment]) -> Interval:
     """What can stand across an off position: nothing that its free path would conduct."""
     forward, reverse = free_ways(position, amended)
     return Interval(0.0 if reverse else -math.inf, 0.0 if forward else math.inf)
 
 
-def _clip(span: Interval, limits: Interval) -> Interval:
+def clipped(span: Interval, limits: Interval) -> Interval:
+    """The part of a range within limits; the nearer limit where nothing is left."""
     return span.meet(limits) or point(limits.low if span.high < limits.low else limits.high)
 
 
@@ -89,6 +90,25 @@ def from_samples(
         off_high,
         on_low,
         on_high,
+    )
+
+
+def widened_off(demand: PositionDemand, sample: Sample) -> PositionDemand:
+    """The demand with one more state that leaves the position off."""
+    before = demand.off_voltage
+    if demand.off_low is None or not isinstance(before, Interval):
+        return demand
+    span, low, high = _extremes([sample])
+    both = before.hull(span)
+    on, quadrants = demand.on_current, demand.quadrants
+    if isinstance(quadrants, QuadrantSet) and isinstance(on, Interval):
+        quadrants = quadrants_of(both, on)
+    return replace(
+        demand,
+        off_voltage=both,
+        off_low=low if span.low < before.low else demand.off_low,
+        off_high=high if span.high > before.high else demand.off_high,
+        quadrants=quadrants,
     )
 
 
