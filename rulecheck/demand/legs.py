@@ -3,7 +3,6 @@
 Names come last, as labels; nothing before this step knows one.
 """
 
-import math
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 from itertools import pairwise, product
@@ -11,11 +10,11 @@ from itertools import pairwise, product
 import networkx as nx
 
 from rulecheck.demand.analysis import Worked
-from rulecheck.demand.demands import Bridge, HardCommutation, Leg, PositionDemand
+from rulecheck.demand.demands import Bridge, Leg
 from rulecheck.demand.readings import feasible
 from rulecheck.demand.topology import Cluster
 from rulecheck.stage import Position
-from rulecheck.values import Interval, Unknown, natural_key
+from rulecheck.values import Interval, natural_key
 
 
 def find_legs(worked: Worked) -> tuple[Leg, ...]:
@@ -273,43 +272,3 @@ def _meeting(
     wanted = set(midpoints)
     groups = [sorted(c & wanted, key=natural_key) for c in nx.connected_components(graph)]
     return [tuple(group) for group in sorted(groups) if len(group) > 1]
-
-
-def find_hard_commutations(
-    legs: Sequence[Leg],
-    positions: Sequence[Position],
-    demands: dict[str, PositionDemand],
-) -> tuple[HardCommutation, ...]:
-    """In a two-level leg: free paths that the other, gated position turns off by turning on."""
-    by_name = {position.name: position for position in positions}
-    found = []
-    for leg in legs:
-        if leg.kind not in ("half-bridge leg", "chopper cell"):
-            continue
-        for mine, other in ((leg.high, leg.low), (leg.low, leg.high)):
-            if by_name[other[0]].gated:
-                found += _recovering(by_name[mine[0]], other[0], demands[mine[0]])
-    return tuple(sorted(found, key=lambda item: natural_key(item.position)))
-
-
-def _recovering(position: Position, by: str, demand: PositionDemand) -> list[HardCommutation]:
-    for free, sign in ((position.free_forward, 1.0), (position.free_reverse, -1.0)):
-        if not free:
-            continue
-        current, voltage = demand.on_current, demand.off_voltage
-        if isinstance(current, Unknown) or isinstance(voltage, Unknown):
-            missing = current if isinstance(current, Unknown) else voltage
-            assert isinstance(missing, Unknown)
-            return [HardCommutation(position.name, by, missing, missing)]
-        flowing = current.high if sign > 0 else -current.low
-        standing = -voltage.low if sign > 0 else voltage.high
-        if flowing > 0.0 and standing > 0.0:
-            stated = [_finite(x, position.name) for x in (flowing, standing)]
-            return [HardCommutation(position.name, by, stated[0], stated[1])]
-    return []
-
-
-def _finite(value: float, name: str) -> float | Unknown:
-    if math.isfinite(value):
-        return value
-    return Unknown(f"recovery of {name}", "the undetermined quantities of its group")
