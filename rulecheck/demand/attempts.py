@@ -4,7 +4,12 @@ from rulecheck.demand.analysis import Worked, work_out
 from rulecheck.demand.duty import with_duty
 from rulecheck.demand.peak_charged import find_peaks, with_peaks
 from rulecheck.demand.voltages import name_of
-from rulecheck.demand.wired import wire_leakages, without_followers, without_magnetising
+from rulecheck.demand.wired import (
+    separate_coupled,
+    wire_leakages,
+    without_followers,
+    without_magnetising,
+)
 from rulecheck.stage import Branch, BranchKind, Stage
 
 FOLLOWING_CAPACITANCE = 10e-6
@@ -13,9 +18,11 @@ larger."""
 
 
 def first_that_works(stage: Stage) -> tuple[Worked, tuple[str, ...]]:
-    worked = work_out(stage)
-    stage, assumed = with_duty(worked)
-    best = work_out(stage) if assumed else worked
+    stage, assumed = separate_coupled(stage)
+    best = work_out(stage)
+    stage, more = with_duty(best)
+    if more:
+        best, assumed = work_out(stage), assumed + more
     for reading in (_following, _wired, _clamped):
         if not any(_unclear(best)):
             break

@@ -13,7 +13,7 @@ from collections.abc import Sequence
 from rulecheck.demand.readings import Amendment, inequalities
 from rulecheck.demand.states import Laws, RawState
 from rulecheck.demand.stiff import tightened
-from rulecheck.demand.topology import Cluster
+from rulecheck.demand.topology import Cluster, loop_name
 from rulecheck.values import AffineForm, total_of
 
 
@@ -34,6 +34,8 @@ def without_lossy(cluster: Cluster, states: Sequence[RawState], laws: Laws) -> t
 
 
 def _undercuts(other: RawState, state: RawState, cluster: Cluster, laws: Laws) -> bool:
+    if set(other.on) < set(state.on) and _circulates(state, cluster):
+        return True
     added = set(other.on) - set(state.on)
     off = state.solution.off_voltages
     if not all(laws.vanishes(off[name]) for name in added):
@@ -47,6 +49,12 @@ def _undercuts(other: RawState, state: RawState, cluster: Cluster, laws: Laws) -
     box = laws.box.only((names | set(saved.names)) & laws.box.ranges.keys())
     narrowed = tightened(box, limits)
     return narrowed is not None and narrowed.range_of(saved).low >= -1e-9
+
+
+def _circulates(state: RawState, cluster: Cluster) -> bool:
+    """A current that nothing drives runs through windings: every drop on its way ends it."""
+    loops = {loop_name(link.core) for link in cluster.links if link.core}
+    return any(loops & set(form.names) for form in state.solution.on_currents.values())
 
 
 def _loss(state: RawState, cluster: Cluster) -> AffineForm:

@@ -9,6 +9,7 @@ from collections.abc import Iterable
 from dataclasses import replace
 
 from rulecheck.stage import Branch, BranchKind, Position, Role, Stage, Transformer
+from rulecheck.values import Unknown, natural_key
 
 
 def wire_leakages(stage: Stage) -> tuple[Stage, tuple[str, ...]]:
@@ -68,6 +69,39 @@ def _in_series_with_winding(stage: Stage, branch: Branch) -> bool:
         if winding_nets.count(net) == 1 and not others and not devices:
             return True
     return False
+
+
+def separate_coupled(stage: Stage) -> tuple[Stage, tuple[str, ...]]:
+    """The stage with the windings of coupled chokes read as inductors of their own.
+
+    Two windings alone on a core that start from one net without a switch share what this net
+    takes: the current through both does not magnetise the core, so only their leakage, which an
+    ideal transformer lacks, keeps it.
+    """
+    cores, chokes, sentences = [], [], []
+    switched = {net for p in stage.positions for net in (p.start, p.end)}
+    for core in stage.transformers:
+        shared = set(core.windings[0]).intersection(*core.windings[1:]) - switched
+        if len(core.windings) != 2 or not shared or core.windings[0] == core.windings[1]:
+            cores.append(core)
+            continue
+        chokes += [
+            _as_inductor(stage, *item) for item in zip(core.parts, core.windings, strict=True)
+        ]
+        names = " and ".join(core.parts)
+        sentences.append(
+            f"{names} read as inductors of their own: the current that they share is "
+            "kept by their leakage, and the coupling's part of the ripple is left out"
+        )
+    branches = tuple(sorted((*stage.branches, *chokes), key=lambda b: natural_key(b.name)))
+    return replace(stage, transformers=tuple(cores), branches=branches), tuple(sentences)
+
+
+def _as_inductor(stage: Stage, part: str, ends: tuple[str, str]) -> Branch:
+    value = stage.parts.by_name[part].value
+    henry = None if isinstance(value, Unknown) else value
+    given = stage.given.get(part)
+    return Branch(part, BranchKind.CURRENT, ends[0], ends[1], henry, part, "", given)
 
 
 def without_magnetising(stage: Stage) -> tuple[Stage, tuple[str, ...]]:

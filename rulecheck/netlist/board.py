@@ -43,7 +43,8 @@ def is_certain(draft: Draft, reading: Reading) -> bool:
         return True
     if draft.letter in "VI":
         has_value = draft.waveform is not None or read_number(draft.text.split(" ")[-1]) is not None
-    return has_value or reading.is_model(draft.model) or bool(draft.controls)
+    controlled = bool(draft.controls) and draft.letter not in "FH"
+    return has_value or reading.is_model(draft.model) or controlled
 
 
 def read_board_part(reading: Reading) -> Draft:
@@ -82,8 +83,10 @@ def _count_nets(reading: Reading, words: list[Item]) -> int:
         return 0
     texts = [word.text for word in words]
     for position, word in enumerate(words):
-        if position and (word.kind == GROUP or "@" in word.text):
+        if position and (word.kind == GROUP or word.text.startswith("@")):
             return position - 1
+        if position and "@" in word.text:
+            return position
     if all(reading.is_net(text) or _AUTOMATIC.match(text) for text in texts):
         return len(words)
     return len(words) - 1

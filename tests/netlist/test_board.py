@@ -21,6 +21,7 @@ OTHERS = ("R90 BUS SW 1", "R91 PGND VCC 1", "R92 G1 OUT 1", "R93 2 3 1")
         ("F1 BUS VCC 10A", "BUS VCC", "10A"),
         ("F1 BUS VCC Fuse", "BUS VCC", "Fuse"),
         ("FB1 VCC OUT 600R", "VCC OUT", "600R"),
+        ("FB1 VCC VIN 120R@100MHz", "VCC VIN", "120R@100MHz"),
         ("SW1 BUS OUT SW_Push", "BUS OUT", "SW_Push"),
         ("SW1 BUS OUT G1 VCC SW_DPST", "BUS OUT G1 VCC", "SW_DPST"),
         ("MH1 PGND MountingHole", "PGND", "MountingHole"),
