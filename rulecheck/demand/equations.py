@@ -199,24 +199,39 @@ def _share_evenly(system: _System, on: frozenset[str], unknowns: Matrix, free: M
 
 
 def _with_loops(system: _System, unknowns: Matrix, free: Matrix) -> tuple[Matrix, Matrix]:
-    """Let a current that runs freely through windings be a variable of its own.
+    """Let a current that runs freely through windings and a stiff voltage be its own variable.
 
-    Only currents of parallel positions share evenly; what circulates through windings without
-    magnetising their core is fixed by nothing in the state. Gives the solution, and what is still
-    free in it.
+    What circulates through positions and windings alone shares evenly, its drops see to that; a
+    current on through a voltage branch is fixed by nothing in the state. Gives the solution, and
+    what is still free in it.
     """
-    for core, windings in _cores(system.cluster).items():
-        rows = [system.currents[w.name] for w in windings]
-        if not free.size or np.abs(free[rows]).max() < _LOOSE:
+    through = _net_balances(system) @ free if free.size else free
+    if not through.size or np.abs(through).max() < _LOOSE:
+        return unknowns, free
+    _, sizes, directions = np.linalg.svd(through, full_matrices=True)
+    held = int(np.sum(sizes > _LOOSE))
+    for direction in directions[:held]:
+        along = free @ direction
+        for core, windings in _cores(system.cluster).items():
+            rows = [system.currents[w.name] for w in windings]
+            row = max(rows, key=lambda k: abs(along[k]))
+            if abs(along[row]) > _LOOSE:
+                unknowns = unknowns.copy()
+                unknowns[:, system.column(loop_name(core))] += along / along[row]
+                break
+    return unknowns, free @ directions[held:].T
+
+
+def _net_balances(system: _System) -> Matrix:
+    """A row a net: the current that links leave to the voltage branches there."""
+    rows: dict[str, Matrix] = {}
+    for link in system.cluster.links:
+        if link.name not in system.currents:
             continue
-        row = rows[int(np.abs(free[rows]).max(axis=1).argmax())]
-        along = free @ free[row]
-        unknowns = unknowns.copy()
-        unknowns[:, system.column(loop_name(core))] += along / along[row]
-        _, sizes, directions = np.linalg.svd(free[rows], full_matrices=True)
-        held = int(np.sum(sizes > _LOOSE))
-        free = free @ directions[held:].T
-    return unknowns, free
+        for net, sign in zip(link.nets, (1.0, -1.0), strict=True):
+            row = rows.setdefault(net, np.zeros(system.size))
+            row += sign * system.through(link)
+    return np.array([rows[net] for net in sorted(rows)]).reshape(len(rows), system.size)
 
 
 def _off_voltages(system: _System, on: frozenset[str], unknowns: Matrix) -> dict[str, Matrix]:

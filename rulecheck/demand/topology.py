@@ -38,6 +38,8 @@ class Link:
     ohm: float = 0.0
     core: str = ""
     turns: float = 0.0
+    nets: tuple[str, str] = ("", "")
+    """The nets themselves, which voltage branches may tie to others of their island."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -99,11 +101,14 @@ def _links(
 
     for position in positions:
         a, b = position.start, position.end
-        yield Link(position.name, rigid.root(a), rigid.root(b), step(a, b), position)
+        roots = rigid.root(a), rigid.root(b)
+        yield Link(position.name, *roots, step(a, b), position, nets=(a, b))
     for branch in branches:
         if branch.kind is BranchKind.RESISTOR and branch.value:
             a, b = branch.start, branch.end
-            yield Link(branch.name, rigid.root(a), rigid.root(b), step(a, b), ohm=branch.value)
+            yield Link(
+                branch.name, rigid.root(a), rigid.root(b), step(a, b), ohm=branch.value, nets=(a, b)
+            )
     for core in transformers:
         for index, ((a, b), turns) in enumerate(zip(core.windings, core.turns, strict=True)):
             name = core.parts[index]
@@ -114,6 +119,7 @@ def _links(
                 step(a, b),
                 core=core.name,
                 turns=turns / core.turns[0],
+                nets=(a, b),
             )
 
 

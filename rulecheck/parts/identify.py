@@ -171,8 +171,10 @@ def _with_control_pair(element: Element) -> Element:
     return replace(element, nets=(*element.nets, *element.controls[:2]))
 
 
-def _texts(element: Element) -> tuple[str, str]:
-    return element.text, element.model.name if element.model else ""
+def _texts(element: Element) -> tuple[str, str, str]:
+    """What part data may name: the text, the model, and a passive's type behind its value."""
+    behind = element.text.partition(" ")[2].strip() if element.letter in _PASSIVE_KINDS else ""
+    return element.text, element.model.name if element.model else "", behind
 
 
 def _bodies(elements: Iterable[Element]) -> dict[str, list[Element]]:
