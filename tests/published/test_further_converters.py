@@ -151,3 +151,33 @@ def test_filter_of_coil_capacitor_and_coil_carries_the_load_current() -> None:
     for number in range(1, 5):
         study.expect(f"M{number}", off=(400, 400), on=(-20, 20), quadrants="I+IV", within=0.05)
     assert study.variable("v(C1)")[1] == pytest.approx(230 * math.sqrt(2), rel=0.01)
+
+
+def test_half_bridge_behind_a_coupling_capacitor() -> None:
+    """The capacitor holds half the bus; the load's current flows through it."""
+    cards = "M1 P g1 A A FET\nM2 A g2 0 0 FET\nL1 A X 200u\nC2 X OUT 1000u"
+    speaker = ac("load", "OUT", "0", voltage="20 V peak", draws="5 A peak", frequency="1 kHz")
+    held = "set: {C2: {voltage: 24 V}}"
+    study = Study(cards, sheet(dc("bus", "P", voltage=48), speaker, frequency=400e3, extra=held))
+    for name in ("M1", "M2"):
+        study.expect(name, off=(48, 48), on=(-5, 5), quadrants="I+IV", within=0.03)
+
+
+def test_buck_behind_a_bridge_with_a_capacitor() -> None:
+    """The capacitor has the polarity of the diodes, so the buck cell blocks it in one way only."""
+    cards = """
+    D1 a P DX
+    D2 b P DX
+    D3 N a DX
+    D4 N b DX
+    C1 P N 200u
+    M1 P g SW SW FET
+    D5 N SW DX
+    L1 SW OUT 10m
+    """
+    mains = ac("mains", "a", "b", voltage="230 V rms")
+    output = dc("out", "OUT", "N", voltage=100, draws=(2, 10))
+    study = Study(cards, sheet(mains, output))
+    peak = 230 * math.sqrt(2)
+    study.expect("M1", off=(None, peak), on=(2, 10), quadrants="I", within=0.02)
+    study.expect("D5", off=(-peak, None), on=(2, 10), quadrants="II", within=0.02)
