@@ -101,6 +101,9 @@ def undetermined_quantities(worked: Worked) -> tuple[Undetermined, ...]:
         for name in form.names
         if worked.topology.clusters[index].positions
     }
+    rigid = worked.voltages.potentials
+    for position in worked.topology.tie_positions:
+        used |= set((rigid.offset(position.start) - rigid.offset(position.end)).names)
     means = worked.box.means
     used |= {name for known in used & means.keys() for name in means[known].names}
     ripples = worked.box.ripples

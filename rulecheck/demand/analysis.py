@@ -328,8 +328,8 @@ def _with_peaks(box: Box, reading: Reading, connecting: Iterable[int]) -> Box:
     """A capacitor that diodes connect to known voltages has one that some state gives it."""
     for index in connecting:
         spans: dict[str, Interval] = {}
-        for _, narrowed in feasible(reading, index, box):
-            for name in narrowed.ranges.keys() & box.unsettled:
+        for state, narrowed in feasible(reading, index, box):
+            for name in narrowed.ranges.keys() & box.unsettled if state.equal else ():
                 span = narrowed.ranges[name]
                 if name.startswith("v(") and span.bounded:
                     spans[name] = spans[name].hull(span) if name in spans else span

@@ -1,13 +1,12 @@
 """Find the demand of every position: work the stage out, try other readings, assemble."""
 
-from dataclasses import replace
-
 from rulecheck.demand.account import (
     account_of_variables,
     derivations,
     settling_of,
     undetermined_quantities,
 )
+from rulecheck.demand.alternating import alternating_parts
 from rulecheck.demand.analysis import Worked
 from rulecheck.demand.attempts import first_that_works
 from rulecheck.demand.connecting import connecting_demand
@@ -20,11 +19,12 @@ from rulecheck.demand.gates_off import find_free_shorts, find_interrupted
 from rulecheck.demand.groups import forms_of, group_of, why_not_analysed
 from rulecheck.demand.idle import find_idle, with_idle
 from rulecheck.demand.legs import find_bridges, find_legs
+from rulecheck.demand.pulses import pulsed
 from rulecheck.demand.recovering import find_hard_commutations
 from rulecheck.demand.resting import with_rest
 from rulecheck.demand.shared import with_shares
 from rulecheck.stage import Stage
-from rulecheck.values import Interval, QuadrantSet, Unknown
+from rulecheck.values import Unknown, natural_key
 
 
 def find_demands(stage: Stage) -> Demands:
@@ -77,7 +77,7 @@ def _positions(
             demand = with_idle(demand, link.position, idle, worked.reading.amended)
             demand = with_rest(demand, link.position, worked)
             if index in worked.connecting or link.name in worked.pulsed:
-                demand = _pulsed(demand)
+                demand = pulsed(demand)
             found[link.name] = demand
         if _states(worked, index) and index not in failed:
             found, sentences = with_shares(found, worked, index, box)
@@ -100,23 +100,16 @@ def _not_analysed(name: str, why: str) -> PositionDemand:
     )
 
 
-def _pulsed(demand: PositionDemand) -> PositionDemand:
-    """Charging pulses are not found by stiff quantities; their sign and the blocking are."""
-    why = "the charging pulses of a capacitor behind diodes are not covered"
-    current = Interval(0.0, float("inf"))
-    quadrants = demand.quadrants
-    if isinstance(demand.off_voltage, Interval):
-        volts = demand.off_voltage
-        signs = [s for s, ok in ((True, volts.high > 1.0), (False, volts.low < -1.0)) if ok]
-        quadrants = QuadrantSet.product(signs, [True])
-    return replace(demand, on_current=current, quadrants=quadrants, not_covered=(why,))
-
-
 def _not_covered(worked: Worked, positions: dict[str, PositionDemand]) -> tuple[str, ...]:
     lines = list(worked.stage.not_covered)
     for name, current in worked.currents.items():
         if "ripple not included" in current.origin:
             lines.append(f"{name}: {current.origin.rpartition(', ')[2]}")
+    lines += [
+        f"current of {part}: the peaks of a resonance with what is in series with it"
+        for part in sorted(alternating_parts(worked.stage), key=natural_key)
+        if not worked.box.ranges[f"i({part})"].bounded
+    ]
     for demand in positions.values():
         lines += [f"{demand.position}: {line}" for line in demand.not_covered]
     return tuple(lines)

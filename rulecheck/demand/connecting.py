@@ -11,6 +11,7 @@ from rulecheck.demand.analysis import Worked
 from rulecheck.demand.demands import PositionDemand
 from rulecheck.demand.equations import Solution
 from rulecheck.demand.evaluate import Sample, from_samples
+from rulecheck.demand.pulses import pulsed
 from rulecheck.demand.states import RawState
 from rulecheck.demand.stiff import Box
 from rulecheck.stage import Position
@@ -39,9 +40,18 @@ def connecting_demand(
     ]
     on = _on_samples(position, worked, box, box.range_of(form), bool(assumed))
     demand = from_samples(position, off, on, settle)
+    if not position.gated and _alternates(form, box):
+        return pulsed(demand), assumed
     if not on and (assumed or box.range_of(form).contains(0.0)):
         demand = _current_unknown(demand, position)
     return demand, assumed
+
+
+def _alternates(form: AffineForm, box: Box) -> bool:
+    """A source of alternating voltage before a diode charges what is behind it in pulses."""
+    return any(
+        box.ranges[n].low < 0.0 < box.ranges[n].high for n in form.names if box.ranges[n].bounded
+    )
 
 
 def _held_up_by_rivals(position: Position, worked: Worked) -> list[Sample]:

@@ -241,6 +241,8 @@ def find_bridges(worked: Worked, legs: Sequence[Leg]) -> tuple[Bridge, ...]:
             by_rails.setdefault(leg.rails, []).append(leg)
     bridges = []
     for rails, on_rails in sorted(by_rails.items()):
+        if len(on_rails) < 2:
+            continue
         for names in _meeting(worked, rails, [leg.midpoint for leg in on_rails]):
             if len(names) in (2, 3):
                 kinds = frozenset(leg.kind for leg in on_rails if leg.midpoint in names)

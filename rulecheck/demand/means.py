@@ -6,12 +6,13 @@ A mean is fixed exactly where its branch is a bridge of the graph of unknown bra
 known currents of either side must flow through it.
 """
 
-from collections.abc import Callable, Mapping, Sequence
-from dataclasses import dataclass
+from collections.abc import Callable, Hashable, Mapping, Sequence
+from dataclasses import dataclass, replace
 
 import networkx as nx
 
 from rulecheck.demand.topology import magnetising_name
+from rulecheck.demand.unions import Unions
 from rulecheck.demand.voltages import Voltages, name_of
 from rulecheck.stage import Branch, BranchKind, Port, PortKind, Position, Transformer
 from rulecheck.values import AffineForm, total_of, variable
@@ -25,6 +26,8 @@ class Unknowns:
     """Name, start, end: positive from start to end."""
     known: tuple[tuple[str, str, AffineForm], ...]
     """Start, end and the current that flows from start to end."""
+    capacitors: tuple[tuple[str, str, str], ...] = ()
+    """Open, unless nothing else can carry a known current on."""
 
 
 def collect_unknowns(
@@ -37,6 +40,7 @@ def collect_unknowns(
 ) -> Unknowns:
     edges = [(p.name, p.start, p.end) for p in positions]
     known: list[tuple[str, str, AffineForm]] = []
+    capacitors: list[tuple[str, str, str]] = []
     by_port = {port.name: port for port in ports}
     for branch in branches:
         form = _known_current(branch, known_ports, voltages, by_port)
@@ -44,9 +48,11 @@ def collect_unknowns(
             known.append((branch.start, branch.end, form))
         elif branch.kind is not BranchKind.VOLTAGE or not branch.value or branch.port:
             edges.append((branch.name, branch.start, branch.end))
+        else:
+            capacitors.append((branch.name, branch.start, branch.end))
     for core in transformers:
         edges += [(n, a, b) for n, (a, b) in zip(core.parts, core.windings, strict=True)]
-    return Unknowns(tuple(edges), tuple(known))
+    return Unknowns(tuple(edges), tuple(known), tuple(capacitors))
 
 
 def _known_current(
@@ -86,6 +92,7 @@ def find_means(unknowns: Unknowns) -> Mapping[str, AffineForm]:
 
     Linear in the size of the graph: bridges, then sums over the tree of what they part.
     """
+    unknowns = _with_coupling(unknowns)
     graph: nx.MultiGraph[str] = nx.MultiGraph()
     for name, start, end in unknowns.edges:
         graph.add_edge(start, end, key=name)
@@ -111,6 +118,28 @@ def find_means(unknowns: Unknowns) -> Mapping[str, AffineForm]:
     bridges = [edge for edge in unknowns.edges if frozenset(edge[1:]) in cut]
     tree.add_edges_from((block_of[start], block_of[end]) for _, start, end in bridges)
     return _through_bridges(tree, bridges, block_of.__getitem__, into)
+
+
+def _with_coupling(unknowns: Unknowns) -> Unknowns:
+    """Let a coupling capacitor carry what it alone can, such as an AC load's current.
+
+    Over a switching period a capacitor in series with an AC port passes its current on.
+    """
+    parts = Unions([])
+    for _, start, end in unknowns.edges:
+        parts.join(start, end)
+    into: dict[Hashable, list[AffineForm]] = {}
+    for start, end, form in unknowns.known:
+        into.setdefault(parts.root(start), []).append(-form)
+        into.setdefault(parts.root(end), []).append(form)
+    stuck = {root for root, forms in into.items() if not total_of(forms).is_zero}
+    around: dict[Hashable, list[tuple[str, str, str]]] = {root: [] for root in stuck}
+    for edge in unknowns.capacitors:
+        ends = {parts.root(edge[1]), parts.root(edge[2])}
+        for root in ends & stuck if len(ends) == 2 else ():
+            around[root].append(edge)
+    passing = sorted({edges[0] for edges in around.values() if len(edges) == 1})
+    return replace(unknowns, edges=(*unknowns.edges, *passing), capacitors=())
 
 
 def _through_bridges(

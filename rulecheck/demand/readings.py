@@ -15,6 +15,7 @@ from rulecheck.demand.routes import Carrier, Route, Step
 from rulecheck.demand.sign_cases import Case
 from rulecheck.demand.states import RawState
 from rulecheck.demand.stiff import Box, tightened
+from rulecheck.demand.ties import build_ties
 from rulecheck.demand.topology import Cluster, Link
 from rulecheck.stage import Position
 from rulecheck.values import AffineForm, Interval, total_of
@@ -74,6 +75,9 @@ def inequalities(
     forms: list[AffineForm] = []
     for link in cluster.positions:
         forms += _of_position(link, state, amended)
+    if state.equal:
+        ties = build_ties(state.equal)
+        forms += [ties.reduced(form) for form in forms]
     for form in state.equal:
         forms += [form, -form]
     return forms
@@ -104,9 +108,20 @@ def feasible(reading: Reading, index: int, box: Box) -> list[tuple[RawState, Box
     found = []
     for state in reading.states[index]:
         narrowed = tightened(box, inequalities(cluster, state, amended))
-        if narrowed is not None:
+        rectifies = not cluster.gated and not state.equal
+        if narrowed is not None and (not rectifies or _conducts(cluster, state, narrowed)):
             found.append((state, narrowed))
     return found
+
+
+def _conducts(cluster: Cluster, state: RawState, box: Box) -> bool:
+    """False where a diode of a rectifier would be on with no current whatever the variables."""
+    for link in cluster.positions:
+        if link.name in state.on and link.position and not link.position.gated:
+            span = box.range_of(state.solution.on_currents[link.name])
+            if span.magnitude < _NO_CURRENT / 10:
+                return False
+    return True
 
 
 def reach(reading: Reading, route: Route, box: Box) -> Interval | None:

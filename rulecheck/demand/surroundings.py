@@ -97,12 +97,19 @@ def _missing_for_ripple(carrier: Carrier, around: Surroundings) -> tuple[str, tu
 
 
 def _frequencies(around: Surroundings) -> list[float]:
-    """The switching frequency of each step of the route, hertz; 0 where nobody states it."""
+    """The switching frequency of each step of the route, hertz; 0 where nobody states it.
+
+    A group of diodes alone, without a winding, follows the line and not the switching.
+    """
     found = []
     for step in around.route.steps:
+        cluster = around.reading.clusters[step.cluster]
+        if not cluster.gated and not any(link.core for link in cluster.links):
+            found.append(0.0)
+            continue
         nets = {
             net
-            for link in around.reading.clusters[step.cluster].positions
+            for link in cluster.positions
             if link.position
             for net in (link.position.start, link.position.end)
         }

@@ -69,7 +69,7 @@ class _Search:
     bodies: Mapping[str, Sequence[Element]] = field(init=False)
     times_used: dict[str, int] = field(default_factory=dict)
     """By lower-case name."""
-    fits: dict[tuple[str, str], StatedPart | None] = field(default_factory=dict)
+    fits: dict[tuple[str, str, str], StatedPart | None] = field(default_factory=dict)
 
     def __post_init__(self) -> None:
         self.bodies = _bodies(self.circuit.elements)
