@@ -8,11 +8,16 @@ from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field, replace
 from typing import Any
 
+from hypothesis import Phase, settings
 from hypothesis import strategies as st
 
 from tests.kit.published import MODELS, Study
 
 Rename = Callable[[str], str]
+FEW = settings(
+    max_examples=12, deadline=None, derandomize=True, phases=(Phase.generate, Phase.shrink)
+)
+"""Each example is some whole analyses; the same examples in every run."""
 
 
 @dataclass(frozen=True)

@@ -1,11 +1,9 @@
 """What is not known is never passed, and one stage does not hide another's faults."""
 
-from hypothesis import given, settings
+from hypothesis import given
 from hypothesis import strategies as st
 
-from tests.kit.small_stages import PortLine, SmallStage, bridges, legs, stages, verdicts
-
-FEW = settings(max_examples=12, deadline=None)
+from tests.kit.small_stages import FEW, PortLine, SmallStage, bridges, legs, stages, verdicts
 
 
 @FEW

@@ -3,10 +3,11 @@
 from dataclasses import replace
 from typing import Any
 
-from hypothesis import given, settings
+from hypothesis import given
 from hypothesis import strategies as st
 
 from tests.kit.small_stages import (
+    FEW,
     Card,
     SmallStage,
     coil,
@@ -17,7 +18,6 @@ from tests.kit.small_stages import (
     verdicts,
 )
 
-FEW = settings(max_examples=12, deadline=None)
 REFLECTED = {"I": "III", "II": "IV", "III": "I", "IV": "II"}
 
 

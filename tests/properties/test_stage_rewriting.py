@@ -4,13 +4,11 @@ import random
 from dataclasses import replace
 from typing import Any
 
-from hypothesis import given, settings
+from hypothesis import given
 from hypothesis import strategies as st
 
 from tests.kit.published import Study
-from tests.kit.small_stages import SmallStage, in_a_box, positions, stages, verdicts
-
-FEW = settings(max_examples=12, deadline=None)
+from tests.kit.small_stages import FEW, SmallStage, in_a_box, positions, stages, verdicts
 
 
 def said(study: Study) -> tuple[dict[str, dict[str, Any]], dict[tuple[str, str, str], str]]:
