@@ -11,6 +11,7 @@ from rulecheck.reading import SourceText, read_text
 from rulecheck.rulebook import (
     IN_FORCE,
     PROFILES,
+    SUFFIX,
     Rulebook,
     load_packs,
     packs_in_force,
@@ -19,11 +20,19 @@ from rulecheck.rulebook import (
 from rulecheck.values import Problem, Span, error, errors_of
 
 
-def load_rulebook(names: Iterable[str]) -> Rulebook | tuple[Problem, ...]:
-    """The rules in force, or every mistake in the packs."""
+def load_rulebook(
+    names: Iterable[str], instead_of: Iterable[str] = ()
+) -> Rulebook | tuple[Problem, ...]:
+    """The rules in force, or every mistake in the packs.
+
+    `instead_of` names shipped packs that are left out, because a file at hand is to be tried in
+    their place.
+    """
     added = [find_pack(name) for name in dict.fromkeys(names) if name not in IN_FORCE]
     failed = tuple(pack for pack in added if isinstance(pack, Problem))
-    packs = [*packs_in_force(), *(pack for pack in added if isinstance(pack, SourceText))]
+    left_out = {name + SUFFIX for name in instead_of}
+    shipped = [pack for pack in packs_in_force() if pack.file not in left_out]
+    packs = [*shipped, *(pack for pack in added if isinstance(pack, SourceText))]
     rulebook = load_packs(packs)
     errors = (*failed, *errors_of(rulebook.problems))
     return errors or rulebook

@@ -3,6 +3,7 @@
 Examples are written for the values that their own pack knows; what a project sets is left out.
 """
 
+import re
 from collections.abc import Iterable
 from dataclasses import dataclass
 
@@ -12,6 +13,8 @@ from rulecheck.pipeline import Unusable, analyse_text
 from rulecheck.reading import SourceText
 from rulecheck.rulebook import IN_FORCE, Rulebook, Trial, try_examples
 from rulecheck.values import Problem
+
+_PACK_NAME = re.compile(r"^pack:\s*([\w/-]+)", re.MULTILINE)
 
 
 @dataclass(frozen=True, slots=True)
@@ -50,11 +53,17 @@ def _try_pack(name: str) -> list[Trial] | tuple[Problem, ...]:
     source = find_pack(name)
     if isinstance(source, Problem):
         return (source,)
-    rulebook = load_rulebook((name,))
+    rulebook = load_rulebook((name,), _replaced_by(source) if name not in IN_FORCE else ())
     if not isinstance(rulebook, Rulebook):
         return rulebook
     own = (rule.id for rule in rulebook.rules if rule.span.file == source.file)
     return list(try_examples(rulebook, _facts, own))
+
+
+def _replaced_by(source: SourceText) -> tuple[str, ...]:
+    """The shipped pack that a file calls itself: the one being worked on is tried in its place."""
+    said = _PACK_NAME.search(source.text)
+    return (said[1],) if said and said[1] in IN_FORCE else ()
 
 
 def _facts(

@@ -9,7 +9,7 @@ from rulecheck.demand.account import (
 from rulecheck.demand.alternating import alternating_parts
 from rulecheck.demand.analysis import Worked
 from rulecheck.demand.attempts import first_that_works
-from rulecheck.demand.connecting import connecting_demand
+from rulecheck.demand.connecting import connecting_demand, shorting_groups
 from rulecheck.demand.demands import (
     Demands,
     PositionDemand,
@@ -43,6 +43,7 @@ def find_demands(stage: Stage) -> Demands:
         for index, cluster in enumerate(worked.topology.clusters)
         if cluster.positions
     )
+    groups += tuple(shorting_groups(worked))
     return Demands(
         account_of_variables(worked, settle),
         positions,

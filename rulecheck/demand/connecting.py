@@ -5,15 +5,16 @@ their difference, its on current the mean that the ports behind it leave to it.
 """
 
 import math
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping
 
 from rulecheck.demand.analysis import Worked
-from rulecheck.demand.demands import PositionDemand
+from rulecheck.demand.demands import Group, PositionDemand
 from rulecheck.demand.equations import Solution
 from rulecheck.demand.evaluate import Sample, from_samples
 from rulecheck.demand.pulses import pulsed
 from rulecheck.demand.states import RawState
 from rulecheck.demand.stiff import Box
+from rulecheck.parts import Kind
 from rulecheck.stage import Position
 from rulecheck.values import AffineForm, Interval, Unknown
 
@@ -45,6 +46,23 @@ def connecting_demand(
     if not on and (assumed or box.range_of(form).contains(0.0)):
         demand = _current_unknown(demand, position)
     return demand, assumed
+
+
+def shorting_groups(worked: Worked) -> Iterator[Group]:
+    """Gated positions across a stiff voltage that is never zero: turned on, they short it.
+
+    A thyristor there is a crowbar and means to (common practice).
+    """
+    rigid, parts = worked.voltages.potentials, worked.stage.parts.by_name
+    for position in worked.topology.tie_positions:
+        form = rigid.offset(position.start) - rigid.offset(position.end)
+        span = worked.box.range_of(form)
+        kinds = {parts[name].kind for name in position.parts}
+        crowbar = kinds <= {Kind.THYRISTOR, Kind.TRIAC}
+        connects = position.name in worked.voltages.charged_through or span.contains(0.0)
+        if position.gated and not crowbar and not connects:
+            why = f"turned on, {position.name} shorts {form.text()}"
+            yield Group((position.name,), (), False, why, cannot_work=True)
 
 
 def _alternates(form: AffineForm, box: Box) -> bool:

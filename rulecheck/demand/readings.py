@@ -204,12 +204,25 @@ def failures(
             continue
         controlled = any(reading.clusters[index].gated for index in clusters)
         cases = _instants(cases_of[carrier.name], box, controlled)
-        whys = [_why_in(reading, carrier, route, case.narrow(box), box) for case in cases]
+        choices = sum(len(reading.clusters[index].positions) for index in clusters)
+        if carrier.port and not carrier.feeds and choices == 1:
+            whys = [_why_over_all(reading, route, cases, box)] * len(cases)
+        else:
+            whys = [_why_in(reading, carrier, route, case.narrow(box), box) for case in cases]
         failing = [(case, why) for case, why in zip(cases, whys, strict=True) if why]
         if failing:
             case, why = failing[0]
             found.append(Failure(carrier, case, clusters, why, len(failing) == len(cases)))
     return found
+
+
+def _why_over_all(reading: Reading, route: Route, cases: Sequence[Case], box: Box) -> str:
+    """An AC current port behind one switch sees both signs over its period, not at each instant."""
+    spans = [reach(reading, route, case.narrow(box)) for case in cases]
+    known = [span for span in spans if span is not None]
+    if not known:
+        return _why_not(None)
+    return _why_not(Interval(min(s.low for s in known), max(s.high for s in known)))
 
 
 def _why_in(reading: Reading, carrier: Carrier, route: Route, narrow: Box, box: Box) -> str:

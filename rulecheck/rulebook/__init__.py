@@ -14,12 +14,19 @@ from rulecheck.rulebook.pack_file import PackFile
 from rulecheck.rulebook.record import new_since, read_record, record_text
 from rulecheck.rulebook.rulebook import Rule, Rulebook, SwitchedOff
 from rulecheck.rulebook.rules_text import rule_text, rules_text
-from rulecheck.rulebook.shipped import IN_FORCE, PROFILES, packs_in_force, shipped_pack
+from rulecheck.rulebook.shipped import (
+    IN_FORCE,
+    PROFILES,
+    SUFFIX,
+    packs_in_force,
+    shipped_pack,
+)
 from rulecheck.rulebook.verdicts import Excuse, Tally, Verdict, Verdicts, Waiting
 
 __all__ = [
     "IN_FORCE",
     "PROFILES",
+    "SUFFIX",
     "Deviation",
     "DeviationEntry",
     "Excuse",

@@ -34,8 +34,9 @@ PARAMETERS = {"derate": parameter({"other": 0.8, "diode": 0.7})}
 @example('"\\')
 @example("sum(d.blocking for d among devices) / (blocks-forward - blocks-forward) > 1")
 @example(
-    "min(d.blocking for d among devices where no) - max(d.blocking for d among devices where no) > 1 V"
-)  # noqa: E501
+    "min(d.blocking for d among devices where no)"
+    " - max(d.blocking for d among devices where no) > 1 V"
+)
 def test_every_text_is_bound_or_refused_at_its_place(text):
     node = parse_condition(text)
     if isinstance(node, Flaw):
