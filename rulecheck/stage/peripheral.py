@@ -184,8 +184,7 @@ def _switches(layout: Layout, net: str) -> bool:
 def _behind(layout: Layout, around: list[Part], net: str) -> str:
     """The far net of the first part, preferring one that a device switches."""
     far = [other for part in around for other in layout.others(part, net)]
-    fixed = layout.grounds | layout.port_nets
-    switched = [other for other in far if _switches(layout, other) and other not in fixed]
+    switched = [other for other in far if _switches(layout, other) and other not in layout.grounds]
     return (switched or far or [net])[0]
 
 

@@ -182,3 +182,16 @@ def test_a_device_with_no_way_back_is_not_covered() -> None:
     stage = stage_of(LEG + "M9 BUS G9 LOOSE LOOSE FET\n", SHEET)
     assert any(line.startswith("M9: no power current") for line in stage.not_covered)
     assert "M9" not in {p.name for p in stage.positions}
+
+
+def test_a_snubber_at_a_phase_of_the_pump_is_named_by_the_phase() -> None:
+    cards = "M1 BUS G1 U U FET\nM2 U G2 0 0 FET\nR1 N1 U 10\nC1 N1 0 1n\nC2 BUS 0 1m\n"
+    cards += "M3 BUS G3 V V FET\nM4 V G4 0 0 FET\nM5 BUS G5 W W FET\nM6 W G6 0 0 FET\n"
+    sheet = """
+ports:
+  bus: {between: [BUS, "0"], voltage: 400 V}
+  pump: {phases: [U, V, W], draws: 10 A peak, frequency: [0 Hz, 60 Hz]}
+"""
+    stage = stage_of(cards, sheet)
+    assert stage.role_of["R1"] == "U"
+    assert stage.role_of["C1"] == "U"
