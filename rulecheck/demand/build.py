@@ -23,6 +23,7 @@ from rulecheck.demand.pulses import pulsed
 from rulecheck.demand.recovering import find_hard_commutations
 from rulecheck.demand.resting import with_rest
 from rulecheck.demand.shared import with_shares
+from rulecheck.demand.starved import starved
 from rulecheck.stage import Stage
 from rulecheck.values import Unknown, natural_key
 
@@ -50,7 +51,7 @@ def find_demands(stage: Stage) -> Demands:
         groups,
         legs,
         find_bridges(worked, legs),
-        undetermined_quantities(worked),
+        (*undetermined_quantities(worked), *starved(worked, positions)),
         tuple(interrupted),
         tuple(find_free_shorts(worked)),
         find_hard_commutations(legs, worked, positions),
