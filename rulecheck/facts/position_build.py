@@ -29,10 +29,24 @@ def parallel_devices(inputs: Inputs, devices: Sequence[Part]) -> int:
 
 
 def parallel_alike(inputs: Inputs, devices: Sequence[Part]) -> bool:
-    return all(
-        len({(part.kind, part.text.casefold()) for part in side}) == 1
-        for side in _side_by_side(inputs, devices)
-    )
+    """True where devices side by side are of one model, and no rating stated tells them apart."""
+    return all(_alike(side) for side in _side_by_side(inputs, devices))
+
+
+def _alike(side: Sequence[Part]) -> bool:
+    models = {(part.kind, part.text.casefold()) for part in side}
+    blocking = {_magnitude(part, "ratings.blocking") for part in side} - {None}
+    each = {_magnitude(part, "ratings.current", part.multiplicity) for part in side} - {None}
+    return max(len(models), len(blocking), len(each)) == 1
+
+
+def _magnitude(part: Part, path: str, devices: float = 1.0) -> float | None:
+    """What is stated, for one of so many devices; None where nobody states it."""
+    datum = part.datum(path)
+    if isinstance(datum, Unknown):
+        return None
+    value = datum.value.magnitude if isinstance(datum.value, Interval) else abs(datum.value)
+    return round(value / devices, 9)
 
 
 def _side_by_side(inputs: Inputs, devices: Sequence[Part]) -> list[list[Part]]:

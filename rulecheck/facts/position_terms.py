@@ -50,7 +50,7 @@ POSITION = SubjectTerm(
         count("series-devices", "Devices in series in the chain that holds off voltage."),
         yes_no("shared-voltage", "Each device in series has a sharing network across it."),
         count("parallel-devices", "The most devices side by side between two of its nets."),
-        yes_no("parallel-alike", "Devices side by side are of one model."),
+        yes_no("parallel-alike", "Devices side by side are of one model and rating."),
         yes_no("series-diode", "A diode lies in series with a transistor that it shields."),
         yes_no(
             "free-path-doubled", "A diode lies beside a transistor that has a free path itself."

@@ -163,6 +163,27 @@ def test_devices_side_by_side_and_in_series():
     assert value(shared, "position", "M1", "shared-voltage") is True
 
 
+@pytest.mark.parametrize(
+    ("first", "second", "alike"),
+    [
+        ("current=60", "current=60", True),
+        ("current=60", "current=30", False),
+        ("current=60 m=3", "current=60", True),
+        ("current=60 m=2", "current=120", False),
+        ("current=60", "", True),
+    ],
+)
+def test_ratings_on_the_cards_tell_devices_side_by_side_apart(first: str, second: str, alike: bool):
+    pair = f"M1 BUS G1 SW SW FET blocking=200 {first}\nM3 BUS G1 SW SW FET blocking=200 {second}"
+    facts = facts_of(LEG.replace("M1 BUS G1 SW SW FET blocking=200 current=120", pair))
+    assert value(facts, "position", "M1", "parallel-alike") is alike
+
+
+def test_blocking_ratings_tell_devices_side_by_side_apart():
+    pair = LEG.replace("C2 BUS", "M3 BUS G1 SW SW FET blocking=150 current=120\nC2 BUS")
+    assert value(facts_of(pair), "position", "M1", "parallel-alike") is False
+
+
 def test_without_states_nobody_knows_the_legs():
     facts = facts_of(LEG.replace("M1 BUS G1 SW SW FET blocking=200 current=120\n", ""))
     assert value(facts, "group", "M2", "analysed") is False
