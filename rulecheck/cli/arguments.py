@@ -83,6 +83,7 @@ def _parser() -> argparse.ArgumentParser:
     _lint(commands)
     _quadrants(commands)
     _explain(commands)
+    _report(commands)
     _rules(commands)
     _schema(commands)
     _demo(commands)
@@ -118,6 +119,14 @@ def _explain(commands: Any) -> None:
     command.add_argument("names", nargs="+", metavar="NETLIST [NAME]")
     command.add_argument("--step", choices=STEPS, help="print what this step found instead")
     _add_inputs(command)
+    _add_outputs(command, ())
+
+
+def _report(commands: Any) -> None:
+    command = commands.add_parser("report", help="the review document: one HTML file to read")
+    command.add_argument("names", nargs=1, metavar="NETLIST")
+    _add_inputs(command)
+    _add_packs(command)
     _add_outputs(command, ())
 
 

@@ -19,6 +19,7 @@ COMMANDS = {
     "lint": "rulecheck.cli.lint_command",
     "quadrants": "rulecheck.cli.quadrants_command",
     "explain": "rulecheck.cli.explain_command",
+    "report": "rulecheck.cli.report_command",
     "rules": "rulecheck.cli.rules_command",
     "schema": "rulecheck.cli.schema_command",
     "demo": "rulecheck.cli.demo_command",

@@ -21,9 +21,17 @@ def explain_position(
     demands: Demands,
     look: Look = PLAIN,
 ) -> Explanation:
-    """Demand with its witnesses, capability with its weakest chain, and the comparison."""
+    """What `explain_row` tells of the position of that name."""
     rows = quadrant_result(stage, capabilities, demands).positions
     row = next(row for row in rows if row.position.name == position.name)
+    return explain_row(row, stage, demands, look)
+
+
+def explain_row(
+    row: PositionResult, stage: Stage, demands: Demands, look: Look = PLAIN
+) -> Explanation:
+    """Demand with its witnesses, capability with its weakest chain, and the comparison."""
+    position = row.position
     title = f"{position.name}  switch position from {position.start} to {position.end}"
     return Explanation(
         f"{title}  ({position.span})",

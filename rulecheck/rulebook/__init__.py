@@ -12,7 +12,7 @@ from rulecheck.rulebook.judge import judge
 from rulecheck.rulebook.load import load_packs
 from rulecheck.rulebook.pack_file import PackFile
 from rulecheck.rulebook.record import new_since, read_record, record_text
-from rulecheck.rulebook.rulebook import Rule, Rulebook, SwitchedOff
+from rulecheck.rulebook.rulebook import PackInForce, Rule, Rulebook, SwitchedOff
 from rulecheck.rulebook.rules_text import rule_text, rules_text
 from rulecheck.rulebook.shipped import (
     IN_FORCE,
@@ -31,6 +31,7 @@ __all__ = [
     "DeviationEntry",
     "Excuse",
     "PackFile",
+    "PackInForce",
     "Rule",
     "Rulebook",
     "SwitchedOff",

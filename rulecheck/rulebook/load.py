@@ -1,6 +1,7 @@
 """Load packs in order: later ones add rules, change levels and parameters, switch rules off."""
 
 import difflib
+import hashlib
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field, replace
 
@@ -8,7 +9,7 @@ from rulecheck.reading import SourceText
 from rulecheck.rulebook.pack_reading import Change, Pack, read_pack
 from rulecheck.rulebook.places import place_in_text
 from rulecheck.rulebook.ready import Missing, make_ready
-from rulecheck.rulebook.rulebook import ReadyRule, Rule, Rulebook, SwitchedOff
+from rulecheck.rulebook.rulebook import PackInForce, ReadyRule, Rule, Rulebook, SwitchedOff
 from rulecheck.rulebook.scope import OTHER, Parameter
 from rulecheck.values import Problem, error
 
@@ -41,7 +42,13 @@ def load_packs(sources: Sequence[SourceText]) -> Rulebook:
         tuple(layers.switched_off.values()),
         tuple(layers.changes),
         tuple(found),
+        tuple(_in_force(pack, source) for pack, source in zip(packs, sources, strict=True)),
     )
+
+
+def _in_force(pack: Pack, source: SourceText) -> PackInForce:
+    digest = hashlib.sha256(source.text.encode("utf-8")).hexdigest()
+    return PackInForce(pack.name, pack.version, source.file, digest)
 
 
 def _lay(layers: _Layers, pack: Pack) -> None:

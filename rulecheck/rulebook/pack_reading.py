@@ -48,6 +48,7 @@ class Pack:
     rules: tuple[Rule, ...]
     changes: tuple[Change, ...]
     problems: tuple[Problem, ...]
+    version: str = ""
 
 
 @dataclass(slots=True)
@@ -99,6 +100,7 @@ def read_pack(source: SourceText) -> Pack:
         tuple(rule for rule in rules if rule is not None),
         tuple(_change(reader, n, entry) for n, entry in enumerate(entries.change)),
         (*reading.problems, *reader.problems),
+        str(entries.version),
     )
 
 

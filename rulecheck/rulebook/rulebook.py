@@ -79,6 +79,17 @@ class SwitchedOff:
 
 
 @dataclass(frozen=True, slots=True)
+class PackInForce:
+    """Which text of a pack was read: what a review names, so that it can be repeated."""
+
+    name: str
+    version: str
+    file: str
+    digest: str
+    """SHA-256 of the text, hexadecimal."""
+
+
+@dataclass(frozen=True, slots=True)
 class Rulebook:
     """What `judge` works with; with errors among the problems it must not be used."""
 
@@ -89,3 +100,5 @@ class Rulebook:
     changes: tuple[str, ...]
     """Levels and parameters that a later pack changed, one sentence each."""
     problems: tuple[Problem, ...]
+    packs: tuple[PackInForce, ...] = ()
+    """In the order in which they were laid on each other."""

@@ -50,6 +50,9 @@ def test_grammar_rules_and_demo_travel_in_the_wheel(installed):
         assert files_below(ROOT / kind) == files_below(package / "_data" / kind)
         assert files_below(ROOT / kind)
     assert files_below(ROOT / "rulecheck" / "demo_data") == files_below(package / "demo_data")
+    templates = Path("report", "review", "templates")
+    assert files_below(ROOT / "rulecheck" / templates) == files_below(package / templates)
+    assert files_below(package / templates)
     assert not (package.parent / "tests").exists()
 
 
@@ -61,3 +64,6 @@ def test_the_installed_command_lints_the_demo_from_another_folder(installed, tmp
     faulty = run(installed / "rulecheck", "lint", "hut/battery-bus-faulty.cir", folder=tmp_path)
     assert faulty.returncode == 1
     assert "error: " in faulty.stdout
+    told = run(installed / "rulecheck", "report", "hut/battery-bus.cir", folder=tmp_path)
+    assert (told.returncode, told.stderr) == (0, "")
+    assert told.stdout.startswith("<!DOCTYPE html>")

@@ -1,0 +1,77 @@
+"""`rulecheck report NETLIST -o FILE`: the review document, one self-contained HTML file."""
+
+import datetime
+from dataclasses import dataclass
+from pathlib import Path
+
+from rulecheck import __version__
+from rulecheck.cli.analysing import finish, sources_for
+from rulecheck.cli.complaints import complain
+from rulecheck.cli.inputs_read import inputs_read
+from rulecheck.cli.moment import Moment, asked_moment, moment_of
+from rulecheck.cli.output import Document
+from rulecheck.cli.packs import load_rulebook
+from rulecheck.cli.project import Project, find_project
+from rulecheck.cli.renderers import look_at, rendered
+from rulecheck.cli.request import Request
+from rulecheck.pipeline import Analysis, Unusable, analyse
+from rulecheck.report.lint_result import lint_report, open_points
+from rulecheck.report.review import Findings, Occasion, Review, Studied, make_review
+from rulecheck.report.review.page import render
+from rulecheck.rulebook import Deviation, Rulebook, apply_deviations, judge, read_deviations
+from rulecheck.values import Problem, errors_of
+
+
+@dataclass(frozen=True, slots=True)
+class _Basis:
+    """What the netlist is judged by."""
+
+    project: Project
+    rulebook: Rulebook
+    deviations: tuple[Deviation, ...]
+    asked: Moment | None
+
+
+def run(request: Request) -> int:
+    """Write the document; findings are what it is for, so they are no failure here."""
+    basis = _prepare(request)
+    if not isinstance(basis, _Basis):
+        return complain(basis)
+    netlist = Path(request.names[0])
+    analysis = analyse(netlist, sources_for(netlist, request, basis.project))
+    if isinstance(analysis, Unusable):
+        return complain(analysis.problems)
+    review = _review(analysis, basis)
+    documents = [
+        Document(rendered(review, render, look_at(request, output.file)), output.file)
+        for output in request.outputs
+    ]
+    return finish(documents, (*analysis.inputs, basis.project.file), analysis.problems)
+
+
+def _prepare(request: Request) -> _Basis | tuple[Problem, ...]:
+    project = find_project(request.project)
+    if errors_of(project.problems):
+        return project.problems
+    rulebook = load_rulebook((*project.packs, *request.rules))
+    if not isinstance(rulebook, Rulebook):
+        return rulebook
+    reading = read_deviations(project.deviations, project.deviation_spans, rulebook)
+    asked = asked_moment()
+    if reading.problems or isinstance(asked, Problem):
+        return (*reading.problems, *((asked,) if isinstance(asked, Problem) else ()))
+    return _Basis(project, rulebook, reading.deviations, asked)
+
+
+def _review(analysis: Analysis, basis: _Basis) -> Review:
+    moment = basis.asked or moment_of(Path(analysis.netlist))
+    # a deviation ends on its day, whatever the date of the netlist's file
+    today = basis.asked.day if basis.asked else datetime.date.today()
+    verdicts = apply_deviations(judge(basis.rulebook, analysis.facts), basis.deviations, today)
+    points = open_points(analysis.stage, analysis.demands, analysis.problems)
+    return make_review(
+        Studied(analysis.stage, analysis.capabilities, analysis.demands, analysis.problems),
+        Findings(lint_report(verdicts, points), basis.rulebook, basis.deviations),
+        inputs_read(analysis, basis.project.file),
+        Occasion(moment.day.isoformat(), moment.whose, __version__),
+    )

@@ -1,0 +1,150 @@
+"""The review document as data: what a template shows, already in words and figures."""
+
+from dataclasses import dataclass, field
+
+from rulecheck.report.explanation import Entry
+from rulecheck.report.review.derating import Factor
+from rulecheck.report.review.plane import Plane
+from rulecheck.rulebook import PackInForce, Tally
+
+
+@dataclass(frozen=True, slots=True)
+class InputFile:
+    """A file that was read, as it was then."""
+
+    file: str
+    role: str
+    """`netlist`, `stage sheet`, `part data`, `include`, `project file`."""
+    digest: str
+    """SHA-256 of its bytes, hexadecimal."""
+    lines: tuple[str, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Occasion:
+    """When and with what the review was made."""
+
+    date: str
+    date_from: str
+    """Whose date it is: the netlist file's, or the one that was asked for."""
+    version: str
+
+
+@dataclass(frozen=True, slots=True)
+class Card:
+    """A place in an input file and the line that stands there."""
+
+    file: str
+    line: int
+    text: str
+
+
+@dataclass(frozen=True, slots=True)
+class FindingCard:
+    number: int
+    anchor: str
+    level: str
+    """`error`, `warning`, `note`."""
+    rule: str
+    subject: str
+    message: str
+    why: str
+    remedy: str
+    source: str
+    pack: str
+    cards: tuple[Card, ...]
+    derivation: tuple[Entry, ...]
+    position: str
+    """The anchor of the position that it is about; empty for any other subject."""
+    deviation: str
+    """Who accepted it, why and until when; empty where nobody did."""
+
+
+@dataclass(frozen=True, slots=True)
+class Mark:
+    """A finding at the thing that it is about."""
+
+    number: int
+    anchor: str
+    level: str
+
+
+@dataclass(frozen=True, slots=True)
+class UndecidedCheck:
+    rule: str
+    subject: str
+    message: str
+    settle: tuple[str, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Extreme:
+    """One end of a demand, the state that leads to it and what it is made of."""
+
+    what: str
+    value: str
+    state: str
+    form: str
+    corner: str
+
+
+@dataclass(frozen=True, slots=True)
+class PositionPage:
+    anchor: str
+    name: str
+    ends: str
+    drawn_as: str
+    needs: str
+    has: str
+    blocks: str
+    blocks_of: str
+    carries: str
+    carries_of: str
+    result: str
+    standing: str
+    """`covered`, `short`, `lacking` or `unknown`: how it is marked."""
+    plane: Plane
+    extremes: tuple[Extreme, ...]
+    derivation: tuple[Entry, ...]
+    marks: tuple[Mark, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class OpenList:
+    """One sort of what was not checked or taken on trust."""
+
+    heading: str
+    meaning: str
+    lines: tuple[str, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Row:
+    """A line of a plain table."""
+
+    cells: tuple[str, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Review:
+    netlist: str
+    sheet: str
+    occasion: Occasion
+    inputs: tuple[InputFile, ...]
+    packs: tuple[PackInForce, ...]
+    profile: str
+    factors: tuple[Factor, ...]
+    pack_changes: tuple[str, ...]
+    tally: Tally
+    rules_in_force: int
+    positions: tuple[PositionPage, ...]
+    findings: tuple[FindingCard, ...]
+    accepted: tuple[FindingCard, ...]
+    undecided: tuple[UndecidedCheck, ...]
+    open_lists: tuple[OpenList, ...]
+    taken_on_trust: tuple[OpenList, ...]
+    legs: tuple[Row, ...]
+    ports: tuple[Row, ...]
+    quantities: tuple[Row, ...]
+    cautions: tuple[str, ...]
+    deviations: tuple[Row, ...] = field(default=())
