@@ -69,7 +69,7 @@ _OF_KIND = (
 )
 _TWO_PINS = frozenset(
     {Kind.RESISTOR, Kind.CAPACITOR, Kind.INDUCTOR, Kind.VOLTAGE_SOURCE, Kind.CURRENT_SOURCE}
-    | {Kind.FUSE}
+    | {Kind.FUSE, Kind.CIRCUIT_BREAKER, Kind.NTC, Kind.VARISTOR}
 )
 
 

@@ -6,6 +6,7 @@ from rulecheck.parts.part_data import NO_PART_DATA, PartData
 from rulecheck.parts.part_data_file import PartDataFile
 from rulecheck.parts.read_data import read_part_data
 from rulecheck.parts.text import parts_text
+from rulecheck.parts.through import Joined, is_barrier, joined_nets, through_nets
 
 __all__ = [
     "NO_PART_DATA",
@@ -13,6 +14,7 @@ __all__ = [
     "Core",
     "Datum",
     "Edge",
+    "Joined",
     "Kind",
     "Part",
     "PartData",
@@ -20,6 +22,9 @@ __all__ = [
     "PartList",
     "Pin",
     "identify_parts",
+    "is_barrier",
+    "joined_nets",
     "parts_text",
     "read_part_data",
+    "through_nets",
 ]

@@ -98,6 +98,20 @@ def _clamp(element: Element) -> PartReading:
     )
 
 
+def _varistor(element: Element) -> PartReading:
+    if len(element.nets) != 2:
+        return _clamp(element)
+    return read_as(element, Kind.VARISTOR, "read as a surge clamp that idles in normal operation")
+
+
+def _breaker(element: Element) -> PartReading:
+    return read_as(element, Kind.CIRCUIT_BREAKER, "read as a closed circuit breaker")
+
+
+def _ntc(element: Element) -> PartReading:
+    return read_as(element, Kind.NTC, "read as a temperature-dependent resistor")
+
+
 def _diode(element: Element) -> PartReading:
     return read_as(element, Kind.DIODE, "read as a diode with its pins in the order anode cathode")
 
@@ -157,8 +171,11 @@ PREFIXES: Mapping[str, Maker] = {
     **dict.fromkeys(("Y", "XTAL"), _mechanical),
     **dict.fromkeys(("J", "P", "JP", "CN", "CON", "CONN", "HDR", "ICSP"), _connector),
     **dict.fromkeys(("F", "FU", "FS", "FUSE"), _fuse),
-    **dict.fromkeys(("RV", "VDR", "VAR", "MOV", "TVS", "GDT"), _clamp),
-    **dict.fromkeys(("NTC", "PTC", "RT", "TH"), _thermistor),
+    **dict.fromkeys(("RV", "VDR", "VAR", "MOV"), _varistor),
+    **dict.fromkeys(("TVS", "GDT"), _clamp),
+    **dict.fromkeys(("PTC", "RT", "TH"), _thermistor),
+    **dict.fromkeys(("CB", "QF"), _breaker),
+    "NTC": _ntc,
     **dict.fromkeys(("BT", "BAT"), _battery),
     **dict.fromkeys(("CR", "BR", "RL", "RLY", "IC"), not_understood),
     "FB": _bead,

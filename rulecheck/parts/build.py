@@ -17,7 +17,7 @@ from rulecheck.parts.roles import pair_up
 from rulecheck.parts.stated import gather, multiplied
 from rulecheck.values import Problem, Unknown
 
-_VALUED = frozenset({Kind.RESISTOR, Kind.CAPACITOR, Kind.INDUCTOR})
+_VALUED = frozenset({Kind.RESISTOR, Kind.CAPACITOR, Kind.INDUCTOR, Kind.NTC})
 _UNNAMED = frozenset("RCLVI")
 
 

@@ -43,6 +43,9 @@ FIGURES: tuple[Figure, ...] = (
     Figure("ratings", "rms-current", _A, scales=True),
     Figure("ratings", "ripple-current", _A, scales=True),
     Figure("ratings", "voltage", _V),
+    Figure("ratings", "dc-voltage", _V),
+    Figure("ratings", "clamp", _V),
+    Figure("ratings", "isolation", _V),
     Figure("ratings", "gate", _V, ranged=True),
     Figure("ratings", "power", Dimension.POWER, scales=True),
     Figure("ratings", "junction-temperature", Dimension.TEMPERATURE),
@@ -75,6 +78,7 @@ FIGURES: tuple[Figure, ...] = (
 BY_PATH: Mapping[str, Figure] = {figure.path: figure for figure in FIGURES}
 SECTIONS = tuple(dict.fromkeys(figure.section for figure in FIGURES))
 
+_LINE = ("ratings.current", "ratings.voltage", "ratings.dc-voltage")
 _DEVICE = (
     *("ratings.blocking", "ratings.current", "ratings.peak-current"),
     *("ratings.power", "ratings.junction-temperature"),
@@ -85,12 +89,12 @@ _GATE = ("ratings.gate", *(f.path for f in FIGURES if f.section == "gate"))
 _TRANSISTOR = (*_DEVICE, _REVERSE, *_GATE, *_RECOVERY)
 _SIGNAL = (
     *("ratings.voltage", "ratings.current", "ratings.power", "ratings.junction-temperature"),
-    *(f.path for f in FIGURES if f.section == "driver"),
+    *("ratings.isolation", *(f.path for f in FIGURES if f.section == "driver")),
 )
 
 APPLICABLE: Mapping[Kind, Words] = {
     Kind.DIODE: (*_DEVICE, *_RECOVERY),
-    Kind.ZENER: (*_DEVICE, *_RECOVERY),
+    Kind.ZENER: (*_DEVICE, *_RECOVERY, "ratings.clamp"),
     Kind.THYRISTOR: _TRANSISTOR,
     Kind.TRIAC: _TRANSISTOR,
     Kind.BJT: _TRANSISTOR,
@@ -102,11 +106,23 @@ APPLICABLE: Mapping[Kind, Words] = {
     Kind.REVERSE_BLOCKING_IGBT: _TRANSISTOR,
     Kind.IDEAL_SWITCH: _TRANSISTOR,
     Kind.RESISTOR: ("ratings.power", "ratings.voltage", "ratings.current"),
-    Kind.CAPACITOR: ("ratings.voltage", "ratings.ripple-current", "ratings.dielectric"),
+    Kind.CAPACITOR: (
+        *("ratings.voltage", "ratings.ripple-current", "ratings.dielectric"),
+        "ratings.isolation",
+    ),
     Kind.INDUCTOR: ("ratings.current", "ratings.rms-current"),
-    Kind.WINDING_SET: ("ratings.current", "ratings.rms-current", "ratings.voltage"),
-    Kind.FUSE: ("ratings.current", "ratings.voltage"),
-    Kind.CONNECTOR: ("ratings.current", "ratings.voltage"),
+    Kind.WINDING_SET: (
+        *("ratings.current", "ratings.rms-current", "ratings.voltage"),
+        "ratings.isolation",
+    ),
+    Kind.FUSE: _LINE,
+    Kind.CIRCUIT_BREAKER: _LINE,
+    Kind.CONNECTOR: _LINE,
+    Kind.RELAY: (*_LINE, "ratings.isolation"),
+    Kind.NTC: ("ratings.current", "ratings.power"),
+    Kind.VARISTOR: ("ratings.voltage", "ratings.dc-voltage", "ratings.clamp", "ratings.power"),
+    Kind.COMMON_MODE_CHOKE: (*_LINE, "ratings.isolation"),
+    Kind.CURRENT_TRANSFORMER: (*_LINE, "ratings.isolation"),
     Kind.VOLTAGE_SOURCE: (),
     Kind.CURRENT_SOURCE: (),
     Kind.DRIVER: _SIGNAL,

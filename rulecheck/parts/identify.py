@@ -24,9 +24,18 @@ from rulecheck.values import Problem, error, note
 _UNMATCHED = frozenset("VIEGHBK")
 """Letters that no part data can describe: sources and couplings."""
 _PASSIVE_KINDS: Mapping[str, frozenset[Kind]] = {
-    "R": frozenset({Kind.RESISTOR, Kind.FUSE, Kind.SENSOR, Kind.ZENER, Kind.OTHER}),
-    "C": frozenset({Kind.CAPACITOR, Kind.DIODE, Kind.OTHER, Kind.CONNECTOR, Kind.CONTROLLER}),
-    "L": frozenset({Kind.INDUCTOR, Kind.DIODE, Kind.FUSE, Kind.SENSOR, Kind.OTHER}),
+    "R": frozenset(
+        {Kind.RESISTOR, Kind.FUSE, Kind.SENSOR, Kind.ZENER, Kind.OTHER}
+        | {Kind.NTC, Kind.VARISTOR, Kind.RELAY}
+    ),
+    "C": frozenset(
+        {Kind.CAPACITOR, Kind.DIODE, Kind.OTHER, Kind.CONNECTOR, Kind.CONTROLLER}
+        | {Kind.CIRCUIT_BREAKER, Kind.CURRENT_TRANSFORMER}
+    ),
+    "L": frozenset(
+        {Kind.INDUCTOR, Kind.DIODE, Kind.FUSE, Kind.SENSOR, Kind.OTHER}
+        | {Kind.COMMON_MODE_CHOKE, Kind.CURRENT_TRANSFORMER}
+    ),
 }
 """What part data may make of a passive's card."""
 

@@ -49,6 +49,9 @@ class RatingsEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rena
     rms_current: Current | None = None
     ripple_current: Current | None = None
     voltage: Voltage | None = None
+    dc_voltage: Voltage | None = None
+    clamp: Voltage | None = None
+    isolation: Voltage | None = None
     gate: VoltageRange | None = None
     power: Power | None = None
     junction_temperature: Temperature | None = None

@@ -45,6 +45,14 @@ PINOUTS: Mapping[Kind, Pinout] = {
     Kind.VOLTAGE_SOURCE: _TWO,
     Kind.CURRENT_SOURCE: _TWO,
     Kind.FUSE: _TWO,
+    Kind.CIRCUIT_BREAKER: _TWO,
+    Kind.NTC: _TWO,
+    Kind.VARISTOR: _TWO,
+    Kind.RELAY: Pinout(("common", "normally-open"), ("coil-plus", "coil-minus", "normally-closed")),
+    Kind.COMMON_MODE_CHOKE: Pinout(("in-1", "out-1", "in-2", "out-2"), ("in-3", "out-3")),
+    Kind.CURRENT_TRANSFORMER: Pinout(
+        ("primary-in", "primary-out", "secondary-1", "secondary-2"), ()
+    ),
 }
 """Kinds with fixed roles; all other kinds' pins are named by part data or by number."""
 

@@ -6,6 +6,7 @@ from rulecheck.stage.position import Position
 from rulecheck.stage.sheet import EMPTY_SHEET, Sheet, SheetReading, read_sheet
 from rulecheck.stage.sheet_file import SheetFile
 from rulecheck.stage.stage import (
+    Barrier,
     Branch,
     BranchKind,
     Port,
@@ -19,6 +20,7 @@ from rulecheck.stage.text import stage_text
 
 __all__ = [
     "EMPTY_SHEET",
+    "Barrier",
     "Branch",
     "BranchKind",
     "GatePulse",

@@ -70,7 +70,7 @@ def branch_kind(part: Part) -> BranchKind | None:
         return BranchKind.VOLTAGE
     if part.kind in (Kind.CURRENT_SOURCE, Kind.INDUCTOR):
         return BranchKind.CURRENT
-    if part.kind is Kind.RESISTOR:
+    if part.kind in (Kind.RESISTOR, Kind.NTC):
         senses = not isinstance(part.value, Unknown) and part.value >= LOAD_RESISTANCE
         return None if senses else BranchKind.RESISTOR
     return None

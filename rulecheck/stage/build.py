@@ -1,7 +1,7 @@
 """Build the stage from the parts and the sheet: one named step after another."""
 
 import difflib
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable, Iterator, Mapping
 from dataclasses import dataclass, replace
 
 from rulecheck.parts import Kind, Part, PartList
@@ -20,7 +20,7 @@ from rulecheck.stage.power_path import (
     find_live_nets,
     find_power_devices,
 )
-from rulecheck.stage.sheet import Sheet
+from rulecheck.stage.sheet import Override, Sheet
 from rulecheck.stage.stage import Branch, BranchKind, Port, Role, Stage, Switching, Transformer
 from rulecheck.stage.wiring import merge_wires
 from rulecheck.values import Interval, Problem, error, natural_key
@@ -74,6 +74,10 @@ def read_stage(parts: PartList, sheet: Sheet) -> StageReading:
         _switching(sheet.switching, pulses),
         _leg_switching(layout, sheet),
         pulses,
+        _domains(layout, sheet),
+        sheet.barriers,
+        {n: o.leakage for n, o in _overrides(parts, sheet) if o.leakage is not None},
+        {n: o.balance for n, o in _overrides(parts, sheet) if o.balance},
         sheet.efficiency,
         sheet.file,
         (*parts.assumed, *wiring.assumed, *_kept_assumptions(known)),
@@ -190,6 +194,22 @@ def _given(parts: PartList, sheet: Sheet) -> dict[str, Interval]:
     return given
 
 
+def _overrides(parts: PartList, sheet: Sheet) -> Iterator[tuple[str, Override]]:
+    for part in parts.parts:
+        override = sheet.overrides.get(part.name.lower())
+        if override is not None:
+            yield part.name, override
+
+
+def _domains(layout: Layout, sheet: Sheet) -> dict[str, tuple[str, ...]]:
+    """The sheet's domains by the netlist's own spelling of nets; unknown ones are problems."""
+    by_lower = {net.lower(): net for net in layout.merged}
+    return {
+        name: tuple(by_lower[net.lower()] for net in domain.nets if net.lower() in by_lower)
+        for name, domain in sheet.domains.items()
+    }
+
+
 def _switching(stated: Switching, pulses: Mapping[str, GatePulse]) -> Switching:
     """Where the sheet states no frequency, the slowest gate source of the netlist gives it."""
     if stated.frequency is not None or not pulses:
@@ -233,7 +253,7 @@ def _is_signal(known: _Sorted, part: Part) -> bool:
 
 def _only_signals(known: _Sorted, part: Part, net: str) -> bool:
     others = [t.part for t in known.layout.touches[net] if t.part.name != part.name]
-    quiet = {Kind.RESISTOR, Kind.CAPACITOR, *CIRCUITS}
+    quiet = {Kind.RESISTOR, Kind.CAPACITOR, Kind.NTC, *CIRCUITS}
     return bool(others) and all(other.kind in quiet for other in others)
 
 
@@ -261,6 +281,11 @@ def _unknown_names(parts: PartList, layout: Layout, sheet: Sheet) -> Iterable[Pr
             hint = f"did you mean '{names[close[0]]}'?" if close else "name a part of the netlist"
             yield error(override.span, f"part '{override.name}' is not in the netlist", hint)
     nets = {net.lower() for net in layout.merged}
+    for name, domain in sheet.domains.items():
+        for net in domain.nets:
+            if net.lower() not in nets:
+                what = f"net '{net}' of domain '{name}' is not in the netlist"
+                yield error(domain.span, what, "name a net of the netlist")
     for leg in sheet.legs:
         if leg.midpoint.lower() not in nets:
             yield error(

@@ -3,7 +3,7 @@
 from collections.abc import Mapping
 from dataclasses import dataclass
 
-from rulecheck.parts import Conduction, Kind, Part, PartList
+from rulecheck.parts import Conduction, Kind, Part, PartList, through_nets
 from rulecheck.stage.sheet import Sheet
 from rulecheck.stage.wiring import Wiring
 from rulecheck.values import natural_key
@@ -58,9 +58,13 @@ def lay_out(parts: PartList, sheet: Sheet, wiring: Wiring) -> Layout:
     merged = wiring.merged
     touches: dict[str, list[Touch]] = {net: [] for net in merged.values()}
     for part in sorted(parts.parts, key=lambda p: natural_key(p.name)):
-        if part.name in wires or part.kind is Kind.MODULE:
+        if part.kind is Kind.MODULE:
             continue
+        # of a relay or current transformer the coil and the secondary still stand for themselves
+        passed = {net for pair in through_nets(part) for net in pair} or set(part.nets)
         for pin in part.pins:
+            if part.name in wires and pin.net in passed:
+                continue
             touches[merged[pin.net]].append(Touch(part, pin.role))
     by_lower = {net.lower(): merged[net] for net in merged}
     grounds = {by_lower[g.lower()] for g in (parts.ground, *parts.grounds) if g.lower() in by_lower}

@@ -58,6 +58,8 @@ def find_peripheral(layout: Layout, gate_parts: frozenset[str]) -> Peripheral:
     for part in layout.parts.parts:
         if part.kind is Kind.ZENER and part.name not in gate_parts:
             found.setdefault(part.name, _Found(part, Role.CLAMP, main_nets(layout, part)[0]))
+        if part.kind is Kind.VARISTOR:
+            found.setdefault(part.name, _Found(part, Role.CLAMP, layout.ends(part)[0]))
     kept = {
         name: item
         for name, item in found.items()

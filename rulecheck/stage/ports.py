@@ -70,6 +70,10 @@ def _port(entry: SheetPort, nets: tuple[str, ...], neutral: str) -> Port:
         entry.span,
         entry.least_amplitude,
         entry.draws,
+        entry.source,
+        entry.fused_elsewhere,
+        entry.withstands,
+        (*entry.nets, *((entry.neutral,) if entry.neutral else ())),
     )
 
 

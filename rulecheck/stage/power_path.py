@@ -21,6 +21,7 @@ ISOLATION_CAPACITANCE = 22e-9
 """Farad; common practice: capacitors across an isolation barrier are smaller."""
 FEED_RESISTANCE = 1e3
 """Ohm; a larger resistor does not carry power from one part of the stage to another."""
+_RESISTORS = frozenset({Kind.RESISTOR, Kind.NTC})
 
 
 def find_live_nets(layout: Layout, aside: frozenset[str]) -> frozenset[str]:
@@ -51,7 +52,7 @@ def _feeding_ends(layout: Layout, part: Part, aside: frozenset[str]) -> tuple[st
         return main_nets(layout, part)
     if part.kind is Kind.INDUCTOR:
         return layout.ends(part)
-    if part.kind is Kind.RESISTOR and not isinstance(part.value, Unknown):
+    if part.kind in _RESISTORS and not isinstance(part.value, Unknown):
         return layout.ends(part) if _feeds(layout, part, part.value, aside) else ()
     return ()
 
@@ -146,7 +147,7 @@ def _carrying_ends(layout: Layout, part: Part, bulk: frozenset[str]) -> tuple[st
         return main_nets(layout, part)
     if part.kind is Kind.INDUCTOR or part.kind in SOURCES or part.name in bulk:
         return layout.ends(part)
-    if part.kind is Kind.RESISTOR:
+    if part.kind in _RESISTORS:
         known = not isinstance(part.value, Unknown)
         return layout.ends(part) if not known or _carries(part) else ()
     if part.kind is Kind.CONNECTOR:

@@ -8,6 +8,7 @@ import math
 import re
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
+from itertools import combinations
 from typing import TypeVar
 
 from rulecheck.reading import SourceText, YamlReading, read_yaml
@@ -19,7 +20,7 @@ from rulecheck.stage.sheet_file import (
     SheetFile,
     SwitchingEntry,
 )
-from rulecheck.stage.stage import PortKind, Role, Switching
+from rulecheck.stage.stage import Barrier, PortKind, Role, Switching
 from rulecheck.values import Dimension, Interval, Problem, Span, error
 
 Path = tuple[str | int, ...]
@@ -46,6 +47,9 @@ class SheetPort:
     least_amplitude: float
     draws: bool
     span: Span
+    source: str = ""
+    fused_elsewhere: bool = False
+    withstands: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)
@@ -55,12 +59,22 @@ class Override:
     voltage: Interval | None
     role: Role | None
     span: Span
+    leakage: float | None = None
+    balance: str = ""
 
 
 @dataclass(frozen=True, slots=True)
 class LegSheet:
     midpoint: str
     switching: Switching
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class Domain:
+    """Nets, as written, that belong together galvanically."""
+
+    nets: tuple[str, ...]
     span: Span
 
 
@@ -74,6 +88,9 @@ class Sheet:
     parts: tuple[str, ...] = ()
     overrides: Mapping[str, Override] = field(default_factory=dict)
     """By lower-case element name."""
+    domains: Mapping[str, Domain] = field(default_factory=dict)
+    barriers: tuple[Barrier, ...] = ()
+    """One for each two domains."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -142,6 +159,34 @@ def _sheet(file: str, entries: SheetFile, reader: _Reader) -> Sheet:
         efficiency or 1.0,
         tuple(entries.parts),
         {name.lower(): _override(name, entry, reader) for name, entry in entries.set.items()},
+        {
+            name: Domain(tuple(map(str, nets)), reader.marks.span(("domains", name)))
+            for name, nets in entries.domains.items()
+        },
+        _barriers(entries, reader),
+    )
+
+
+def _barriers(entries: SheetFile, reader: _Reader) -> tuple[Barrier, ...]:
+    """One for each two domains, with the voltages that an entry states."""
+    names = tuple(entries.domains)
+    stated: dict[frozenset[str], Barrier] = {}
+    for index, entry in enumerate(entries.barriers):
+        path: Path = ("barriers", index)
+        unknown = [name for name in entry.between if name not in names]
+        if len(set(entry.between)) != 2 or unknown:
+            what = f"`between` names two domains; here are {', '.join(entry.between) or 'none'}"
+            reader.fail((*path, "between"), what, f"use two of {', '.join(names) or '`domains:`'}")
+            continue
+        first, second = entry.between
+        volts = reader.number(entry.voltage, Dimension.VOLTAGE, (*path, "voltage"))
+        test = reader.number(entry.test_voltage, Dimension.VOLTAGE, (*path, "test-voltage"))
+        span = reader.marks.span(path)
+        stated[frozenset(entry.between)] = Barrier((first, second), volts, test, span)
+    whole = reader.marks.span(("domains",))
+    return tuple(
+        stated.get(frozenset(pair), Barrier(pair, None, None, whole))
+        for pair in combinations(names, 2)
     )
 
 
@@ -155,6 +200,7 @@ def _switching(entry: SwitchingEntry | LegSwitchingEntry, path: Path, reader: _R
         reader.number(entry.frequency, Dimension.FREQUENCY, (*path, "frequency")),
         reader.number(entry.dead_time, Dimension.TIME, (*path, "dead-time")),
         reader.number(entry.edge, Dimension.TIME, (*path, "edge")),
+        reader.number(entry.shortest_pulse, Dimension.TIME, (*path, "shortest-pulse")),
     )
 
 
@@ -168,7 +214,9 @@ def _override(name: str, entry: OverrideEntry, reader: _Reader) -> Override:
         if role is None:
             known = ", ".join(sorted(ROLES))
             reader.fail((*path, "role"), f"role '{entry.role}' is not known", f"use one of {known}")
-    return Override(name, current, voltage, role, reader.marks.span(path))
+    leakage = reader.number(entry.leakage, Dimension.INDUCTANCE, (*path, "leakage"))
+    span = reader.marks.span(path)
+    return Override(name, current, voltage, role, span, leakage, entry.balance or "")
 
 
 def _port(name: str, entry: PortEntry, reader: _Reader) -> SheetPort:
@@ -203,6 +251,9 @@ def _port(name: str, entry: PortEntry, reader: _Reader) -> SheetPort:
         least,
         entry.draws is not None,
         span,
+        entry.source or "",
+        entry.fuse == "elsewhere",
+        tuple(entry.withstands),
     )
 
 

@@ -5,14 +5,18 @@ switching: {frequency: 20 kHz, dead-time: 400 ns}
 set: {L1: {current: [-90 A, 90 A]}}
 """
 
+from typing import Literal
+
 import msgspec
 
 from rulecheck.reading.quantities import (
     Frequency,
     FrequencyRange,
+    Inductance,
     Plain,
     PowerRange,
     Time,
+    Voltage,
 )
 
 AlternatingText = str | int | float
@@ -23,7 +27,11 @@ NetName = str | int
 
 
 class PortEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename="kebab"):
-    """A port: two nets (`between`) or a symmetrical set (`phases`), and what is known of it."""
+    """A port: two nets (`between`) or a symmetrical set (`phases`), and what is known of it.
+
+    `source` says what stands behind it, `fuse: elsewhere` that its fuse or breaker is on another
+    drawing, `withstands` what it is to survive from outside.
+    """
 
     between: list[NetName] | None = None
     phases: list[NetName] | None = None
@@ -34,33 +42,57 @@ class PortEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename=
     draws: AlternatingRange | None = None
     power: PowerRange | None = None
     frequency: FrequencyRange | None = None
+    source: Literal["battery", "mains", "panel", "generator", "supply", "load"] | None = None
+    fuse: Literal["here", "elsewhere"] | None = None
+    withstands: list[Literal["reverse-polarity", "surge"]] = []
 
 
 class LegSwitchingEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename="kebab"):
     frequency: Frequency | None = None
     dead_time: Time | None = None
     edge: Time | None = None
+    shortest_pulse: Time | None = None
 
 
 class SwitchingEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename="kebab"):
-    """For all legs; `legs` states it for one, by the net of its midpoint."""
+    """For all legs; `legs` states it for one, by the net of its midpoint.
+
+    `shortest-pulse` is the shortest time that a switch is commanded on or off.
+    """
 
     frequency: Frequency | None = None
     dead_time: Time | None = None
     edge: Time | None = None
+    shortest_pulse: Time | None = None
     legs: dict[str, LegSwitchingEntry] = {}
 
 
 class OverrideEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename="kebab"):
-    """What the sheet states of one element, over everything derived."""
+    """What the sheet states of one element, over everything derived.
+
+    Of a winding: `leakage` seen from it, and what keeps the mean voltage of its core at zero.
+    """
 
     current: AlternatingRange | None = None
     voltage: AlternatingRange | None = None
     role: str | None = None
+    leakage: Inductance | None = None
+    balance: Literal["current-control", "gap", "measured"] | None = None
+
+
+class BarrierEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename="kebab"):
+    """Two domains and the working voltage between them, as its peak."""
+
+    between: list[str]
+    voltage: Voltage | None = None
+    test_voltage: Voltage | None = None
 
 
 class SheetFile(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename="kebab"):
-    """A whole `*.stage.yaml`."""
+    """A whole `*.stage.yaml`.
+
+    `domains` names nets that belong together galvanically; any two domains are to be separate.
+    """
 
     ports: dict[str, PortEntry] = {}
     switching: SwitchingEntry = SwitchingEntry()
@@ -68,3 +100,5 @@ class SheetFile(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename=
     efficiency: Plain = 1.0
     parts: list[str] = []
     set: dict[str, OverrideEntry] = {}
+    domains: dict[str, list[NetName]] = {}
+    barriers: list[BarrierEntry] = []

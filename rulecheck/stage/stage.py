@@ -43,6 +43,13 @@ class Port:
     """Of an AC voltage: the smallest amplitude that the sheet states."""
     draws: bool = False
     """The sheet says `draws`: an AC port takes power out of the stage."""
+    source: str = ""
+    """What the sheet says stands behind it: `battery`, `mains`, ...; empty where it does not."""
+    fused_elsewhere: bool = False
+    withstands: tuple[str, ...] = ()
+    """What it is to survive from outside: `reverse-polarity`, `surge`."""
+    named_nets: tuple[str, ...] = ()
+    """Its nets as the sheet names them, before wires are merged."""
 
 
 class BranchKind(StrEnum):
@@ -116,6 +123,18 @@ class Switching:
     frequency: float | None = None
     dead_time: float | None = None
     edge: float | None = None
+    shortest_pulse: float | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Barrier:
+    """Two domains of the sheet that are to be separate; volts, None where nobody states them."""
+
+    domains: tuple[str, str]
+    voltage: float | None
+    """The working voltage between them, as its peak."""
+    test_voltage: float | None
+    span: Span
 
 
 @dataclass(frozen=True, slots=True)
@@ -141,6 +160,14 @@ class Stage:
     """By midpoint net."""
     gate_pulses: Mapping[str, GatePulse] = field(default_factory=dict)
     """By device name: the pulse source of the netlist that drives its gate."""
+    domains: Mapping[str, tuple[str, ...]] = field(default_factory=dict)
+    """By name: nets that the sheet says belong together galvanically, as the netlist names them."""
+    barriers: tuple[Barrier, ...] = ()
+    """One for each two domains of the sheet."""
+    leakage: Mapping[str, float] = field(default_factory=dict)
+    """By winding: the leakage inductance seen from it, henry."""
+    balance: Mapping[str, str] = field(default_factory=dict)
+    """By winding: what keeps its mean voltage at zero, as the sheet says."""
     efficiency: float = 1.0
     sheet: str = ""
     """The sheet's file name; empty where there is none."""

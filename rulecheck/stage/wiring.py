@@ -11,7 +11,7 @@ from collections import Counter
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 
-from rulecheck.parts import Kind, Part, PartList
+from rulecheck.parts import Kind, Part, PartList, through_nets
 from rulecheck.stage.sheet import Sheet
 from rulecheck.stage.stage import Role
 from rulecheck.values import Unknown, natural_key, write_quantity
@@ -20,6 +20,11 @@ WIRE_RESISTANCE = 0.1
 """Ohm; common practice: shunts, jumpers and beads are below it, loads above."""
 WIRE_INDUCTANCE = 50e-9
 """Henry; common practice: parasitics of leads and planes."""
+_THROUGH_WORDS = {
+    Kind.RELAY: "relay, its contact closed",
+    Kind.NTC: "inrush limiter, warm",
+    Kind.SENSOR: "current sensor",
+}
 
 
 @dataclass(frozen=True, slots=True)
@@ -36,7 +41,7 @@ def merge_wires(parts: PartList, sheet: Sheet) -> Wiring:
     assumed: list[str] = []
     for part in parts.parts:
         reason = _why_wire(part, sheet)
-        if reason and len(part.nets) == 2:
+        if reason:
             wires.append(part)
             assumed.append(f"{part.name} read as a wire ({reason})")
     preferred = _preferred_nets(sheet, parts)
@@ -49,11 +54,14 @@ def merge_wires(parts: PartList, sheet: Sheet) -> Wiring:
 def _why_wire(part: Part, sheet: Sheet) -> str:
     override = sheet.overrides.get(part.name.lower())
     if override is not None and override.role is not None:
-        return "role of the stage sheet" if override.role is Role.WIRE else ""
+        wired = override.role is Role.WIRE and (len(part.nets) == 2 or through_nets(part))
+        return "role of the stage sheet" if wired else ""
     if override is not None and (override.current or override.voltage):
         return ""
-    if part.kind is Kind.FUSE:
-        return "fuse"
+    if through_nets(part):
+        return _THROUGH_WORDS.get(part.kind, part.kind.value)
+    if len(part.nets) != 2:
+        return ""
     if isinstance(part.value, Unknown) or part.waveform is not None:
         return ""
     limits = {
@@ -67,6 +75,11 @@ def _why_wire(part: Part, sheet: Sheet) -> str:
     if part.kind is Kind.VOLTAGE_SOURCE:
         return "zero-volt source"
     return write_quantity(part.value, unit)
+
+
+def _ends(wire: Part) -> tuple[tuple[str, str], ...]:
+    """The pairs of nets that become one."""
+    return through_nets(wire) or ((wire.nets[0], wire.nets[-1]),)
 
 
 def _preferred_nets(sheet: Sheet, parts: PartList) -> dict[str, int]:
@@ -113,8 +126,8 @@ def _merge(
     def rank(net: str) -> tuple[object, ...]:
         return (preferred.get(net.lower(), len(preferred)), -usage[net], natural_key(net))
 
-    for wire in wires:
-        kept, *others = sorted({root(net) for net in wire.nets}, key=rank)
+    for pair in (pair for wire in wires for pair in _ends(wire)):
+        kept, *others = sorted({root(net) for net in pair}, key=rank)
         for other in others:
             parent[other] = kept
     return {net: root(net) for net in sorted(usage)}
