@@ -1,6 +1,7 @@
 """The power stage: ports, part roles, branches and switch positions."""
 
 from rulecheck.stage.build import StageReading, read_stage
+from rulecheck.stage.gate_drive import DrivenBy, DriveOutput, GateClamp, GateDrive, GatePath
 from rulecheck.stage.gate_pulse import GatePulse
 from rulecheck.stage.position import Position
 from rulecheck.stage.sheet import EMPTY_SHEET, Sheet, SheetReading, read_sheet
@@ -23,6 +24,11 @@ __all__ = [
     "Barrier",
     "Branch",
     "BranchKind",
+    "DriveOutput",
+    "DrivenBy",
+    "GateClamp",
+    "GateDrive",
+    "GatePath",
     "GatePulse",
     "Port",
     "PortKind",

@@ -9,6 +9,7 @@ from rulecheck.stage.branches import build_transformers, part_branches, port_bra
 from rulecheck.stage.gate_pulse import GatePulse
 from rulecheck.stage.gate_region import GateRegion, find_gate_region
 from rulecheck.stage.gate_timing import find_gate_pulses
+from rulecheck.stage.gate_trace import taken_for_drivers, trace_gates
 from rulecheck.stage.grouping import Grouping, group_devices
 from rulecheck.stage.layout import CIRCUITS, Layout, is_semiconductor, lay_out, main_nets
 from rulecheck.stage.orientation import mean_potentials
@@ -59,6 +60,7 @@ def read_stage(parts: PartList, sheet: Sheet) -> StageReading:
     potentials = mean_potentials(branches, transformers, layout.net(parts.ground))
     positions = build_positions(grouping.pieces, parts.by_name, layout.merged, potentials)
     pulses = find_gate_pulses(layout)
+    drives = trace_gates(layout, known.region)
     stage = Stage(
         parts.file,
         parts,
@@ -80,8 +82,12 @@ def read_stage(parts: PartList, sheet: Sheet) -> StageReading:
         {n: o.balance for n, o in _overrides(parts, sheet) if o.balance},
         sheet.efficiency,
         sheet.file,
-        (*parts.assumed, *wiring.assumed, *_kept_assumptions(known)),
+        (
+            *(*parts.assumed, *wiring.assumed),
+            *(*_kept_assumptions(known), *taken_for_drivers(drives)),
+        ),
         _not_covered(known, grouping),
+        drives,
     )
     return StageReading(stage, (*ports.problems, *_unknown_names(parts, layout, sheet)))
 

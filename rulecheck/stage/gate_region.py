@@ -23,6 +23,8 @@ from rulecheck.stage.layout import (
 
 _SUPPLY_ROLES = ("supply", "ground", "bootstrap", "return")
 _PASSED = frozenset({Kind.RESISTOR, Kind.CAPACITOR}) | DIODES
+_BEAD = 1e-6
+"""Henry; common practice: an inductor up to this at a gate is a bead or a gate choke."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -47,12 +49,16 @@ def find_gate_region(layout: Layout) -> GateRegion:
     )
 
 
+def is_bead(part: Part) -> bool:
+    return part.kind is Kind.INDUCTOR and isinstance(part.value, float) and part.value <= _BEAD
+
+
 def _passives_within(layout: Layout, nets: set[str]) -> set[str]:
     return {
         touch.part.name
         for net in nets
         for touch in layout.touches[net]
-        if touch.part.kind in _PASSED
+        if touch.part.kind in _PASSED or is_bead(touch.part)
     }
 
 
@@ -93,7 +99,7 @@ class _Search:
 
     def _pass_through(self, touch: Touch, net: str, own: frozenset[str]) -> None:
         part = touch.part
-        if part.kind in _PASSED:
+        if part.kind in _PASSED or self._is_gate_bead(part):
             for other in self.layout.others(part, net):
                 self._reach(other, own)
         elif part.name in self._windings:
@@ -101,6 +107,9 @@ class _Search:
         elif is_semiconductor(part) and net in main_nets(self.layout, part):
             self.driving.add(part.name)
             self.start(part)
+
+    def _is_gate_bead(self, part: Part) -> bool:
+        return part.name not in self.layout.coupled and is_bead(part)
 
     def _cross_core(self, winding: Part, net: str, own: frozenset[str]) -> None:
         """A winding that feeds a gate and returns to the gated device is a gate transformer's."""
@@ -129,5 +138,5 @@ class _Search:
         if part.kind in (Kind.VOLTAGE_SOURCE, Kind.CURRENT_SOURCE):
             return True
         if part.kind is Kind.INDUCTOR:
-            return part.name not in self.layout.coupled
+            return part.name not in self.layout.coupled and not is_bead(part)
         return part.kind in CIRCUITS and touch.role.startswith(_SUPPLY_ROLES)

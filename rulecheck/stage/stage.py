@@ -5,6 +5,7 @@ from dataclasses import dataclass, field
 from enum import StrEnum
 
 from rulecheck.parts import PartList
+from rulecheck.stage.gate_drive import GateDrive
 from rulecheck.stage.gate_pulse import GatePulse
 from rulecheck.stage.position import Position
 from rulecheck.values import Interval, Span
@@ -173,3 +174,5 @@ class Stage:
     """The sheet's file name; empty where there is none."""
     assumed: tuple[str, ...] = ()
     not_covered: tuple[str, ...] = ()
+    gate_drives: Mapping[str, GateDrive] = field(default_factory=dict)
+    """By merged gate net: what drives the devices with their gate there."""
