@@ -1,6 +1,6 @@
 """The whole analysis as one list of named steps."""
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass, field
 from pathlib import Path
 
@@ -15,6 +15,13 @@ from rulecheck.values import Problem, Span, error, errors_of
 
 SHEET_SUFFIX = ".stage.yaml"
 NO_SHEET = SheetReading(EMPTY_SHEET, ())
+STEPS = ("circuit", "parts", "stage", "capability", "demand", "facts")
+Tell = Callable[[str], None]
+"""Takes the name of each step as it begins."""
+
+
+def _tell_nobody(step: str) -> None:
+    """Nobody waits for word."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -52,7 +59,9 @@ class Sources:
 BESIDE = Sources()
 
 
-def analyse(path: Path, sources: Sources = BESIDE) -> Analysis | Unusable:
+def analyse(
+    path: Path, sources: Sources = BESIDE, tell: Tell = _tell_nobody
+) -> Analysis | Unusable:
     """Read the files and analyse them; the sheet's own part data come before those named here."""
     netlist = read_text(path)
     sheet_path = sources.sheet or sheet_beside(path)
@@ -62,7 +71,8 @@ def analyse(path: Path, sources: Sources = BESIDE) -> Analysis | Unusable:
     failed = tuple(text for text in (netlist, sheet, *parts) if isinstance(text, Problem))
     if isinstance(netlist, Problem) or failed:
         return Unusable((*failed, *reading.problems))
-    return _run_steps(netlist, reading, [text for text in parts if isinstance(text, SourceText)])
+    part_data = [text for text in parts if isinstance(text, SourceText)]
+    return _run_steps(netlist, reading, part_data, tell)
 
 
 def analyse_text(
@@ -86,19 +96,25 @@ def part_files(sheet: SheetReading, sources: Sources) -> tuple[Path, ...]:
 
 
 def _run_steps(
-    netlist: SourceText, sheet: SheetReading, parts: Sequence[SourceText]
+    netlist: SourceText, sheet: SheetReading, parts: Sequence[SourceText], tell: Tell = _tell_nobody
 ) -> Analysis | Unusable:
+    tell("circuit")
     part_data = read_part_data(parts)
     circuit = read_circuit_text(netlist)
     problems = (*circuit.problems, *sheet.problems, *part_data.problems)
     if errors_of((*sheet.problems, *part_data.problems)) or not circuit.elements:
         return Unusable(_with_reason(netlist.file, problems))
+    tell("parts")
     part_list = identify_parts(circuit, part_data)
+    tell("stage")
     stage, stage_problems = _stage(part_list, sheet)
     if errors_of(stage_problems):
         return Unusable((*problems, *stage_problems))
+    tell("capability")
     capabilities = find_capabilities(stage.positions)
+    tell("demand")
     demands = find_demands(stage)
+    tell("facts")
     facts = collect_facts(stage, capabilities, demands)
     return Analysis(
         netlist.file,

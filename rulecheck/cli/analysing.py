@@ -1,13 +1,23 @@
 """What the commands on netlists share: find the companions, analyse, answer with a status."""
 
+from dataclasses import dataclass
 from pathlib import Path
 
 from rulecheck.cli.complaints import complain
 from rulecheck.cli.output import Document, refused, write_documents
+from rulecheck.cli.progress import progress_for
 from rulecheck.cli.project import Project, find_project
 from rulecheck.cli.request import Request
 from rulecheck.pipeline import Analysis, Sources, Unusable, analyse
 from rulecheck.values import Problem, errors_of
+
+
+@dataclass(frozen=True, slots=True)
+class Answer:
+    """A command's exit status, and every file that it read; none where it stopped early."""
+
+    status: int
+    inputs: tuple[str, ...] = ()
 
 
 def sources_for(netlist: Path, request: Request, project: Project) -> Sources:
@@ -22,7 +32,8 @@ def analyse_one(request: Request) -> Analysis | Unusable:
     if errors_of(project.problems):
         return Unusable(project.problems)
     netlist = Path(request.names[0])
-    return analyse(netlist, sources_for(netlist, request, project))
+    with progress_for(request, 1) as progress:
+        return analyse(netlist, sources_for(netlist, request, project), progress.step)
 
 
 def finish(

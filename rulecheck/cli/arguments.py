@@ -6,6 +6,7 @@ from typing import Any
 
 from rulecheck import __version__
 from rulecheck.cli.formats import LINT, QUADRANTS
+from rulecheck.cli.parser import Parser
 from rulecheck.cli.request import Output, Request
 
 STEPS = ("circuit", "parts", "stage", "capability", "demand", "facts")
@@ -41,21 +42,21 @@ class _File(argparse.Action):
 
 def read_arguments(argv: Sequence[str] | None) -> Request:
     """Parse the command line; a mistake in it prints one line and exits with 2."""
-    parser = _parser()
+    parser = command_parser()
     values = vars(parser.parse_args(argv))
     outputs = tuple(values.pop("outputs", None) or [Output(None, None)])
-    if sum(output.file is None for output in outputs) > 1:
-        parser.error("two formats for standard output; give each but one a file with -o FILE")
     known = {name: _frozen(value) for name, value in values.items() if value is not None}
     request = Request(outputs=outputs, **known)
     fault = _fault(request)
     if fault:
-        parser.error(fault)
+        parser.of_command(request.command).error(fault)
     return request
 
 
 def _fault(request: Request) -> str | None:
     """What argparse cannot see: arguments that do not go together."""
+    if sum(output.file is None for output in request.outputs) > 1:
+        return "two formats for standard output; give each but one a file with -o FILE"
     if request.command == "lint" and request.stage and len(request.names) != 1:
         return "--stage is the sheet of one netlist; name that netlist alone"
     if request.command == "explain" and request.step and len(request.names) != 1:
@@ -71,28 +72,39 @@ def _frozen(value: object) -> Any:
     return tuple(value) if isinstance(value, list) else value
 
 
-def _parser() -> argparse.ArgumentParser:
-    parser = argparse.ArgumentParser(
+def command_parser() -> Parser:
+    """The parser of the whole command line, with every command and option."""
+    parser = Parser(
         prog="rulecheck",
-        description="Checks the netlist of a power stage: what every switch position must block"
-        " and carry, and whether the drawn devices can.",
-        epilog="Exit status: 0 nothing broken, 1 something broken, 2 the input could not be used.",
+        description="Checks the netlist of a power stage: what every switch position must block\n"
+        "and carry, and whether the drawn devices can.",
+        epilog="First run:  rulecheck demo hut && cd hut && rulecheck lint\n\n"
+        "Exit status: 0 nothing broken, 1 something broken, 2 the input could not be used.",
     )
     parser.add_argument("--version", action="version", version=f"rulecheck {__version__}")
-    commands = parser.add_subparsers(dest="command", required=True, metavar="COMMAND")
-    _lint(commands)
-    _quadrants(commands)
-    _explain(commands)
-    _report(commands)
-    _rules(commands)
-    _schema(commands)
-    _demo(commands)
+    commands = parser.add_subparsers(
+        dest="command", required=True, metavar="COMMAND", parser_class=Parser
+    )
+    for add in (_lint, _quadrants, _explain, _report, _rules, _schema, _demo):
+        add(commands)
     return parser
 
 
+def _command(commands: Any, name: str, does: str, example: str) -> Parser:
+    """A command whose help says what it does and ends with one example."""
+    sentence = f"{does[0].upper()}{does[1:]}."
+    command: Parser = commands.add_parser(
+        name, help=does, description=sentence, epilog=f"example:  rulecheck {example}"
+    )
+    return command
+
+
 def _lint(commands: Any) -> None:
-    command = commands.add_parser(
-        "lint", allow_abbrev=False, help="check and print the findings and what is open"
+    command = _command(
+        commands,
+        "lint",
+        "check and print the findings and what is open",
+        "lint hut.cir --format sarif -o findings.sarif --format lines",
     )
     command.add_argument("names", nargs="*", metavar="NETLIST", help="default: rulecheck.yaml's")
     _add_inputs(command)
@@ -105,17 +117,29 @@ def _lint(commands: Any) -> None:
     command.add_argument("--jobs", type=_jobs, metavar="N", help="netlists at once; 0: all cores")
     command.add_argument("--record", metavar="FILE", help="write today's broken findings there")
     command.add_argument("--since", metavar="FILE", help="fail only on what this record lacks")
+    _add_watch(command)
 
 
 def _quadrants(commands: Any) -> None:
-    command = commands.add_parser("quadrants", help="what each position must cover and covers")
+    command = _command(
+        commands,
+        "quadrants",
+        "show what each position must cover and covers",
+        "quadrants hut.cir --stage winter.stage.yaml",
+    )
     command.add_argument("names", nargs=1, metavar="NETLIST")
     _add_inputs(command)
     _add_outputs(command, tuple(QUADRANTS))
+    _add_watch(command)
 
 
 def _explain(commands: Any) -> None:
-    command = commands.add_parser("explain", help="why: the derivation for a name, or a step")
+    command = _command(
+        commands,
+        "explain",
+        "say why: the derivation for a position, leg, part or port, or one step's result",
+        "explain hut.cir Q1",
+    )
     command.add_argument("names", nargs="+", metavar="NETLIST [NAME]")
     command.add_argument("--step", choices=STEPS, help="print what this step found instead")
     _add_inputs(command)
@@ -123,7 +147,12 @@ def _explain(commands: Any) -> None:
 
 
 def _report(commands: Any) -> None:
-    command = commands.add_parser("report", help="the review document: one HTML file to read")
+    command = _command(
+        commands,
+        "report",
+        "write the review document: one HTML file to read",
+        "report hut.cir -o review.html",
+    )
     command.add_argument("names", nargs=1, metavar="NETLIST")
     _add_inputs(command)
     _add_packs(command)
@@ -131,7 +160,9 @@ def _report(commands: Any) -> None:
 
 
 def _rules(commands: Any) -> None:
-    command = commands.add_parser("rules", help="list the rules in force, or explain one")
+    command = _command(
+        commands, "rules", "list the rules in force, or explain one", "rules reverse-current-path"
+    )
     command.add_argument("names", nargs="*", metavar="ID", help="a rule; with --try a pack")
     command.add_argument(
         "--try", dest="try_packs", action="store_true", help="run the examples that packs carry"
@@ -145,18 +176,25 @@ def _rules(commands: Any) -> None:
 
 
 def _schema(commands: Any) -> None:
-    command = commands.add_parser("schema", help="print a JSON Schema for an editor")
+    command = _command(
+        commands,
+        "schema",
+        "print the JSON Schema of a YAML file, with which an editor completes it",
+        "schema sheet -o sheet.schema.json",
+    )
     command.add_argument("names", nargs=1, choices=SCHEMAS, metavar="|".join(SCHEMAS))
-    _add_outputs(command, ())
+    _add_file(command, "write it there")
 
 
 def _demo(commands: Any) -> None:
-    command = commands.add_parser("demo", help="write the demo stage into a folder")
-    command.add_argument("names", nargs=1, metavar="DIR")
+    command = _command(
+        commands, "demo", "write the demo, four stages and their faulty twins", "demo hut"
+    )
+    command.add_argument("names", nargs=1, metavar="DIR", help="a new or empty folder")
     command.add_argument("--quiet", action="store_true", help="print nothing")
 
 
-def _add_inputs(command: argparse.ArgumentParser) -> None:
+def _add_inputs(command: Parser) -> None:
     command.add_argument("--stage", metavar="FILE", help="the stage sheet; default: beside it")
     command.add_argument(
         "--parts", action="append", metavar="FILE", help="part data; may be given again"
@@ -164,26 +202,24 @@ def _add_inputs(command: argparse.ArgumentParser) -> None:
     _add_project(command)
 
 
-def _add_project(command: argparse.ArgumentParser) -> None:
+def _add_project(command: Parser) -> None:
     command.add_argument(
         "--project", metavar="FILE", help="the project file; default: rulecheck.yaml if there"
     )
 
 
-def _add_packs(command: argparse.ArgumentParser) -> None:
+def _add_packs(command: Parser) -> None:
     command.add_argument(
         "--rules", action="append", metavar="PACK", help="one more pack of rules, name or file"
     )
 
 
-def _add_outputs(command: argparse.ArgumentParser, formats: tuple[str, ...]) -> None:
+def _add_outputs(command: Parser, formats: tuple[str, ...]) -> None:
     if formats:
         command.add_argument(
             "--format", action=_Format, dest="outputs", choices=formats, help="form of the report"
         )
-    command.add_argument(
-        "-o", action=_File, dest="outputs", metavar="FILE", help="write the report there"
-    )
+    _add_file(command, "write the report there")
     command.add_argument(
         "--color", choices=("auto", "always", "never"), help="default auto; NO_COLOR is honoured"
     )
@@ -193,8 +229,17 @@ def _add_outputs(command: argparse.ArgumentParser, formats: tuple[str, ...]) -> 
     )
 
 
+def _add_file(command: Parser, does: str) -> None:
+    command.add_argument("-o", action=_File, dest="outputs", metavar="FILE", help=does)
+
+
+def _add_watch(command: Parser) -> None:
+    command.add_argument(
+        "--watch", action="store_true", help="run again whenever an input changes; Ctrl-C ends it"
+    )
+
+
 def _jobs(text: str) -> int:
-    count = int(text)
-    if count < 0:
-        raise argparse.ArgumentTypeError(f"{text} is less than 0")
-    return count
+    if not text.isdecimal():
+        raise argparse.ArgumentTypeError(f"'{text}' is no number of netlists, 0 or more")
+    return int(text)

@@ -1,16 +1,20 @@
 """Judge netlists, one after the other or several at once; the answers are the same."""
 
 import concurrent.futures
+import functools
 import os
+import signal
 from collections.abc import Sequence
+from concurrent.futures.process import BrokenProcessPool
 from dataclasses import dataclass
 from pathlib import Path
 
 from rulecheck.cli.packs import load_rulebook
+from rulecheck.cli.progress import Progress
 from rulecheck.pipeline import Sources, Unusable, analyse
 from rulecheck.report.lint_result import OpenPoints, open_points
 from rulecheck.rulebook import Rulebook, Verdicts, judge
-from rulecheck.values import Problem
+from rulecheck.values import Problem, Span, error
 
 
 @dataclass(frozen=True, slots=True)
@@ -30,22 +34,29 @@ class Checked:
 
 
 def check_all(
-    tasks: Sequence[Task], rulebook: Rulebook, packs: tuple[str, ...], jobs: int
+    tasks: Sequence[Task],
+    rulebook: Rulebook,
+    packs: tuple[str, ...],
+    jobs: int,
+    progress: Progress,
 ) -> list[Checked]:
     """One answer a task, in order; with several jobs each process loads the packs itself."""
     workers = min(jobs or os.cpu_count() or 1, len(tasks))
-    if workers <= 1:
-        return [check_one(task, rulebook) for task in tasks]
-    shares = [tasks[first::workers] for first in range(workers)]
-    with concurrent.futures.ProcessPoolExecutor(workers) as pool:
-        answers = list(pool.map(_check_share, shares, [packs] * workers))
-    return [answers[number % workers][number // workers] for number in range(len(tasks))]
+    if workers > 1:
+        return _check_apart(tasks, packs, workers, progress)
+    answers = []
+    with progress:
+        for task in tasks:
+            answers.append(check_one(task, rulebook, progress))
+            progress.netlist_done()
+    return answers
 
 
-def check_one(task: Task, rulebook: Rulebook) -> Checked:
-    analysis = analyse(task.netlist, task.sources)
+def check_one(task: Task, rulebook: Rulebook, progress: Progress) -> Checked:
+    analysis = analyse(task.netlist, task.sources, progress.step)
     if isinstance(analysis, Unusable):
         return Checked(None, None, analysis.problems)
+    progress.step("rules")
     return Checked(
         judge(rulebook, analysis.facts),
         open_points(analysis.stage, analysis.demands, analysis.problems),
@@ -54,8 +65,40 @@ def check_one(task: Task, rulebook: Rulebook) -> Checked:
     )
 
 
-def _check_share(tasks: Sequence[Task], packs: tuple[str, ...]) -> list[Checked]:
+def _check_apart(
+    tasks: Sequence[Task], packs: tuple[str, ...], workers: int, progress: Progress
+) -> list[Checked]:
+    pool = concurrent.futures.ProcessPoolExecutor(workers, initializer=_die_on_interrupt)
+    with pool:
+        answers = [pool.submit(_check_in_worker, task, packs) for task in tasks]
+        # the thread of the progress bar starts after the workers: a fork copies no other thread
+        with progress:
+            for _ in concurrent.futures.as_completed(answers):
+                progress.netlist_done()
+    return [_answer(answer, task) for answer, task in zip(answers, tasks, strict=True)]
+
+
+def _answer(answer: "concurrent.futures.Future[Checked]", task: Task) -> Checked:
+    try:
+        return answer.result()
+    except BrokenProcessPool:
+        what = "the process that checked this netlist, or one beside it, was killed"
+        remedy = "check it alone with --jobs 1; it may need more memory than there is"
+        return Checked(None, None, (error(Span(str(task.netlist), 1), what, remedy),))
+
+
+def _die_on_interrupt() -> None:
+    """Ctrl-C reaches every process of a terminal: a worker ends without a word."""
+    signal.signal(signal.SIGINT, signal.SIG_DFL)
+
+
+def _check_in_worker(task: Task, packs: tuple[str, ...]) -> Checked:
+    return check_one(task, _rulebook_of_worker(packs), Progress())
+
+
+@functools.cache
+def _rulebook_of_worker(packs: tuple[str, ...]) -> Rulebook:
     rulebook = load_rulebook(packs)
     if not isinstance(rulebook, Rulebook):
         raise RuntimeError("a pack changed while it was in use")
-    return [check_one(task, rulebook) for task in tasks]
+    return rulebook

@@ -24,6 +24,7 @@ COMMANDS = {
     "schema": "rulecheck.cli.schema_command",
     "demo": "rulecheck.cli.demo_command",
 }
+_WATCHING = "rulecheck.cli.watching"
 
 
 def main(argv: Sequence[str] | None = None) -> int:
@@ -55,7 +56,11 @@ def _open_streams() -> None:
 
 
 def _run(request: Request) -> int:
-    run: Callable[[Request], int] = importlib.import_module(COMMANDS[request.command]).run
+    command = importlib.import_module(COMMANDS[request.command])
+    if request.watch:
+        watch: Callable[..., int] = importlib.import_module(_WATCHING).watch
+        return watch(request, command.answer)
+    run: Callable[[Request], int] = command.run
     return run(request)
 
 

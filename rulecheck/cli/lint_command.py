@@ -6,12 +6,13 @@ from collections.abc import Sequence
 from dataclasses import dataclass, replace
 from pathlib import Path
 
-from rulecheck.cli.analysing import finish, sources_for
+from rulecheck.cli.analysing import Answer, finish, sources_for
 from rulecheck.cli.checking import Checked, Task, check_all
 from rulecheck.cli.complaints import complain
 from rulecheck.cli.formats import LINT
 from rulecheck.cli.output import Document
 from rulecheck.cli.packs import load_rulebook
+from rulecheck.cli.progress import progress_for
 from rulecheck.cli.project import PROJECT_NAME, Project, find_project
 from rulecheck.cli.renderers import documents
 from rulecheck.cli.request import Request
@@ -54,10 +55,16 @@ class _Basis:
 
 def run(request: Request) -> int:
     """0: nothing broken at or above the level asked; 1: something broken; 2: input unusable."""
+    return answer(request).status
+
+
+def answer(request: Request) -> Answer:
+    """The same, with the files that were read."""
     basis = _prepare(request)
     if not isinstance(basis, _Basis):
-        return complain(basis)
-    answers = check_all(basis.tasks, basis.rulebook, basis.packs, request.jobs)
+        return Answer(complain(basis))
+    progress = progress_for(request, len(basis.tasks))
+    answers = check_all(basis.tasks, basis.rulebook, basis.packs, request.jobs, progress)
     today = datetime.date.today()
     judged = [_excused(answer, basis.deviations, today) for answer in answers]
     result = _lint_run(request, basis, judged, today)
@@ -68,7 +75,8 @@ def run(request: Request) -> int:
         runs = [answer.verdicts for answer in judged if answer.verdicts is not None]
         reports.append(Document(record_text(runs), request.record))
     problems = tuple(problem for answer in answers for problem in answer.problems)
-    return finish(reports, _inputs(request, basis, answers), problems, int(result.failed))
+    inputs = _inputs(request, basis, answers)
+    return Answer(finish(reports, inputs, problems, int(result.failed)), inputs)
 
 
 def _prepare(request: Request) -> _Basis | tuple[Problem, ...]:

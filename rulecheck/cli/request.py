@@ -32,3 +32,4 @@ class Request:
     since: str | None = None
     try_packs: bool = False
     facts: bool = False
+    watch: bool = False

@@ -9,14 +9,15 @@ from rulecheck.report.look import Look
 
 _NARROWEST = 60
 _UNBOUNDED = 100
-_BLOCKS = "▐…±→"
+_SIGNS = "▝▘▖▗▐▌▀▄█▞▚▛▜▙▟─…±→"
+"""What the tables are drawn with."""
 
 
 def look_for(stream: TextIO, request: Request) -> Look:
     """Width from the terminal or COLUMNS; colour and signs as asked and as the stream can."""
     return Look(
         max(shutil.get_terminal_size((_UNBOUNDED, 24)).columns, _NARROWEST),
-        request.ascii or not _can_write(stream, _BLOCKS),
+        request.ascii or not can_draw(stream),
         _colored(stream, request.color),
         request.quiet,
     )
@@ -29,9 +30,12 @@ def _colored(stream: TextIO, asked: str) -> bool:
     return stream.isatty() and not silent
 
 
-def _can_write(stream: TextIO, signs: str) -> bool:
+def can_draw(stream: TextIO) -> bool:
+    """Whether the stream takes the signs of the tables and a terminal behind it shows them."""
+    if stream.isatty() and os.environ.get("TERM") == "dumb":
+        return False
     try:
-        signs.encode(stream.encoding or "ascii")
+        _SIGNS.encode(stream.encoding or "ascii")
     except (UnicodeEncodeError, LookupError):
         return False
     return True

@@ -1,8 +1,12 @@
 """What the command line means."""
 
+import re
+import shlex
+
 import pytest
 
 from rulecheck.cli.arguments import read_arguments
+from rulecheck.cli.entry import COMMANDS
 from rulecheck.cli.request import Output
 
 
@@ -45,7 +49,36 @@ def test_a_mistake_is_a_line_on_standard_error_and_status_2(arguments, capsys):
     with pytest.raises(SystemExit) as stop:
         read_arguments(arguments)
     assert stop.value.code == 2
-    assert "rulecheck" in capsys.readouterr().err.splitlines()[-1]
+    (line,) = capsys.readouterr().err.splitlines()
+    assert re.fullmatch(
+        r"rulecheck: error: .+; `rulecheck( \w+)? --help` shows how to call it", line
+    )
+
+
+@pytest.mark.parametrize(
+    ("arguments", "meant"),
+    [
+        (["lnit"], "lint"),
+        (["lint", "--formt", "json"], "--format"),
+        (["lint", "--format=jsn"], "json"),
+        (["quadrants", "a.cir", "--stag=x"], "--stage"),
+        (["schema", "sheets"], "sheet"),
+    ],
+)
+def test_a_slip_is_answered_with_what_was_meant(arguments, meant, capsys):
+    with pytest.raises(SystemExit):
+        read_arguments(arguments)
+    assert f"did you mean '{meant}'?" in capsys.readouterr().err
+
+
+@pytest.mark.parametrize("command", COMMANDS)
+def test_the_help_of_each_command_ends_with_an_example_that_is_understood(command, capsys):
+    with pytest.raises(SystemExit) as stop:
+        read_arguments([command, "--help"])
+    assert stop.value.code == 0
+    program, *words = shlex.split(capsys.readouterr().out.splitlines()[-1].removeprefix("example:"))
+    assert program == "rulecheck"
+    assert read_arguments(words).command == command
 
 
 def test_options_reach_the_request():

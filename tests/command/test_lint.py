@@ -57,11 +57,15 @@ def test_several_formats_in_one_run(hut):
 
 
 def test_jobs_change_nothing_but_the_time(hut):
-    names = ["battery-bus.cir", "pump-inverter.cir", TWIN]
-    one = run("lint", *names, "--format", "json", folder=hut)
-    three = run("lint", *names, "--format", "json", "--jobs", "3", folder=hut)
-    assert (one.stdout, one.returncode) == (three.stdout, three.returncode)
-    assert [report["netlist"] for report in json.loads(one.stdout)] == names
+    """Not a byte on either stream, with netlists that are sound, faulty, absent and unreadable."""
+    (hut / "cut.cir").write_text("* cut off\nQ1 BUS G1\nR1 A\n.end\n", encoding="utf-8")
+    names = ["battery-bus.cir", "no.cir", TWIN, "cut.cir"]
+    one, *more = (
+        run("lint", *names, "--format", "json", "--jobs", jobs, folder=hut) for jobs in (1, 2, 9)
+    )
+    assert more == [one, one]
+    assert [report["netlist"] for report in json.loads(one.stdout)] == [names[0], TWIN]
+    assert len(one.stderr.splitlines()) >= 2
 
 
 def test_the_same_input_gives_the_same_bytes(hut):
