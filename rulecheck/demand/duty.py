@@ -8,14 +8,13 @@ that is one linear relation an inductor. Continuous conduction is assumed, and s
 
 from collections.abc import Mapping, Sequence
 from dataclasses import replace
-from itertools import pairwise
 
 from rulecheck.demand.analysis import Worked
 from rulecheck.demand.routes import Route
 from rulecheck.demand.states import RawState
 from rulecheck.demand.voltages import name_of
-from rulecheck.stage import GatePulse, Stage
-from rulecheck.values import AffineForm, Interval, total_of
+from rulecheck.stage import GateCommand, Stage, common_window
+from rulecheck.values import AffineForm, Interval, Unknown, total_of
 
 Shares = Sequence[tuple[RawState, float]]
 _SLIVER = 0.04
@@ -26,7 +25,7 @@ def with_duty(worked: Worked) -> tuple[Stage, tuple[str, ...]]:
     """The stage with the voltages that the gates' duty fixes stated, and what was assumed."""
     stage = worked.stage
     open_ = {name_of(b): b.name for b in worked.voltages.undetermined if b.part}
-    if not open_ or not stage.gate_pulses:
+    if not open_ or not stage.gate_commands:
         return stage, ()
     shares = [_shares(worked, index) for index in range(len(worked.topology.clusters))]
     solved: dict[str, AffineForm] = {}
@@ -85,40 +84,36 @@ def _mean_voltage(route: Route, shares: Sequence[Shares | None]) -> AffineForm |
 def _shares(worked: Worked, index: int) -> Shares | None:
     """The share of a period of each state, where gates and states match one to one."""
     cluster = worked.topology.clusters[index]
-    commands = worked.stage.gate_pulses
+    commands = worked.stage.gate_commands
     parts = {link.name: link.position.parts for link in cluster.positions if link.position}
-    pulses = {
+    gates = {
         name: next((commands[p] for p in parts[name] if p in commands), None)
         for name in sorted(cluster.gated)
     }
-    known = {name: pulse for name, pulse in pulses.items() if pulse is not None}
-    if len(known) < len(pulses) or len({p.period for p in known.values()}) != 1:
+    known = {name: command for name, command in gates.items() if command is not None}
+    if len(known) < len(gates) or not all(command.repeats for command in known.values()):
         return None
     by_gates: dict[frozenset[str], list[RawState]] = {}
     for state in worked.reading.states[index]:
         by_gates.setdefault(frozenset(state.on) & cluster.gated, []).append(state)
-    found = []
-    for gates, share in _command_shares(known).items():
-        states = by_gates.get(gates, [])
+    found: list[tuple[RawState, float]] = []
+    for on, share in _command_shares(known).items():
+        states = by_gates.get(on, [])
         if len(states) != 1:
             return None
         found.append((states[0], share))
-    return found
+    return found or None
 
 
-def _command_shares(pulses: Mapping[str, GatePulse]) -> dict[frozenset[str], float]:
+def _command_shares(commands: Mapping[str, GateCommand]) -> dict[frozenset[str], float]:
     """How long each set of gates is commanded on; slivers (dead times) join their neighbour."""
-    period = next(iter(pulses.values())).period
-    edges = {0.0}
-    for pulse in pulses.values():
-        edges |= {pulse.start % period, (pulse.start + pulse.width) % period}
-    times = [*sorted(edges), period]
+    window = common_window(commands)
+    if isinstance(window, Unknown):
+        return {}
     shares: dict[frozenset[str], float] = {}
-    for begin, end in pairwise(times):
-        middle = (begin + end) / 2
-        on = frozenset(n for n, p in pulses.items() if (middle - p.start) % period < p.width)
-        shares[on] = shares.get(on, 0.0) + (end - begin) / period
+    for segment in window.segments():
+        shares[segment.on] = shares.get(segment.on, 0.0) + segment.length / window.length
     longest = max(shares, key=lambda gates: shares[gates])
     kept = {gates: share for gates, share in shares.items() if share > _SLIVER}
-    kept[longest] += 1.0 - sum(kept.values())
+    kept[longest] = kept.get(longest, 0.0) + 1.0 - sum(kept.values())
     return kept

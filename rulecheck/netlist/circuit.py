@@ -19,6 +19,8 @@ class Waveform:
     kind: str
     values: tuple[float, ...]
     text: str
+    repeats_from: float | None = None
+    """Of a `pwl`: from this time to its last one it repeats, seconds; None: it does not."""
 
 
 @dataclass(frozen=True, slots=True)

@@ -19,6 +19,9 @@ class DraftWave:
     amounts: tuple[Amount, ...]
     text: str
     relative: frozenset[int] = frozenset()
+    repeats_from: Amount = None
+    delay: Amount = None
+    """Of a piecewise one: added to all of its times."""
 
 
 @dataclass(frozen=True, slots=True)

@@ -162,7 +162,17 @@ def _waveform(wave: DraftWave, scope: Scope, result: Flattening) -> Waveform:
             return Waveform(wave.kind, (), wave.text)
         before = values[position - 2] if position in wave.relative and position >= 2 else 0.0
         values.append(float(outcome) + before)
-    return Waveform(wave.kind, tuple(values), wave.text)
+    delay = _number(wave.delay, scope)
+    if delay:
+        values[::2] = [time + delay for time in values[::2]]
+    start = _number(wave.repeats_from, scope)
+    repeats_from = None if start is None else start + (delay or 0.0)
+    return Waveform(wave.kind, tuple(values), wave.text, repeats_from)
+
+
+def _number(amount: Amount, scope: Scope) -> float | None:
+    outcome = compute(amount, scope) if isinstance(amount, Formula) else amount
+    return None if isinstance(outcome, Fault) or outcome is None else float(outcome)
 
 
 def _instance(draft: Draft, place: _Place, result: Flattening) -> None:

@@ -1,17 +1,21 @@
 """Independent sources: DC value and waveform, with and without parentheses."""
 
 from collections.abc import Sequence
+from dataclasses import replace
 
+from rulecheck.netlist.assignments import key_name
 from rulecheck.netlist.draft import Amount, Draft, DraftWave, Outcome, Reading
 from rulecheck.netlist.fields import (
     behind,
     net_words,
+    pair_amount,
     plain_and_pairs,
     read_pairs,
     take_amount,
     with_decimal_commas,
     written,
 )
+from rulecheck.netlist.formula import Formula
 from rulecheck.netlist.numbers import read_number
 from rulecheck.netlist.syntax import GROUP, MARK, PAIR, QUOTED, WORD, Item
 from rulecheck.netlist.terminals import terminal_error
@@ -33,7 +37,9 @@ _WAVEFORMS = {
 }
 _KEYWORDS = frozenset({"dc", "ac", "tran", "distof1", "distof2", *_WAVEFORMS})
 _EXPRESSIONS = frozenset({"r", "v", "i", "table", "tbl", "value"})
-_LISTS_END = frozenset({"file", "repeat", "endrepeat", "for", "forever", "r", "td"})
+_LISTS_END = frozenset({"file", "endrepeat", "r", "td"})
+_REPEATED = frozenset({"repeat", "forever", "for"})
+"""Words before a piecewise list that repeats; `for` takes a count."""
 
 
 def read_source(letter: str, reading: Reading) -> Outcome:
@@ -126,7 +132,11 @@ def _wave(reading: Reading, word: str, items: list[Item]) -> tuple[DraftWave, li
         end = arguments[-1].end if arguments else items[0].end
     text = reading.text[items[0].start : end]
     amounts, relative = _amounts(reading, arguments, kind == "pwl")
-    return DraftWave(kind, amounts, text, relative), rest
+    wave = DraftWave(kind, amounts, text, relative)
+    if kind == "pwl":
+        pairs = [item for item in (*reading.card.items, *_opened(arguments)) if item.kind == PAIR]
+        wave = _with_repeat(reading, wave, pairs)
+    return wave, rest
 
 
 def _open_arguments(items: list[Item]) -> tuple[list[Item], list[Item]]:
@@ -142,6 +152,7 @@ def _amounts(
 ) -> tuple[tuple[Amount, ...], frozenset[int]]:
     """The numbers of a waveform; none at all where one cannot be read."""
     left = _opened(arguments)
+    left = _behind_repeat(left) if piecewise else left
     amounts: list[Amount] = []
     relative: set[int] = set()
     while left:
@@ -159,6 +170,25 @@ def _amounts(
         amounts.append(amount)
         left = after
     return tuple(amounts), frozenset(relative)
+
+
+def _behind_repeat(items: list[Item]) -> list[Item]:
+    """What stands behind `repeat forever` or `repeat for 10`."""
+    while items and items[0].text.lower() in _REPEATED:
+        items = items[2:] if items[0].text.lower() == "for" else items[1:]
+    return items
+
+
+def _with_repeat(reading: Reading, wave: DraftWave, pairs: Sequence[Item]) -> DraftWave:
+    """A piecewise list with what `r=`, `td=` or `repeat` says of it."""
+    own = {key_name(pair.key): pair_amount(reading, pair) for pair in pairs}
+    repeat, delay = own.get("r"), own.get("td")
+    words = wave.text.lower().replace("(", " ").split()
+    start: Amount = 0.0 if "repeat" in words else None
+    if isinstance(repeat, float | int | Formula):
+        start = None if isinstance(repeat, float | int) and repeat < 0.0 else repeat
+    shift = None if isinstance(delay, str) else delay
+    return replace(wave, repeats_from=start, delay=shift)
 
 
 def _opened(arguments: list[Item]) -> list[Item]:

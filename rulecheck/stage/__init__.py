@@ -1,8 +1,9 @@
 """The power stage: ports, part roles, branches and switch positions."""
 
 from rulecheck.stage.build import StageReading, read_stage
+from rulecheck.stage.common_window import CommonWindow, Segment, common_window
+from rulecheck.stage.gate_command import GateCommand, OnTimes
 from rulecheck.stage.gate_drive import DrivenBy, DriveOutput, GateClamp, GateDrive, GatePath
-from rulecheck.stage.gate_pulse import GatePulse
 from rulecheck.stage.position import Position
 from rulecheck.stage.sheet import EMPTY_SHEET, Sheet, SheetReading, read_sheet
 from rulecheck.stage.sheet_file import SheetFile
@@ -24,16 +25,19 @@ __all__ = [
     "Barrier",
     "Branch",
     "BranchKind",
+    "CommonWindow",
     "DriveOutput",
     "DrivenBy",
     "GateClamp",
+    "GateCommand",
     "GateDrive",
     "GatePath",
-    "GatePulse",
+    "OnTimes",
     "Port",
     "PortKind",
     "Position",
     "Role",
+    "Segment",
     "Sheet",
     "SheetFile",
     "SheetReading",
@@ -41,6 +45,7 @@ __all__ = [
     "StageReading",
     "Switching",
     "Transformer",
+    "common_window",
     "read_sheet",
     "read_stage",
     "stage_text",

@@ -6,9 +6,9 @@ from dataclasses import dataclass, replace
 
 from rulecheck.parts import Kind, Part, PartList
 from rulecheck.stage.branches import build_transformers, part_branches, port_branches
-from rulecheck.stage.gate_pulse import GatePulse
+from rulecheck.stage.gate_command import GateCommand
 from rulecheck.stage.gate_region import GateRegion, find_gate_region
-from rulecheck.stage.gate_timing import find_gate_pulses
+from rulecheck.stage.gate_timing import find_gate_commands
 from rulecheck.stage.gate_trace import taken_for_drivers, trace_gates
 from rulecheck.stage.grouping import Grouping, group_devices
 from rulecheck.stage.layout import CIRCUITS, Layout, is_semiconductor, lay_out, main_nets
@@ -59,8 +59,8 @@ def read_stage(parts: PartList, sheet: Sheet) -> StageReading:
     grouping = _group(known, branches, transformers)
     potentials = mean_potentials(branches, transformers, layout.net(parts.ground))
     positions = build_positions(grouping.pieces, parts.by_name, layout.merged, potentials)
-    pulses = find_gate_pulses(layout)
     drives = trace_gates(layout, known.region)
+    commands = find_gate_commands(layout, drives)
     stage = Stage(
         parts.file,
         parts,
@@ -73,9 +73,9 @@ def read_stage(parts: PartList, sheet: Sheet) -> StageReading:
         known.peripheral.refers_to,
         _given(parts, sheet),
         layout.net(parts.ground),
-        _switching(sheet.switching, pulses),
+        _switching(sheet.switching, commands),
         _leg_switching(layout, sheet),
-        pulses,
+        commands,
         _domains(layout, sheet),
         sheet.barriers,
         {n: o.leakage for n, o in _overrides(parts, sheet) if o.leakage is not None},
@@ -216,11 +216,12 @@ def _domains(layout: Layout, sheet: Sheet) -> dict[str, tuple[str, ...]]:
     }
 
 
-def _switching(stated: Switching, pulses: Mapping[str, GatePulse]) -> Switching:
+def _switching(stated: Switching, commands: Mapping[str, GateCommand]) -> Switching:
     """Where the sheet states no frequency, the slowest gate source of the netlist gives it."""
-    if stated.frequency is not None or not pulses:
+    periods = [command.period for command in commands.values() if command.repeats]
+    if stated.frequency is not None or not periods:
         return stated
-    return replace(stated, frequency=1.0 / max(pulse.period for pulse in pulses.values()))
+    return replace(stated, frequency=1.0 / max(periods))
 
 
 def _leg_switching(layout: Layout, sheet: Sheet) -> dict[str, Switching]:

@@ -5,8 +5,8 @@ from dataclasses import dataclass, field
 from enum import StrEnum
 
 from rulecheck.parts import PartList
+from rulecheck.stage.gate_command import GateCommand
 from rulecheck.stage.gate_drive import GateDrive
-from rulecheck.stage.gate_pulse import GatePulse
 from rulecheck.stage.position import Position
 from rulecheck.values import Interval, Span
 
@@ -159,8 +159,8 @@ class Stage:
     switching: Switching = field(default_factory=Switching)
     leg_switching: Mapping[str, Switching] = field(default_factory=dict)
     """By midpoint net."""
-    gate_pulses: Mapping[str, GatePulse] = field(default_factory=dict)
-    """By device name: the pulse source of the netlist that drives its gate."""
+    gate_commands: Mapping[str, GateCommand] = field(default_factory=dict)
+    """By device name: when the netlist's sources turn its gate on."""
     domains: Mapping[str, tuple[str, ...]] = field(default_factory=dict)
     """By name: nets that the sheet says belong together galvanically, as the netlist names them."""
     barriers: tuple[Barrier, ...] = ()

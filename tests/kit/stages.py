@@ -25,23 +25,23 @@ parts:
 """
 
 
-def reading_of(cards: str, sheet: str = "") -> StageReading:
+def reading_of(cards: str, sheet: str = "", data: str = PARTS) -> StageReading:
     """The stage and the problems that show when sheet and circuit meet."""
     circuit = read_circuit_text(SourceText("t.cir", f"* test\n{cards}\n{MODELS}.end\n"))
-    parts = identify_parts(circuit, read_part_data([SourceText("t.parts.yaml", PARTS)]))
+    parts = identify_parts(circuit, read_part_data([SourceText("t.parts.yaml", data)]))
     reading = read_sheet(SourceText("t.stage.yaml", sheet or "{}"))
     assert not reading.problems, [problem.line() for problem in reading.problems]
     return read_stage(parts, reading.sheet)
 
 
-def stage_of(cards: str, sheet: str = "") -> Stage:
-    reading = reading_of(cards, sheet)
+def stage_of(cards: str, sheet: str = "", data: str = PARTS) -> Stage:
+    reading = reading_of(cards, sheet, data)
     assert not reading.problems, [problem.line() for problem in reading.problems]
     return reading.stage
 
 
-def demands_of(cards: str, sheet: str = "") -> Demands:
-    return find_demands(stage_of(cards, sheet))
+def demands_of(cards: str, sheet: str = "", data: str = PARTS) -> Demands:
+    return find_demands(stage_of(cards, sheet, data))
 
 
 def position(stage: Stage, name: str) -> Position:

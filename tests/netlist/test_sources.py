@@ -104,3 +104,25 @@ def test_a_waveform_argument_without_a_value_is_an_error_and_leaves_no_values() 
     assert waveform is not None
     assert waveform.values == ()
     assert errors(found) == ["2:17: parameter 'vhigh' is not defined"]
+
+
+@pytest.mark.parametrize(
+    ("written", "repeats_from", "times"),
+    [
+        ("PWL(0 0 1u 5)", None, (0, 1e-6)),
+        ("PWL(0 0 1u 5) r=0", 0, (0, 1e-6)),
+        ("PWL(0 0 1u 5) r=-1", None, (0, 1e-6)),
+        ("PWL(0 0 1u 5 r=0)", 0, (0, 1e-6)),
+        ("PWL(0 0 1u 5 2u 0) r=1u td=4u", 5e-6, (4e-6, 5e-6, 6e-6)),
+        ("PWL(0 0 1u 5) r={vo-2}", 0, (0, 1e-6)),
+        ("PWL REPEAT FOREVER (0 0 1u 5) ENDREPEAT", 0, (0, 1e-6)),
+        ("PWL(REPEAT FOR 3 0 0 1u 5 ENDREPEAT)", 0, (0, 1e-6)),
+    ],
+)
+def test_a_piecewise_list_may_repeat(
+    written: str, repeats_from: float | None, times: tuple[float, ...]
+) -> None:
+    waveform = circuit(f"V1 a 0 {written}\n.param vo=2\n").elements[0].waveform
+    assert waveform is not None
+    assert waveform.values[::2] == pytest.approx(times)
+    assert waveform.repeats_from == (None if repeats_from is None else pytest.approx(repeats_from))
