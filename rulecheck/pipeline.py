@@ -1,5 +1,6 @@
 """The whole analysis as one list of named steps."""
 
+import os
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass, field
 from pathlib import Path
@@ -7,7 +8,7 @@ from pathlib import Path
 from rulecheck.capability import Capabilities, find_capabilities
 from rulecheck.demand import Demands, find_demands
 from rulecheck.facts import Facts, collect_facts
-from rulecheck.netlist import Circuit, read_circuit_text
+from rulecheck.netlist import ORDINARY, Access, Circuit, read_circuit_text
 from rulecheck.parts import PartList, identify_parts, read_part_data
 from rulecheck.reading import SourceText, read_text
 from rulecheck.stage import EMPTY_SHEET, SheetReading, Stage, read_sheet, read_stage
@@ -54,6 +55,7 @@ class Sources:
 
     sheet: Path | None = None
     parts: tuple[Path, ...] = field(default=())
+    access: Access = ORDINARY
 
 
 BESIDE = Sources()
@@ -63,29 +65,34 @@ def analyse(
     path: Path, sources: Sources = BESIDE, tell: Tell = _tell_nobody
 ) -> Analysis | Unusable:
     """Read the files and analyse them; the sheet's own part data come before those named here."""
-    netlist = read_text(path)
+    limits = sources.access.limits
+    netlist = read_text(path, limits)
     sheet_path = sources.sheet or sheet_beside(path)
-    sheet = read_text(sheet_path) if sheet_path is not None else None
+    sheet = read_text(sheet_path, limits) if sheet_path is not None else None
     reading = read_sheet(sheet) if isinstance(sheet, SourceText) else NO_SHEET
-    parts = [read_text(file) for file in part_files(reading, sources)]
+    parts = [read_text(file, limits) for file in part_files(reading, sources)]
     failed = tuple(text for text in (netlist, sheet, *parts) if isinstance(text, Problem))
     if isinstance(netlist, Problem) or failed:
         return Unusable((*failed, *reading.problems))
-    part_data = [text for text in parts if isinstance(text, SourceText)]
-    return _run_steps(netlist, reading, part_data, tell)
+    texts = [text for text in parts if isinstance(text, SourceText)]
+    return _run_steps(netlist, reading, texts, sources.access, tell)
 
 
 def analyse_text(
-    netlist: SourceText, sheet: SourceText | None = None, parts: Sequence[SourceText] = ()
+    netlist: SourceText,
+    sheet: SourceText | None = None,
+    parts: Sequence[SourceText] = (),
+    access: Access = ORDINARY,
 ) -> Analysis | Unusable:
     """The same on texts at hand; nothing but the netlist's includes is read from disk."""
-    return _run_steps(netlist, read_sheet(sheet) if sheet is not None else NO_SHEET, parts)
+    reading = read_sheet(sheet) if sheet is not None else NO_SHEET
+    return _run_steps(netlist, reading, parts, access)
 
 
 def sheet_beside(netlist: Path) -> Path | None:
     """`hut.stage.yaml` for `hut.cir`, where it is there."""
     sheet = netlist.parent / (netlist.stem + SHEET_SUFFIX)
-    return sheet if sheet.is_file() else None
+    return sheet if os.path.lexists(sheet) else None
 
 
 def part_files(sheet: SheetReading, sources: Sources) -> tuple[Path, ...]:
@@ -96,11 +103,15 @@ def part_files(sheet: SheetReading, sources: Sources) -> tuple[Path, ...]:
 
 
 def _run_steps(
-    netlist: SourceText, sheet: SheetReading, parts: Sequence[SourceText], tell: Tell = _tell_nobody
+    netlist: SourceText,
+    sheet: SheetReading,
+    parts: Sequence[SourceText],
+    access: Access,
+    tell: Tell = _tell_nobody,
 ) -> Analysis | Unusable:
     tell("circuit")
     part_data = read_part_data(parts)
-    circuit = read_circuit_text(netlist)
+    circuit = read_circuit_text(netlist, access)
     problems = (*circuit.problems, *sheet.problems, *part_data.problems)
     if errors_of((*sheet.problems, *part_data.problems)) or not circuit.elements:
         return Unusable(_with_reason(netlist.file, problems))
@@ -138,9 +149,7 @@ def _inputs(
     netlist: SourceText, sheet: SheetReading, parts: Sequence[SourceText], circuit: Circuit
 ) -> tuple[str, ...]:
     own = (netlist.file, sheet.sheet.file, *(source.file for source in parts))
-    included = (element.span.file for element in circuit.elements)
-    models = (element.model.span.file for element in circuit.elements if element.model)
-    return tuple(dict.fromkeys(file for file in (*own, *included, *models) if file))
+    return tuple(dict.fromkeys(file for file in (*own, *circuit.files) if file))
 
 
 def _with_reason(file: str, problems: tuple[Problem, ...]) -> tuple[Problem, ...]:

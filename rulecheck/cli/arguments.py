@@ -1,6 +1,7 @@
 """The arguments of every command, as argparse knows them."""
 
 import argparse
+import re
 from collections.abc import Sequence
 from typing import Any
 
@@ -8,6 +9,7 @@ from rulecheck import __version__
 from rulecheck.cli.formats import LINT, QUADRANTS
 from rulecheck.cli.parser import Parser
 from rulecheck.cli.request import Output, Request
+from rulecheck.values import BOUNDS
 
 STEPS = ("circuit", "parts", "stage", "capability", "demand", "facts")
 SCHEMAS = ("sheet", "parts", "rules", "project")
@@ -197,12 +199,20 @@ def _demo(commands: Any) -> None:
 def _add_inputs(command: Parser) -> None:
     command.add_argument("--stage", metavar="FILE", help="the stage sheet; default: beside it")
     command.add_argument(
+        "--include-dir", action="append", dest="include_dirs", metavar="DIR",
+        help="files there may be included, too; may be given again",
+    )  # fmt: skip
+    command.add_argument(
         "--parts", action="append", metavar="FILE", help="part data; may be given again"
     )
     _add_project(command)
 
 
 def _add_project(command: Parser) -> None:
+    command.add_argument(
+        "--limit", action="append", dest="changed_limits", type=_limit, metavar="NAME=N",
+        help=f"change how much is taken in: {', '.join(BOUNDS)}",
+    )  # fmt: skip
     command.add_argument(
         "--project", metavar="FILE", help="the project file; default: rulecheck.yaml if there"
     )
@@ -243,3 +253,15 @@ def _jobs(text: str) -> int:
     if not text.isdecimal():
         raise argparse.ArgumentTypeError(f"'{text}' is no number of netlists, 0 or more")
     return int(text)
+
+
+def _limit(text: str) -> tuple[str, int]:
+    """`elements=400000`; the name is one of the table, the number within its bounds."""
+    name, _, written = text.partition("=")
+    bound = BOUNDS.get(name)
+    if bound is None:
+        raise argparse.ArgumentTypeError(f"no limit '{name}'; the limits are {', '.join(BOUNDS)}")
+    if not re.fullmatch(r"[0-9]{1,12}", written) or not 1 <= int(written) <= bound.most:
+        what = f"'{name}' takes a number from 1 to {bound.most} ({bound.counts})"
+        raise argparse.ArgumentTypeError(f"{what}, not '{written}'")
+    return name, int(written)

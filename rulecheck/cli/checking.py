@@ -14,7 +14,7 @@ from rulecheck.cli.progress import Progress
 from rulecheck.pipeline import Sources, Unusable, analyse
 from rulecheck.report.lint_result import OpenPoints, open_points
 from rulecheck.rulebook import Rulebook, Verdicts, judge
-from rulecheck.values import Problem, Span, error
+from rulecheck.values import Limits, Problem, Span, error
 
 
 @dataclass(frozen=True, slots=True)
@@ -93,12 +93,13 @@ def _die_on_interrupt() -> None:
 
 
 def _check_in_worker(task: Task, packs: tuple[str, ...]) -> Checked:
-    return check_one(task, _rulebook_of_worker(packs), Progress())
+    rulebook = _rulebook_of_worker(packs, task.sources.access.limits)
+    return check_one(task, rulebook, Progress())
 
 
 @functools.cache
-def _rulebook_of_worker(packs: tuple[str, ...]) -> Rulebook:
-    rulebook = load_rulebook(packs)
+def _rulebook_of_worker(packs: tuple[str, ...], limits: Limits) -> Rulebook:
+    rulebook = load_rulebook(packs, limits=limits)
     if not isinstance(rulebook, Rulebook):
         raise RuntimeError("a pack changed while it was in use")
     return rulebook

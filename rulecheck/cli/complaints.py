@@ -3,19 +3,27 @@
 import sys
 from collections.abc import Iterable
 
-from rulecheck.values import Gravity, Problem
+from rulecheck.values import USUAL, Gravity, Limits, Problem
 
 UNUSABLE = 2
 
 
-def complain(problems: Iterable[Problem]) -> int:
-    """Print every error once, in the order of files and lines; return the exit status for them."""
+def complain(problems: Iterable[Problem], limits: Limits = USUAL) -> int:
+    """Print each error once, in the order of files and lines; return the exit status for them.
+
+    Beyond the limit they are counted: nobody reads the thousandth, and it is no help to fix.
+    """
     errors = sorted(
         {problem for problem in problems if problem.gravity is Gravity.ERROR},
         key=lambda problem: (problem.span, problem.what),
     )
-    for problem in errors:
+    most = limits["errors"]
+    for problem in errors[:most]:
         print(printable(problem.line()), file=sys.stderr)
+    if len(errors) > most:
+        left = len(errors) - most
+        words = f"{left} more {'error is' if left == 1 else 'errors are'} not shown"
+        print(f"rulecheck: error: {words}; --limit errors=N shows more", file=sys.stderr)
     return UNUSABLE
 
 

@@ -33,17 +33,17 @@ def run(request: Request) -> int:
     """Print the explanation; a name that the stage does not have is an error."""
     analysis = analyse_one(request)
     if isinstance(analysis, Unusable):
-        return complain(analysis.problems)
+        return complain(analysis.problems, request.limits)
     texts = [_text(analysis, request, output.file) for output in request.outputs]
     unknown = tuple(text for text in texts if isinstance(text, Problem))
     if unknown:
-        return complain((*analysis.problems, *unknown))
+        return complain((*analysis.problems, *unknown), request.limits)
     documents = [
         Document(text, output.file)
         for text, output in zip(texts, request.outputs, strict=True)
         if isinstance(text, str)
     ]
-    return finish(documents, analysis.inputs, analysis.problems)
+    return finish(documents, analysis.inputs, analysis.problems, limits=request.limits)
 
 
 def _text(analysis: Analysis, request: Request, file: str | None) -> str | Problem:

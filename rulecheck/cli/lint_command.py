@@ -62,7 +62,7 @@ def answer(request: Request) -> Answer:
     """The same, with the files that were read."""
     basis = _prepare(request)
     if not isinstance(basis, _Basis):
-        return Answer(complain(basis))
+        return Answer(complain(basis, request.limits))
     progress = progress_for(request, len(basis.tasks))
     answers = check_all(basis.tasks, basis.rulebook, basis.packs, request.jobs, progress)
     today = datetime.date.today()
@@ -76,16 +76,17 @@ def answer(request: Request) -> Answer:
         reports.append(Document(record_text(runs), request.record))
     problems = tuple(problem for answer in answers for problem in answer.problems)
     inputs = _inputs(request, basis, answers)
-    return Answer(finish(reports, inputs, problems, int(result.failed)), inputs)
+    status = finish(reports, inputs, problems, int(result.failed), request.limits)
+    return Answer(status, inputs)
 
 
 def _prepare(request: Request) -> _Basis | tuple[Problem, ...]:
-    project = find_project(request.project)
+    project = find_project(request.project, request.limits)
     netlists = tuple(Path(name) for name in request.names) or project.netlists
     if errors_of(project.problems):
         return project.problems
     packs = tuple(dict.fromkeys((*project.packs, *request.rules)))
-    rulebook = load_rulebook(packs)
+    rulebook = load_rulebook(packs, limits=request.limits)
     if not isinstance(rulebook, Rulebook):
         return rulebook
     reading = read_deviations(project.deviations, project.deviation_spans, rulebook)
@@ -102,7 +103,7 @@ def _prepare(request: Request) -> _Basis | tuple[Problem, ...]:
 def _record(request: Request) -> Known | Problem | None:
     if request.since is None:
         return None
-    source = read_text(Path(request.since))
+    source = read_text(Path(request.since), request.limits)
     return source if isinstance(source, Problem) else read_record(source)
 
 

@@ -4,6 +4,7 @@ A shipped rule leaves force only where a later pack switches it off with a reaso
 """
 
 import difflib
+import os
 from collections.abc import Iterable
 from pathlib import Path
 
@@ -17,18 +18,18 @@ from rulecheck.rulebook import (
     packs_in_force,
     shipped_pack,
 )
-from rulecheck.values import Problem, Span, error, errors_of
+from rulecheck.values import USUAL, Limits, Problem, Span, error, errors_of
 
 
 def load_rulebook(
-    names: Iterable[str], instead_of: Iterable[str] = ()
+    names: Iterable[str], instead_of: Iterable[str] = (), limits: Limits = USUAL
 ) -> Rulebook | tuple[Problem, ...]:
     """The rules in force, or every mistake in the packs.
 
     `instead_of` names shipped packs that are left out, because a file at hand is to be tried in
     their place.
     """
-    added = [find_pack(name) for name in dict.fromkeys(names) if name not in IN_FORCE]
+    added = [find_pack(name, limits) for name in dict.fromkeys(names) if name not in IN_FORCE]
     failed = tuple(pack for pack in added if isinstance(pack, Problem))
     left_out = {name + SUFFIX for name in instead_of}
     shipped = [pack for pack in packs_in_force() if pack.file not in left_out]
@@ -38,13 +39,13 @@ def load_rulebook(
     return errors or rulebook
 
 
-def find_pack(name: str) -> SourceText | Problem:
+def find_pack(name: str, limits: Limits = USUAL) -> SourceText | Problem:
     """A pack that travels with the program, by its name, or a file."""
     shipped = shipped_pack(name)
     if shipped is not None:
         return shipped
-    if Path(name).suffix or Path(name).exists():
-        return read_text(Path(name))
+    if Path(name).suffix or os.path.lexists(name):
+        return read_text(Path(name), limits)
     close = difflib.get_close_matches(name, [*IN_FORCE, *PROFILES], 1)
     remedy = f"did you mean '{close[0]}'?" if close else "name a file, or one of the shipped packs"
     return error(Span(name, 1), f"no pack is called '{name}'", remedy)

@@ -18,7 +18,8 @@ def answer(request: Request) -> Answer:
     """The same, with the files that were read."""
     analysis = analyse_one(request)
     if isinstance(analysis, Unusable):
-        return Answer(complain(analysis.problems))
+        return Answer(complain(analysis.problems, request.limits))
     result = quadrant_result(analysis.stage, analysis.capabilities, analysis.demands)
     reports = documents(result, request, QUADRANTS, "table")
-    return Answer(finish(reports, analysis.inputs, analysis.problems), analysis.inputs)
+    status = finish(reports, analysis.inputs, analysis.problems, limits=request.limits)
+    return Answer(status, analysis.inputs)

@@ -36,24 +36,25 @@ def run(request: Request) -> int:
     """Write the document; findings are what it is for, so they are no failure here."""
     basis = _prepare(request)
     if not isinstance(basis, _Basis):
-        return complain(basis)
+        return complain(basis, request.limits)
     netlist = Path(request.names[0])
     analysis = analyse(netlist, sources_for(netlist, request, basis.project))
     if isinstance(analysis, Unusable):
-        return complain(analysis.problems)
+        return complain(analysis.problems, request.limits)
     review = _review(analysis, basis)
     documents = [
         Document(rendered(review, render, look_at(request, output.file)), output.file)
         for output in request.outputs
     ]
-    return finish(documents, (*analysis.inputs, basis.project.file), analysis.problems)
+    inputs = (*analysis.inputs, basis.project.file)
+    return finish(documents, inputs, analysis.problems, limits=request.limits)
 
 
 def _prepare(request: Request) -> _Basis | tuple[Problem, ...]:
-    project = find_project(request.project)
+    project = find_project(request.project, request.limits)
     if errors_of(project.problems):
         return project.problems
-    rulebook = load_rulebook((*project.packs, *request.rules))
+    rulebook = load_rulebook((*project.packs, *request.rules), limits=request.limits)
     if not isinstance(rulebook, Rulebook):
         return rulebook
     reading = read_deviations(project.deviations, project.deviation_spans, rulebook)

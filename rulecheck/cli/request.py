@@ -2,6 +2,8 @@
 
 from dataclasses import dataclass
 
+from rulecheck.values import Limits
+
 
 @dataclass(frozen=True, slots=True)
 class Output:
@@ -20,6 +22,8 @@ class Request:
     stage: str | None = None
     parts: tuple[str, ...] = ()
     rules: tuple[str, ...] = ()
+    include_dirs: tuple[str, ...] = ()
+    changed_limits: tuple[tuple[str, int], ...] = ()
     project: str | None = None
     fail_at: str | None = None
     undecided: str | None = None
@@ -33,3 +37,7 @@ class Request:
     try_packs: bool = False
     facts: bool = False
     watch: bool = False
+
+    @property
+    def limits(self) -> Limits:
+        return Limits(self.changed_limits)

@@ -16,15 +16,15 @@ from rulecheck.values import Problem, Span, error, errors_of
 
 def run(request: Request) -> int:
     """0; 1 where an example says something else than it should; 2 where a pack is at fault."""
-    project = find_project(request.project)
+    project = find_project(request.project, request.limits)
     if errors_of(project.problems):
-        return complain(project.problems)
+        return complain(project.problems, request.limits)
     packs = tuple(dict.fromkeys((*project.packs, *request.rules)))
     if request.try_packs:
         return _try(request, request.names)
     text = vocabulary_text() if request.facts else _rules_text(request, packs)
     if not isinstance(text, str):
-        return complain(text)
+        return complain(text, request.limits)
     return finish(_documents(text, request), (*packs, project.file), ())
 
 
@@ -33,7 +33,7 @@ def _documents(text: str, request: Request) -> list[Document]:
 
 
 def _rules_text(request: Request, packs: tuple[str, ...]) -> str | tuple[Problem, ...]:
-    rulebook = load_rulebook(packs)
+    rulebook = load_rulebook(packs, limits=request.limits)
     if not isinstance(rulebook, Rulebook):
         return rulebook
     if not request.names:
@@ -55,8 +55,8 @@ def _no_such_rule(wanted: str, rulebook: Rulebook) -> Problem:
 
 
 def _try(request: Request, packs: tuple[str, ...]) -> int:
-    trials = try_packs(packs)
+    trials = try_packs(packs, request.limits)
     if not isinstance(trials, Trials):
-        return complain(trials)
+        return complain(trials, request.limits)
     documents = _documents(trials_text(trials), request)
     return finish(documents, packs, (), 0 if trials.passed else 1)

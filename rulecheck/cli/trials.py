@@ -9,11 +9,14 @@ from dataclasses import dataclass
 
 from rulecheck.cli.packs import find_pack, load_rulebook
 from rulecheck.facts import Facts
+from rulecheck.netlist import Access
 from rulecheck.pipeline import Unusable, analyse_text
 from rulecheck.reading import SourceText
 from rulecheck.rulebook import IN_FORCE, Rulebook, Trial, try_examples
-from rulecheck.values import Problem
+from rulecheck.values import USUAL, Limits, Problem
 
+_NO_FILES = Access(beside=False)
+"""An example is all in its pack: it includes nothing."""
 _PACK_NAME = re.compile(r"^pack:\s*([\w/-]+)", re.MULTILINE)
 
 
@@ -28,11 +31,11 @@ class Trials:
         return all(trial.passed for trial in self.trials)
 
 
-def try_packs(packs: tuple[str, ...]) -> Trials | tuple[Problem, ...]:
+def try_packs(packs: tuple[str, ...], limits: Limits = USUAL) -> Trials | tuple[Problem, ...]:
     """The examples of the packs named, or of all shipped ones where none is."""
     found: list[Trial] = []
     for pack in packs or IN_FORCE:
-        trials = _try_pack(pack)
+        trials = _try_pack(pack, limits)
         if not isinstance(trials, list):
             return trials
         found += trials
@@ -49,11 +52,12 @@ def trials_text(trials: Trials) -> str:
     return "\n".join([*lines, f"{count} examples of {rules} {noun}: {verdict}"]) + "\n"
 
 
-def _try_pack(name: str) -> list[Trial] | tuple[Problem, ...]:
-    source = find_pack(name)
+def _try_pack(name: str, limits: Limits) -> list[Trial] | tuple[Problem, ...]:
+    source = find_pack(name, limits)
     if isinstance(source, Problem):
         return (source,)
-    rulebook = load_rulebook((name,), _replaced_by(source) if name not in IN_FORCE else ())
+    instead_of = _replaced_by(source) if name not in IN_FORCE else ()
+    rulebook = load_rulebook((name,), instead_of, limits)
     if not isinstance(rulebook, Rulebook):
         return rulebook
     own = (rule.id for rule in rulebook.rules if rule.span.file == source.file)
@@ -69,7 +73,7 @@ def _replaced_by(source: SourceText) -> tuple[str, ...]:
 def _facts(
     netlist: SourceText, sheet: SourceText | None, parts: Iterable[SourceText]
 ) -> Facts | tuple[Problem, ...]:
-    analysis = analyse_text(netlist, sheet, tuple(parts))
+    analysis = analyse_text(netlist, sheet, tuple(parts), _NO_FILES)
     return analysis.problems if isinstance(analysis, Unusable) else analysis.facts
 
 

@@ -4,6 +4,7 @@ import re
 from collections.abc import Iterable
 from pathlib import Path
 
+from rulecheck.netlist.access import ORDINARY, Access
 from rulecheck.netlist.board import UNTOLD
 from rulecheck.netlist.circuit import GROUND, Circuit, Element
 from rulecheck.netlist.deck import read_deck
@@ -18,20 +19,20 @@ _GROUND_NAME = re.compile(
 )
 
 
-def read_circuit(path: Path) -> Circuit:
+def read_circuit(path: Path, access: Access = ORDINARY) -> Circuit:
     """Read a netlist and all files that it includes; mistakes are in `problems`, never raised."""
-    source = read_text(path)
+    source = read_text(path, access.limits)
     if isinstance(source, Problem):
         return _nothing(str(path), source)
-    return read_circuit_text(source)
+    return read_circuit_text(source, access)
 
 
-def read_circuit_text(source: SourceText) -> Circuit:
+def read_circuit_text(source: SourceText, access: Access = ORDINARY) -> Circuit:
     """Read a netlist from text; includes are looked for beside `source.file`."""
     foreign = name_foreign(source)
     if foreign is not None:
         return _nothing(source.file, foreign)
-    deck = read_deck(source)
+    deck = read_deck(source, access)
     flat = flatten(deck)
     problems = [*deck.problems, *flat.problems]
     if not errors_of(tuple(problems)) and all(one.letter == UNTOLD for one in flat.elements):
@@ -44,6 +45,7 @@ def read_circuit_text(source: SourceText) -> Circuit:
         _grounds(flat.elements),
         _unread(flat),
         _in_order(problems, deck.files),
+        deck.files,
     )
 
 

@@ -93,3 +93,5 @@ class Circuit:
     """Names of elements on cards that could not be read: missing from the analysis."""
     problems: tuple[Problem, ...]
     """Errors and notes in the order of the file."""
+    files: tuple[str, ...] = ()
+    """The netlist and all that it includes, in the order in which they were opened."""

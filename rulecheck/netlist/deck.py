@@ -1,16 +1,18 @@
 """Sort the cards of a deck and of the files that it includes into definitions."""
 
+import os
 import re
 from pathlib import Path
 
+from rulecheck.netlist.access import ORDINARY, Access
 from rulecheck.netlist.definition import Deck, Definition
 from rulecheck.netlist.dot_cards import HANDLERS, Handler
 from rulecheck.netlist.foreign import name_foreign
 from rulecheck.netlist.lines import Lines, LogicalLine, split_lines
-from rulecheck.netlist.paths import clean_path, resolve_path
+from rulecheck.netlist.paths import Outside, clean_path, resolve_path
 from rulecheck.netlist.sorter import Sorter
 from rulecheck.reading import SourceText, read_text
-from rulecheck.values import Problem, Span
+from rulecheck.values import Problem, Span, raise_limit
 
 _KEYWORD = re.compile(r"\.?[A-Za-z_0-9]*")
 _SECTION = re.compile(r"\.lib\s+([^\s.\"'/\\]+)\s*\Z", re.IGNORECASE)
@@ -26,13 +28,16 @@ _ANALYSIS = frozenset({
 _CONDITIONS = frozenset({".if", ".elseif", ".else", ".endif"})
 
 
-def read_deck(source: SourceText) -> Deck:
+def read_deck(source: SourceText, access: Access = ORDINARY) -> Deck:
     """Read a top-level netlist and all that it includes."""
     top = Definition("", (), Span(source.file, 1))
-    sorter = Sorter(top, [top])
+    netlist = Path(source.file)
+    sorter = Sorter(top, [top], access, access.folders_for(netlist))
     lines = split_lines(source, top=True)
     sorter.title = lines.title
-    sorter.open_files.append((_identity(Path(source.file)), ""))
+    sorter.problems.extend(source.notes)
+    sorter.characters = len(source.text)
+    sorter.open_files.append((_identity(netlist), ""))
     _sort(source.file, lines, sorter)
     return Deck(
         source.file,
@@ -46,7 +51,7 @@ def read_deck(source: SourceText) -> Deck:
 
 def _identity(path: Path) -> Path:
     try:
-        return path.resolve()
+        return Path(os.path.realpath(path))
     except (OSError, ValueError):
         return path
 
@@ -121,26 +126,32 @@ def _include(line: LogicalLine, keyword: str, sorter: Sorter) -> None:
     if not rest:
         sorter.fail(line.span(), f"{keyword} without a file", f"write {keyword} FILE")
         return
-    path, section = _file_and_section(rest, keyword, Path(line.file))
-    if path is None:
+    path, section = _file_and_section(rest, keyword, line, sorter)
+    if isinstance(path, Outside):
+        what = f"included file '{path.path}' is not in the netlist's folder, and is not read"
+        sorter.fail(line.span(), what, "allow its folder with --include-dir FOLDER")
+    elif path is None:
         what = f"included file '{clean_path(rest)}' is not there: what it defines is missing"
         remedy = "put it beside this file, or correct the path"
         sorter.fail(line.span(), what, remedy)
-        return
-    _read_included(path, section, line, sorter)
+    else:
+        _read_included(path, section, line, sorter)
 
 
-def _file_and_section(rest: str, keyword: str, includer: Path) -> tuple[Path | None, str]:
+def _file_and_section(
+    rest: str, keyword: str, line: LogicalLine, sorter: Sorter
+) -> tuple[Path | Outside | None, str]:
     """`.lib FILE SECTION` names a part of a library; a path may hold blanks without quotes."""
-    path = resolve_path(clean_path(rest), includer)
-    if path is not None and not (rest[0] in "\"'" and rest[-1] != rest[0]):
+    includer = Path(line.file)
+    path = resolve_path(clean_path(rest), includer, sorter.folders)
+    if isinstance(path, Path) and not (rest[0] in "\"'" and rest[-1] != rest[0]):
         return path, ""
     head, _, section = rest.rpartition(" ")
     if keyword == ".lib" and head:
-        path = resolve_path(clean_path(head), includer)
-        if path is not None:
-            return path, section.strip()
-    return resolve_path(clean_path(rest), includer), ""
+        named = resolve_path(clean_path(head), includer, sorter.folders)
+        if named is not None:
+            return named, section.strip()
+    return path, ""
 
 
 def _read_included(path: Path, section: str, line: LogicalLine, sorter: Sorter) -> None:
@@ -153,16 +164,46 @@ def _read_included(path: Path, section: str, line: LogicalLine, sorter: Sorter) 
         what = f"'{path}' is included a second time; it is read once"
         sorter.remark(line.span(), what, "delete one of the cards")
         return
-    source = read_text(path)
-    problem = source if isinstance(source, Problem) else name_foreign(source)
-    if isinstance(source, Problem) or problem is not None:
-        what = f"included file '{path}': {problem.what if problem else 'unreadable'}"
-        sorter.fail(line.span(), what, "include a file of netlist cards")
+    source = _source(path, line, sorter)
+    if source is None:
         return
     sorter.included.add((sorter.current.span, *mark))
+    sorter.characters += len(source.text)
+    sorter.problems.extend(source.notes)
     sorter.open_files.append(mark)
     _sort(source.file, split_lines(source, top=False), sorter, section)
     sorter.open_files.pop()
+
+
+def _source(path: Path, line: LogicalLine, sorter: Sorter) -> SourceText | None:
+    """The file's text, or None, and why not, where it is none or one too many."""
+    beyond = _beyond(sorter)
+    if beyond is not None:
+        what, limit = beyond
+        sorter.fail(line.span(), f"included file '{path}' is not read: {what}", raise_limit(limit))
+        return None
+    source = read_text(path, sorter.access.limits)
+    if isinstance(source, Problem):
+        sorter.fail(line.span(), f"included file '{path}': {source.what}", source.remedy)
+        return None
+    foreign = name_foreign(source)
+    if foreign is not None:
+        what = f"included file '{path}': {foreign.what}"
+        sorter.fail(line.span(), what, "include a file of netlist cards")
+        return None
+    return source
+
+
+def _beyond(sorter: Sorter) -> tuple[str, str] | None:
+    """Which limit the next included file would break, in words and by name."""
+    limits = sorter.access.limits
+    if len(sorter.open_files) > limits["include-depth"]:
+        return f"{limits['include-depth']} files include each other already", "include-depth"
+    if len(sorter.included) >= limits["includes"]:
+        return f"{limits['includes']} files are included already", "includes"
+    if sorter.characters > limits["file-bytes"]:
+        return f"the files have {limits['file-bytes']} bytes already", "file-bytes"
+    return None
 
 
 _HANDLERS: dict[str, Handler] = {

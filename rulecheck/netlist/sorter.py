@@ -3,6 +3,7 @@
 from dataclasses import dataclass, field
 from pathlib import Path
 
+from rulecheck.netlist.access import Access
 from rulecheck.netlist.definition import Definition
 from rulecheck.netlist.lines import LogicalLine
 from rulecheck.netlist.syntax import Card, Item, read_card
@@ -15,12 +16,17 @@ class Sorter:
 
     top: Definition
     stack: list[Definition]
+    access: Access
+    folders: tuple[Path, ...]
+    """From which files may be included."""
     title: str = ""
     global_nets: set[str] = field(default_factory=set)
     problems: list[Problem] = field(default_factory=list)
     files: list[str] = field(default_factory=list)
     open_files: list[tuple[Path, str]] = field(default_factory=list)
     included: set[tuple[Span, Path, str]] = field(default_factory=set)
+    characters: int = 0
+    """Of all files so far, each as often as it was read."""
     kinds_noted: set[str] = field(default_factory=set)
 
     @property

@@ -112,7 +112,7 @@ def grow(source: SourceText) -> tuple[Branch | None, tuple[Problem, ...]]:
         return None, (flaw,)
     if node is None or (isinstance(node, yaml.ScalarNode) and not node.value):
         return Branch(start, start, mapping={}), ()
-    growth = _Growth(source.file)
+    growth = _Growth(source.file, list(source.notes))
     root = _branch(node, None, (), growth)
     return root, tuple(growth.problems)
 

@@ -2,6 +2,7 @@
 
 from rulecheck.values.affine import AffineForm, total_of, variable
 from rulecheck.values.interval import Interval, point
+from rulecheck.values.limits import BOUNDS, USUAL, Limits, raise_limit
 from rulecheck.values.natural import natural_key
 from rulecheck.values.problem import Gravity, Problem, error, errors_of, note
 from rulecheck.values.quadrants import Quadrant, QuadrantSet
@@ -16,10 +17,13 @@ from rulecheck.values.span import Span
 from rulecheck.values.unknown import Unknown
 
 __all__ = [
+    "BOUNDS",
+    "USUAL",
     "AffineForm",
     "Dimension",
     "Gravity",
     "Interval",
+    "Limits",
     "NotAQuantity",
     "Problem",
     "Quadrant",
@@ -32,6 +36,7 @@ __all__ = [
     "natural_key",
     "note",
     "point",
+    "raise_limit",
     "read_quantity",
     "total_of",
     "variable",
