@@ -1,16 +1,18 @@
 """Findings as cards: message, reason, remedy, source, the lines of the netlist, the derivation."""
 
-from collections.abc import Iterable, Mapping, Sequence
+from collections.abc import Callable, Iterable, Mapping, Sequence
 from dataclasses import dataclass
 
 from rulecheck.report.explanation import Entry, Explanation
 from rulecheck.report.lint_result import LintReport, excuse_text
-from rulecheck.report.review.review import Card, FindingCard, InputFile, Mark, UndecidedCheck
+from rulecheck.report.review.drawing import Mark
+from rulecheck.report.review.review import Card, FindingCard, InputFile, UndecidedCheck
 from rulecheck.rulebook import Rule, Verdict
 from rulecheck.values import Span
 
 WITH_PAGES = ("position", "part")
 """Kinds of subject whose numbers a position's page derives, where they are in one."""
+_OF_LEGS = ("leg", "bridge")
 _MOST_CARDS = 12
 
 
@@ -53,7 +55,9 @@ def _card(
         f"finding-{number}",
         verdict.level,
         verdict.rule,
+        verdict.kind,
         verdict.subject,
+        verdict.parts,
         verdict.message,
         rule.why if rule else "",
         rule.remedy if rule else "",
@@ -88,12 +92,24 @@ def _card_at(span: Span, lines: Sequence[str]) -> Card:
     return Card(span.file, span.line, "\n".join(text))
 
 
-def marks_by_name(cards: Iterable[FindingCard]) -> dict[str, tuple[Mark, ...]]:
-    """By subject: the marks of its findings, in their order."""
+def marks_by(
+    cards: Iterable[FindingCard], names: Callable[[FindingCard], Iterable[str]]
+) -> dict[str, tuple[Mark, ...]]:
+    """The marks of the findings by each of the names that `names` gives them, in order."""
     found: dict[str, list[Mark]] = {}
     for card in cards:
-        found.setdefault(card.subject, []).append(Mark(card.number, card.anchor, card.level))
+        for name in dict.fromkeys(names(card)):
+            found.setdefault(name, []).append(Mark(card.number, card.anchor, card.level))
     return {name: tuple(marks) for name, marks in found.items()}
+
+
+def parts_marked(card: FindingCard) -> tuple[str, ...]:
+    """A finding on a leg as a whole stands at the leg; any other at the parts that it names."""
+    return () if card.kind in _OF_LEGS else (card.subject, *card.parts)
+
+
+def legs_marked(card: FindingCard) -> tuple[str, ...]:
+    return (card.subject,) if card.kind in _OF_LEGS else ()
 
 
 def undecided_checks(report: LintReport) -> tuple[UndecidedCheck, ...]:

@@ -13,11 +13,14 @@ from rulecheck.report.lint_result import LintReport, off_line, undecided_lines
 from rulecheck.report.open_points import merged
 from rulecheck.report.quadrant_result import QuadrantResult, quadrant_result
 from rulecheck.report.review.derating import factors_in_force
+from rulecheck.report.review.drawn_legs import Marks, draw_legs
 from rulecheck.report.review.finding_cards import (
     WITH_PAGES,
     Derivations,
     finding_cards,
-    marks_by_name,
+    legs_marked,
+    marks_by,
+    parts_marked,
     undecided_checks,
 )
 from rulecheck.report.review.position_pages import position_anchors, position_pages
@@ -58,6 +61,7 @@ def make_review(
     subjects = (*report.broken, *report.excused)
     derivations = Derivations(_anchors(result), _told(subjects, studied))
     cards = finding_cards(subjects, rulebook.rules, inputs, derivations)
+    marks = Marks(marks_by(cards, parts_marked), marks_by(cards, legs_marked))
     return Review(
         stage.netlist,
         stage.sheet,
@@ -69,7 +73,8 @@ def make_review(
         rulebook.changes,
         report.tally,
         len(rulebook.rules),
-        position_pages(result, stage, demands, rulebook, marks_by_name(cards)),
+        draw_legs(stage, demands, result, marks),
+        position_pages(result, stage, demands, rulebook, marks.parts),
         tuple(card for card in cards if not card.deviation),
         tuple(card for card in cards if card.deviation),
         undecided_checks(report),

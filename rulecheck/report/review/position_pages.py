@@ -7,8 +7,9 @@ from rulecheck.report.explain_position import explain_row
 from rulecheck.report.figures import figure, range_figure
 from rulecheck.report.quadrant_result import PositionResult, QuadrantResult
 from rulecheck.report.review.derating import limits_of
+from rulecheck.report.review.drawing import Mark
 from rulecheck.report.review.plane import draw_plane
-from rulecheck.report.review.review import Extreme, Mark, PositionPage
+from rulecheck.report.review.review import Extreme, PositionPage
 from rulecheck.report.standing import rated_current, rated_voltage, standing
 from rulecheck.rulebook import Rulebook
 from rulecheck.stage import Stage

@@ -4,6 +4,7 @@ from dataclasses import dataclass, field
 
 from rulecheck.report.explanation import Entry
 from rulecheck.report.review.derating import Factor
+from rulecheck.report.review.drawing import Mark, Schematics
 from rulecheck.report.review.plane import Plane
 from rulecheck.rulebook import PackInForce, Tally
 
@@ -46,7 +47,10 @@ class FindingCard:
     level: str
     """`error`, `warning`, `note`."""
     rule: str
+    kind: str
+    """The subject's kind."""
     subject: str
+    parts: tuple[str, ...]
     message: str
     why: str
     remedy: str
@@ -58,15 +62,6 @@ class FindingCard:
     """The anchor of the position that it is about; empty for any other subject."""
     deviation: str
     """Who accepted it, why and until when; empty where nobody did."""
-
-
-@dataclass(frozen=True, slots=True)
-class Mark:
-    """A finding at the thing that it is about."""
-
-    number: int
-    anchor: str
-    level: str
 
 
 @dataclass(frozen=True, slots=True)
@@ -137,6 +132,7 @@ class Review:
     pack_changes: tuple[str, ...]
     tally: Tally
     rules_in_force: int
+    schematics: Schematics
     positions: tuple[PositionPage, ...]
     findings: tuple[FindingCard, ...]
     accepted: tuple[FindingCard, ...]
