@@ -17,19 +17,31 @@ from rulecheck.demand.demands import (
 )
 from rulecheck.demand.evaluate import polarities_of
 from rulecheck.demand.text import demands_text
+from rulecheck.demand.waveforms.records import (
+    CapacitorWaves,
+    Derived,
+    InductorWaves,
+    PositionWaves,
+    Waveforms,
+)
 
 __all__ = [
     "Bridge",
+    "CapacitorWaves",
     "Demands",
+    "Derived",
     "FreeShort",
     "Group",
     "HardCommutation",
+    "InductorWaves",
     "InterruptedCurrent",
     "Leg",
     "PositionDemand",
+    "PositionWaves",
     "State",
     "Undetermined",
     "Variable",
+    "Waveforms",
     "Witness",
     "demands_text",
     "find_demands",

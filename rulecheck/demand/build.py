@@ -24,6 +24,7 @@ from rulecheck.demand.recovering import find_hard_commutations
 from rulecheck.demand.resting import with_rest
 from rulecheck.demand.shared import with_shares
 from rulecheck.demand.starved import starved
+from rulecheck.demand.waveforms.find import find_waveforms
 from rulecheck.stage import Stage
 from rulecheck.values import Unknown, natural_key
 
@@ -45,6 +46,7 @@ def find_demands(stage: Stage) -> Demands:
         if cluster.positions
     )
     groups += tuple(shorting_groups(worked))
+    waveforms = find_waveforms(worked, settle)
     return Demands(
         account_of_variables(worked, settle),
         positions,
@@ -55,8 +57,9 @@ def find_demands(stage: Stage) -> Demands:
         tuple(interrupted),
         tuple(find_free_shorts(worked)),
         find_hard_commutations(legs, worked, positions),
-        (*assumed, *more, *derivations(worked)),
+        (*assumed, *more, *derivations(worked), *waveforms.assumed),
         (*_not_covered(worked, positions), *noted),
+        waveforms,
     )
 
 

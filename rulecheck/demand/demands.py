@@ -1,8 +1,9 @@
 """The product of this step: what the circuit asks of each position, and how that is known."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 
+from rulecheck.demand.waveforms.records import Waveforms
 from rulecheck.values import AffineForm, Interval, QuadrantSet, Unknown
 
 
@@ -152,3 +153,4 @@ class Demands:
     hard_commutations: tuple[HardCommutation, ...]
     assumed: tuple[str, ...]
     not_covered: tuple[str, ...]
+    waveforms: Waveforms = field(default_factory=Waveforms)

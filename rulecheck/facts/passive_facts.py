@@ -6,6 +6,12 @@ from rulecheck.demand import Variable
 from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.inputs import Inputs, stated_number
 from rulecheck.facts.terms import SubjectTerm, link, number, span_of, text, yes_no
+from rulecheck.facts.waveform_facts import (
+    CAPACITOR_TERMS,
+    INDUCTOR_TERMS,
+    capacitor_values,
+    inductor_values,
+)
 from rulecheck.parts import Kind, Part
 from rulecheck.values import Dimension, Interval, Unknown
 
@@ -25,6 +31,7 @@ INDUCTOR = SubjectTerm(
         number("saturation-current", A, "Its rated saturation current."),
         number("rms-rating", A, "Its rated rms current."),
         yes_no("power", "Power current flows through it."),
+        *INDUCTOR_TERMS,
     ),
     (_OWN_PART, link("interruptions", "free-path", "Its currents that all gates off interrupt.")),
 )
@@ -41,6 +48,7 @@ CAPACITOR = SubjectTerm(
         number("ripple-rating", A, "Its rated ripple current."),
         text("dielectric", "`ceramic`, `film`, `electrolytic` or `tantalum`."),
         yes_no("bulk", "It holds a voltage of the power stage."),
+        *CAPACITOR_TERMS,
     ),
     (_OWN_PART,),
 )
@@ -109,6 +117,7 @@ def _inductor(inputs: Inputs, part: Part, variables: dict[str, Variable]) -> Sub
         "saturation-current": stated_number(part, "ratings.current"),
         "rms-rating": stated_number(part, "ratings.rms-current"),
         "power": part.name in inputs.branch_parts,
+        **inductor_values(inputs, part.name),
     }
     interrupted = tuple(
         f"{item.carrier} {item.direction}"
@@ -139,6 +148,7 @@ def _capacitor(inputs: Inputs, part: Part, variables: dict[str, Variable]) -> Su
         "ripple-rating": stated_number(part, "ratings.ripple-current"),
         "dielectric": dielectric or part.missing("ratings.dielectric"),
         "bulk": part.name in inputs.branch_parts,
+        **capacitor_values(inputs, part.name),
     }
     return _subject(inputs, part, values, {})
 

@@ -17,6 +17,7 @@ from rulecheck.facts.position_build import (
     series_diode,
     shared_voltage,
 )
+from rulecheck.facts.waveform_facts import position_values
 from rulecheck.parts import Part
 from rulecheck.stage import Position
 from rulecheck.values import Interval, Quadrant, QuadrantSet, Unknown
@@ -55,6 +56,7 @@ def _subject(
             "forbids": _forbids(inputs, position.name),
             "across-voltage": (position.start, position.end) in inputs.voltage_between,
             "turned": _turned(demand.quadrants, capability.quadrants),
+            **position_values(inputs, position.name),
             "tied": position.name not in inputs.group_of_position,
         },
         _links(inputs, position, devices, free_paths),

@@ -1,6 +1,7 @@
 """What a rule may ask of a switch position."""
 
 from rulecheck.facts.terms import SubjectTerm, count, link, number, span_of, text, texts, yes_no
+from rulecheck.facts.waveform_facts import POSITION_TERMS
 from rulecheck.values import Dimension
 
 V, A = Dimension.VOLTAGE, Dimension.CURRENT
@@ -58,6 +59,7 @@ POSITION = SubjectTerm(
         yes_no("across-voltage", "A stiff voltage stands straight across it."),
         yes_no("turned", "As drawn it does not fit its demand; drawn the other way up it would."),
         yes_no("all-turned", "So it is with every such position of the stage, of two or more."),
+        *POSITION_TERMS,
         yes_no("tied", "It joins two independent voltages and is on only where they are equal."),
     ),
     (

@@ -74,6 +74,9 @@ def _port(entry: SheetPort, nets: tuple[str, ...], neutral: str) -> Port:
         entry.fused_elsewhere,
         entry.withstands,
         (*entry.nets, *((entry.neutral,) if entry.neutral else ())),
+        entry.modulation,
+        entry.modulation_index,
+        entry.power_factor,
     )
 
 

@@ -5,14 +5,11 @@
 """
 
 import math
-import re
-from collections.abc import Mapping, Sequence
+from collections.abc import Mapping
 from dataclasses import dataclass, field
 from itertools import combinations
-from typing import TypeVar
 
-from rulecheck.reading import SourceText, YamlReading, read_yaml
-from rulecheck.reading.quantities import as_interval, as_number
+from rulecheck.reading import SourceText, read_yaml
 from rulecheck.stage.sheet_file import (
     LegSwitchingEntry,
     OverrideEntry,
@@ -20,12 +17,10 @@ from rulecheck.stage.sheet_file import (
     SheetFile,
     SwitchingEntry,
 )
+from rulecheck.stage.sheet_reader import Path, Reader, modulated, read_alternating
 from rulecheck.stage.stage import Barrier, PortKind, Role, Switching
-from rulecheck.values import Dimension, Interval, Problem, Span, error
+from rulecheck.values import Dimension, Interval, Problem, Span
 
-Path = tuple[str | int, ...]
-Kept = TypeVar("Kept", float, Interval)
-_ALTERNATING = re.compile(r"\s*(.*?)\s+(peak|rms)\s*\Z", re.IGNORECASE)
 ROLES = {role.value.replace(" ", "-"): role for role in Role} | {
     "bulk": Role.BULK_CAPACITOR,
     "resistor": Role.LOAD,
@@ -46,6 +41,9 @@ class SheetPort:
     frequency: Interval | None
     least_amplitude: float
     draws: bool
+    modulation: str
+    modulation_index: Interval | None
+    power_factor: Interval | None
     span: Span
     source: str = ""
     fused_elsewhere: bool = False
@@ -104,46 +102,17 @@ class SheetReading:
 EMPTY_SHEET = Sheet()
 
 
-@dataclass(slots=True)
-class _Reader:
-    """Collects the problems of one file while its entries are converted."""
-
-    marks: YamlReading[SheetFile]
-    problems: list[Problem] = field(default_factory=list)
-
-    def fail(self, path: Path, what: str, remedy: str) -> None:
-        self.problems.append(error(self.marks.span(path), what, remedy))
-
-    def number(self, raw: object, dimension: Dimension, path: Path) -> float | None:
-        if raw is None:
-            return None
-        value = as_number(raw, dimension, self.marks.span(path))
-        return self._kept(value)
-
-    def interval(self, raw: object, dimension: Dimension, path: Path) -> Interval | None:
-        if raw is None:
-            return None
-        value = as_interval(raw, dimension, self.marks.span(path))
-        return self._kept(value)
-
-    def _kept(self, value: Kept | Problem) -> Kept | None:
-        if isinstance(value, Problem):
-            self.problems.append(value)
-            return None
-        return value
-
-
 def read_sheet(source: SourceText) -> SheetReading:
     """Read a `*.stage.yaml`; the sheet holds what could be read even where problems remain."""
     marks = read_yaml(source, SheetFile)
     if marks.value is None:
         return SheetReading(Sheet(file=source.file), marks.problems)
-    reader = _Reader(marks)
+    reader = Reader(marks)
     sheet = _sheet(source.file, marks.value, reader)
     return SheetReading(sheet, (*marks.problems, *reader.problems))
 
 
-def _sheet(file: str, entries: SheetFile, reader: _Reader) -> Sheet:
+def _sheet(file: str, entries: SheetFile, reader: Reader) -> Sheet:
     legs = {**entries.switching.legs, **entries.legs}
     efficiency = reader.number(entries.efficiency, Dimension.NUMBER, ("efficiency",))
     if efficiency is not None and not 0.0 < efficiency <= 1.0:
@@ -167,7 +136,7 @@ def _sheet(file: str, entries: SheetFile, reader: _Reader) -> Sheet:
     )
 
 
-def _barriers(entries: SheetFile, reader: _Reader) -> tuple[Barrier, ...]:
+def _barriers(entries: SheetFile, reader: Reader) -> tuple[Barrier, ...]:
     """One for each two domains, with the voltages that an entry states."""
     names = tuple(entries.domains)
     stated: dict[frozenset[str], Barrier] = {}
@@ -190,24 +159,28 @@ def _barriers(entries: SheetFile, reader: _Reader) -> tuple[Barrier, ...]:
     )
 
 
-def _leg(net: str, entry: LegSwitchingEntry, entries: SheetFile, reader: _Reader) -> LegSheet:
+def _leg(net: str, entry: LegSwitchingEntry, entries: SheetFile, reader: Reader) -> LegSheet:
     path: Path = ("legs", net) if net in entries.legs else ("switching", "legs", net)
     return LegSheet(net, _switching(entry, path, reader), reader.marks.span(path))
 
 
-def _switching(entry: SwitchingEntry | LegSwitchingEntry, path: Path, reader: _Reader) -> Switching:
+def _switching(entry: SwitchingEntry | LegSwitchingEntry, path: Path, reader: Reader) -> Switching:
+    phase = None
+    if isinstance(entry, LegSwitchingEntry):
+        phase = reader.number(entry.phase, Dimension.NUMBER, (*path, "phase"))
     return Switching(
         reader.number(entry.frequency, Dimension.FREQUENCY, (*path, "frequency")),
         reader.number(entry.dead_time, Dimension.TIME, (*path, "dead-time")),
         reader.number(entry.edge, Dimension.TIME, (*path, "edge")),
         reader.number(entry.shortest_pulse, Dimension.TIME, (*path, "shortest-pulse")),
+        phase,
     )
 
 
-def _override(name: str, entry: OverrideEntry, reader: _Reader) -> Override:
+def _override(name: str, entry: OverrideEntry, reader: Reader) -> Override:
     path: Path = ("set", name)
-    current, _ = _alternating(entry.current, Dimension.CURRENT, (*path, "current"), reader)
-    voltage, _ = _alternating(entry.voltage, Dimension.VOLTAGE, (*path, "voltage"), reader)
+    current, _ = read_alternating(entry.current, Dimension.CURRENT, (*path, "current"), reader)
+    voltage, _ = read_alternating(entry.voltage, Dimension.VOLTAGE, (*path, "voltage"), reader)
     role = None
     if entry.role is not None:
         role = ROLES.get(entry.role.lower().replace(" ", "-"))
@@ -219,7 +192,7 @@ def _override(name: str, entry: OverrideEntry, reader: _Reader) -> Override:
     return Override(name, current, voltage, role, span, leakage, entry.balance or "")
 
 
-def _port(name: str, entry: PortEntry, reader: _Reader) -> SheetPort:
+def _port(name: str, entry: PortEntry, reader: Reader) -> SheetPort:
     path: Path = ("ports", name)
     nets = _port_nets(entry, path, reader)
     voltage, alternating_voltage = _port_voltage(entry, path, reader)
@@ -250,6 +223,7 @@ def _port(name: str, entry: PortEntry, reader: _Reader) -> SheetPort:
         frequency,
         least,
         entry.draws is not None,
+        *modulated(entry, kind, path, reader),
         span,
         entry.source or "",
         entry.fuse == "elsewhere",
@@ -262,7 +236,7 @@ def _amplitude(value: Interval | None) -> Interval | None:
     return None if value is None else Interval(-value.magnitude, value.magnitude)
 
 
-def _port_nets(entry: PortEntry, path: Path, reader: _Reader) -> tuple[str, ...]:
+def _port_nets(entry: PortEntry, path: Path, reader: Reader) -> tuple[str, ...]:
     if (entry.between is None) == (entry.phases is None):
         reader.fail(
             path,
@@ -281,22 +255,22 @@ def _port_nets(entry: PortEntry, path: Path, reader: _Reader) -> tuple[str, ...]
     return tuple(str(net) for net in entry.between or entry.phases or ())
 
 
-def _port_voltage(entry: PortEntry, path: Path, reader: _Reader) -> tuple[Interval | None, bool]:
+def _port_voltage(entry: PortEntry, path: Path, reader: Reader) -> tuple[Interval | None, bool]:
     if entry.line_voltage is None:
-        return _alternating(entry.voltage, Dimension.VOLTAGE, (*path, "voltage"), reader)
+        return read_alternating(entry.voltage, Dimension.VOLTAGE, (*path, "voltage"), reader)
     where = (*path, "line-voltage")
     if entry.voltage is not None:
         reader.fail(where, "both `voltage` and `line-voltage` are given", "keep one of them")
     if entry.phases is None:
         reader.fail(where, "`line-voltage` belongs to a port with `phases`", "write `voltage`")
-    line, _ = _alternating(entry.line_voltage, Dimension.VOLTAGE, where, reader)
+    line, _ = read_alternating(entry.line_voltage, Dimension.VOLTAGE, where, reader)
     count = len(entry.phases or ()) or 3
     # line to line of neighbouring phases of a symmetrical set of n: 2 sin(pi/n) times the phase
     ratio = 2.0 * math.sin(math.pi / count)
     return (None if line is None else line.scaled(1.0 / ratio)), True
 
 
-def _port_current(entry: PortEntry, path: Path, reader: _Reader) -> tuple[Interval | None, bool]:
+def _port_current(entry: PortEntry, path: Path, reader: Reader) -> tuple[Interval | None, bool]:
     if entry.supplies is not None and entry.draws is not None:
         reader.fail(
             (*path, "draws"),
@@ -305,27 +279,7 @@ def _port_current(entry: PortEntry, path: Path, reader: _Reader) -> tuple[Interv
         )
     key = "supplies" if entry.supplies is not None else "draws"
     raw = entry.supplies if entry.supplies is not None else entry.draws
-    current, alternating = _alternating(raw, Dimension.CURRENT, (*path, key), reader)
+    current, alternating = read_alternating(raw, Dimension.CURRENT, (*path, key), reader)
     if current is not None and key == "draws":
         current = -current
     return current, alternating
-
-
-def _alternating(
-    raw: object, dimension: Dimension, path: Path, reader: _Reader
-) -> tuple[Interval | None, bool]:
-    """A quantity or range in which `peak` or `rms` may stand; rms becomes its peak."""
-    if raw is None:
-        return None, False
-    items: Sequence[object] = raw if isinstance(raw, list) else [raw]
-    matches = [_ALTERNATING.match(item) if isinstance(item, str) else None for item in items]
-    if not any(matches):
-        return reader.interval(raw, dimension, path), False
-    values: list[float] = []
-    for item, match in zip(items, matches, strict=True):
-        number = reader.number(match[1] if match else item, dimension, path)
-        if number is None:
-            return None, True
-        rms = match is not None and match[2].lower() == "rms"
-        values.append(number * math.sqrt(2.0) if rms else number)
-    return Interval(min(values), max(values)), True

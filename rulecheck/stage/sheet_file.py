@@ -14,6 +14,7 @@ from rulecheck.reading.quantities import (
     FrequencyRange,
     Inductance,
     Plain,
+    PlainRange,
     PowerRange,
     Time,
     Voltage,
@@ -45,13 +46,19 @@ class PortEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename=
     source: Literal["battery", "mains", "panel", "generator", "supply", "load"] | None = None
     fuse: Literal["here", "elsewhere"] | None = None
     withstands: list[Literal["reverse-polarity", "surge"]] = []
+    modulation: str | None = None
+    modulation_index: PlainRange | None = None
+    power_factor: PlainRange | None = None
 
 
 class LegSwitchingEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename="kebab"):
+    """Of one leg; `phase` is when it turns on, in degrees of the switching period."""
+
     frequency: Frequency | None = None
     dead_time: Time | None = None
     edge: Time | None = None
     shortest_pulse: Time | None = None
+    phase: Plain | None = None
 
 
 class SwitchingEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename="kebab"):

@@ -51,6 +51,11 @@ class Port:
     """What it is to survive from outside: `reverse-polarity`, `surge`."""
     named_nets: tuple[str, ...] = ()
     """Its nets as the sheet names them, before wires are merged."""
+    modulation: str = ""
+    """Of an AC port between two legs: `unipolar` or `bipolar`; empty where nobody states it."""
+    modulation_index: Interval | None = None
+    power_factor: Interval | None = None
+    """cos phi of an AC port's fundamental, positive whatever way the power goes."""
 
 
 class BranchKind(StrEnum):
@@ -125,6 +130,8 @@ class Switching:
     dead_time: float | None = None
     edge: float | None = None
     shortest_pulse: float | None = None
+    phase: float | None = None
+    """Of one leg: when it turns on, degrees of the switching period."""
 
 
 @dataclass(frozen=True, slots=True)

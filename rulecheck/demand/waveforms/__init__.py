@@ -1,0 +1,1 @@
+"""Mean, rms, peak and ripple over time, from states with durations."""
