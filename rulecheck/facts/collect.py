@@ -6,14 +6,17 @@ from dataclasses import replace
 from rulecheck.capability import Capabilities
 from rulecheck.demand import Demands
 from rulecheck.facts import (
+    clamp_facts,
     free_path_facts,
     gate_drive_facts,
     leg_facts,
+    line_facts,
     net_facts,
     part_facts,
     passive_facts,
     port_facts,
     position_facts,
+    shunt_facts,
     state_facts,
 )
 from rulecheck.facts.facts import Facts, Subject
@@ -32,6 +35,9 @@ _COLLECTORS: tuple[Callable[[Inputs], tuple[Subject, ...]], ...] = (
     gate_drive_facts.collect,
     passive_facts.collect,
     port_facts.collect,
+    line_facts.collect,
+    shunt_facts.collect,
+    clamp_facts.collect,
     free_path_facts.collect,
 )
 _OF_STAGE = {

@@ -4,7 +4,7 @@ from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 
 from rulecheck.capability import Capabilities
-from rulecheck.demand import Demands, Group
+from rulecheck.demand import Demands, Group, Variable
 from rulecheck.facts.facts import Bounds, Value
 from rulecheck.parts import Datum, Part
 from rulecheck.stage import Position, Role, Stage
@@ -38,6 +38,7 @@ class Inputs:
     """The ground and what looks like another, as far as something is on it."""
     spelling: Mapping[str, str]
     """Model texts, which have no case, by lower case -> as first written."""
+    variable_by_name: Mapping[str, Variable]
     shared: frozenset[frozenset[str]]
     """Pairs of merged nets with a sharing or snubber part across them."""
 
@@ -96,6 +97,7 @@ def gather(stage: Stage, capabilities: Capabilities, demands: Demands) -> Inputs
         _power_nets(stage),
         _grounds(stage),
         {part.text.casefold(): part.text for part in reversed(stage.parts.parts)},
+        {variable.name: variable for variable in demands.variables},
         frozenset(
             frozenset(stage.merged.get(net, net) for net in parts[name].nets)
             for name, role in stage.roles.items()

@@ -4,8 +4,10 @@ from collections.abc import Iterable
 
 from rulecheck.demand import Bridge, Leg
 from rulecheck.facts.facts import Subject, Value
+from rulecheck.facts.feeding import Wires, find_wires
 from rulecheck.facts.gate_source import find_gate_source
 from rulecheck.facts.inputs import Inputs
+from rulecheck.facts.short_path import is_short_sensed
 from rulecheck.facts.terms import SubjectTerm, count, link, number, text, texts, yes_no
 from rulecheck.stage import Role
 from rulecheck.values import Dimension, Unknown, natural_key
@@ -25,6 +27,7 @@ LEG = SubjectTerm(
         yes_no("high-turned", "A gated position above is drawn from the midpoint to the rail."),
         yes_no("low-turned", "A gated position below is drawn from the rail to the midpoint."),
         yes_no("midpoint-loaded", "Something other than its switches and their aids is there."),
+        yes_no("short-sensed", "A current sensor sees what flows when all its switches are on."),
         texts("high-kinds", "Kinds of the devices above the midpoint."),
         texts("low-kinds", "Kinds of the devices below the midpoint."),
         texts("high-models", "Models of the gated devices above the midpoint."),
@@ -63,11 +66,12 @@ _AIDS = frozenset(
 
 def collect(inputs: Inputs) -> tuple[Subject, ...]:
     """Legs and then bridges."""
-    legs = tuple(_leg(inputs, leg) for leg in inputs.demands.legs)
+    wires = find_wires(inputs)
+    legs = tuple(_leg(inputs, wires, leg) for leg in inputs.demands.legs)
     return (*legs, *(_bridge(inputs, bridge) for bridge in inputs.demands.bridges))
 
 
-def _leg(inputs: Inputs, leg: Leg) -> Subject:
+def _leg(inputs: Inputs, wires: Wires, leg: Leg) -> Subject:
     positions = tuple(dict.fromkeys((*leg.high, *leg.low, *leg.others)))
     parts = inputs.parts_of_positions(positions)
     joined = sorted(_gates(inputs, leg.high) & _gates(inputs, leg.low))
@@ -83,6 +87,7 @@ def _leg(inputs: Inputs, leg: Leg) -> Subject:
         "high-turned": _turned(inputs, leg.high, starts_at={leg.midpoint}, ends_at={leg.rails[0]}),
         "low-turned": _turned(inputs, leg.low, starts_at={leg.rails[-1]}, ends_at={leg.midpoint}),
         "midpoint-loaded": _loaded(inputs, leg.midpoint),
+        "short-sensed": is_short_sensed(inputs, wires, leg),
         "high-kinds": _kinds(inputs, leg.high),
         "low-kinds": _kinds(inputs, leg.low),
         "high-models": _models(inputs, leg.high),

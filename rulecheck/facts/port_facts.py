@@ -1,8 +1,10 @@
 """Facts of ports: where the stage meets the world."""
 
 from rulecheck.facts.facts import Subject, Value
+from rulecheck.facts.feeding import Wires, find_wires
 from rulecheck.facts.inputs import Inputs
-from rulecheck.facts.terms import SubjectTerm, link, span_of, text, yes_no
+from rulecheck.facts.port_guards import is_fused, is_reverse_protected, is_surge_clamped
+from rulecheck.facts.terms import SubjectTerm, link, span_of, text, texts, yes_no
 from rulecheck.stage import Port
 from rulecheck.values import Dimension, Interval, Unknown
 
@@ -18,16 +20,24 @@ PORT = SubjectTerm(
         span_of("current", Dimension.CURRENT, "Mean or amplitude, out of the first net inwards."),
         span_of("power", Dimension.POWER, "Power into the stage."),
         span_of("frequency", Dimension.FREQUENCY, "Its frequency."),
+        text("behind", "What the sheet says stands behind it; empty where it does not say."),
+        yes_no("supplies", "It fixes a voltage and, as stated, supplies current into the stage."),
+        yes_no("fused", "A fuse or breaker interrupts a line of it, of phases every line."),
+        yes_no("fused-elsewhere", "The sheet says that its fuse is on another drawing."),
+        texts("withstands", "What the sheet says it is to survive from outside."),
+        yes_no("reverse-protected", "Turned round it drives no current, or blows its fuse."),
+        yes_no("surge-clamped", "A clamp stands between its lines."),
     ),
     (link("nets", "net", "Its nets."),),
 )
 
 
 def collect(inputs: Inputs) -> tuple[Subject, ...]:
-    return tuple(_port(inputs, port) for port in inputs.stage.ports)
+    wires = find_wires(inputs)
+    return tuple(_port(inputs, wires, port) for port in inputs.stage.ports)
 
 
-def _port(inputs: Inputs, port: Port) -> Subject:
+def _port(inputs: Inputs, wires: Wires, port: Port) -> Subject:
     values: dict[str, Value] = {
         "sort": port.kind.value,
         "stated-in": port.stated_in,
@@ -37,6 +47,16 @@ def _port(inputs: Inputs, port: Port) -> Subject:
         "current": _or_derived(inputs, port, "i", "draws", port.current),
         "power": _stated(port, "power", port.power),
         "frequency": _stated(port, "frequency", port.frequency),
+        "behind": port.source,
+        "supplies": port.voltage is not None
+        and port.current is not None
+        and port.current.high > 0.0
+        and not port.draws,
+        "fused": is_fused(inputs, wires, port),
+        "fused-elsewhere": port.fused_elsewhere,
+        "withstands": port.withstands,
+        "reverse-protected": is_reverse_protected(inputs, wires, port),
+        "surge-clamped": is_surge_clamped(inputs, port),
     }
     nets = tuple(dict.fromkeys(net for net in (*port.nets, port.neutral) if net))
     return Subject("port", port.name, values, {"nets": nets}, (), nets, port.span)

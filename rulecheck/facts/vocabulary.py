@@ -2,14 +2,17 @@
 
 from collections.abc import Mapping
 
+from rulecheck.facts.clamp_facts import CLAMP
 from rulecheck.facts.free_path_facts import FREE_PATH
 from rulecheck.facts.gate_drive_facts import GATE_DRIVE
 from rulecheck.facts.leg_facts import BRIDGE, LEG
+from rulecheck.facts.line_facts import LINE_ELEMENT
 from rulecheck.facts.net_facts import NET, STAGE
 from rulecheck.facts.part_facts import PART
 from rulecheck.facts.passive_facts import CAPACITOR, INDUCTOR, RESISTOR
 from rulecheck.facts.port_facts import PORT
 from rulecheck.facts.position_terms import POSITION
+from rulecheck.facts.shunt_facts import SHUNT
 from rulecheck.facts.state_facts import GROUP, SWITCH_STATE
 from rulecheck.facts.terms import SubjectTerm
 from rulecheck.parts import Kind
@@ -31,6 +34,9 @@ VOCABULARY: Mapping[str, SubjectTerm] = {
         CAPACITOR,
         RESISTOR,
         PORT,
+        LINE_ELEMENT,
+        SHUNT,
+        CLAMP,
         FREE_PATH,
     )
 }

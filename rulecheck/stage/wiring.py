@@ -56,10 +56,10 @@ def _why_wire(part: Part, sheet: Sheet) -> str:
     if override is not None and override.role is not None:
         wired = override.role is Role.WIRE and (len(part.nets) == 2 or through_nets(part))
         return "role of the stage sheet" if wired else ""
-    if override is not None and (override.current or override.voltage):
-        return ""
     if through_nets(part):
         return _THROUGH_WORDS.get(part.kind, part.kind.value)
+    if override is not None and (override.current or override.voltage):
+        return ""
     if len(part.nets) != 2:
         return ""
     if isinstance(part.value, Unknown) or part.waveform is not None:
