@@ -9,7 +9,7 @@ from rulecheck.facts.inputs import Inputs, stated_number
 from rulecheck.facts.terms import SubjectTerm, link, number, text, yes_no
 from rulecheck.parts import Kind, Part, through_nets
 from rulecheck.stage import Port, PortKind
-from rulecheck.values import Dimension, Unknown
+from rulecheck.values import Dimension, Interval, Unknown
 
 V, A = Dimension.VOLTAGE, Dimension.CURRENT
 
@@ -112,6 +112,16 @@ def _subject(inputs: Inputs, part: Part, port: Port | None, current: Value) -> S
     return Subject("line-element", part.name, values, links, (part.name,), part.nets, part.span)
 
 
+def _rails_around(inputs: Inputs, port: Port) -> float | None:
+    """Where legs switch all nets of a port but its neutral: the widest of their rails."""
+    legs = [leg for leg in inputs.demands.legs if leg.midpoint in port.nets]
+    spans = [inputs.voltage_between.get((leg.rails[0], leg.rails[-1])) for leg in legs]
+    known = [s.magnitude for s in spans if isinstance(s, Interval) and s.bounded]
+    if {leg.midpoint for leg in legs} < set(port.nets) or len(known) < len(legs):
+        return None
+    return max(known, default=None)
+
+
 def working_voltage(inputs: Inputs, port: Port | None, part: Part) -> Value:
     """DC as it is; AC as rms, of phases from line to line."""
     if port is None:
@@ -122,7 +132,8 @@ def working_voltage(inputs: Inputs, port: Port | None, part: Part) -> Value:
         derived = inputs.variable_by_name.get(f"v({port.name})")
         settle = f"ports: {{{port.name}: {{voltage: ...}}}}"
         if derived is None or isinstance(derived.range, Unknown) or not derived.range.bounded:
-            return Unknown(f"voltage of port {port.name}", settle)
+            switched = _rails_around(inputs, port)
+            return switched or Unknown(f"voltage of port {port.name}", settle)
         span = derived.range
     if port.kind is PortKind.DC:
         return span.magnitude
