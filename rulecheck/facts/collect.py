@@ -9,6 +9,7 @@ from rulecheck.facts import (
     clamp_facts,
     free_path_facts,
     gate_drive_facts,
+    isolation_facts,
     leg_facts,
     line_facts,
     net_facts,
@@ -38,6 +39,7 @@ _COLLECTORS: tuple[Callable[[Inputs], tuple[Subject, ...]], ...] = (
     line_facts.collect,
     shunt_facts.collect,
     clamp_facts.collect,
+    isolation_facts.collect,
     free_path_facts.collect,
 )
 _OF_STAGE = {

@@ -64,9 +64,6 @@ def _element(inputs: Inputs, part: Part, feeders: tuple[Feeder, ...]) -> Subject
 
 
 def _working_current(inputs: Inputs, part: Part, feeders: list[Feeder]) -> Value:
-    given = inputs.stage.given.get(part.name)
-    if given is not None:
-        return given.magnitude
     settle = f"set: {{{part.name}: {{current: [LOW, HIGH]}}}}"
     unknown = Unknown(f"current of {part.name}", settle)
     if not feeders:
@@ -96,6 +93,9 @@ def _connectors(inputs: Inputs) -> Iterator[Subject]:
 
 def _subject(inputs: Inputs, part: Part, port: Port | None, current: Value) -> Subject:
     direct = port is not None and port.kind is PortKind.DC
+    stated = inputs.stage.stated_current.get(part.name)
+    if stated is not None:
+        current = stated.magnitude if direct or port is None else stated.magnitude / math.sqrt(2.0)
     dc_rated = "ratings.dc-voltage" in part.data
     rated = "ratings.dc-voltage" if direct and dc_rated else "ratings.voltage"
     values: dict[str, Value] = {
@@ -127,7 +127,7 @@ def working_voltage(inputs: Inputs, port: Port | None, part: Part) -> Value:
     if port is None:
         settle = f"a port in whose line {part.name} stands"
         return Unknown(f"working voltage of {part.name}", settle)
-    span = port.voltage
+    span = inputs.stage.stated_voltage.get(part.name, port.voltage)
     if span is None:
         derived = inputs.variable_by_name.get(f"v({port.name})")
         settle = f"ports: {{{port.name}: {{voltage: ...}}}}"

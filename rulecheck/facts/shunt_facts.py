@@ -56,7 +56,7 @@ def _shunt(inputs: Inputs, part: Part, feeders: tuple[tuple[str, str], ...]) -> 
 
 
 def _heating(inputs: Inputs, part: Part, feeders: list[tuple[str, str]]) -> Heating | Unknown:
-    given = inputs.stage.given.get(part.name)
+    given = inputs.stage.stated_current.get(part.name)
     if given is not None:
         return Heating(given.magnitude, 0.0, given.magnitude)
     if not feeders:

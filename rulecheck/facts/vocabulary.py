@@ -5,6 +5,7 @@ from collections.abc import Mapping
 from rulecheck.facts.clamp_facts import CLAMP
 from rulecheck.facts.free_path_facts import FREE_PATH
 from rulecheck.facts.gate_drive_facts import GATE_DRIVE
+from rulecheck.facts.isolation_facts import CROSSING, GROUND_PAIR
 from rulecheck.facts.leg_facts import BRIDGE, LEG
 from rulecheck.facts.line_facts import LINE_ELEMENT
 from rulecheck.facts.net_facts import NET, STAGE
@@ -37,6 +38,8 @@ VOCABULARY: Mapping[str, SubjectTerm] = {
         LINE_ELEMENT,
         SHUNT,
         CLAMP,
+        CROSSING,
+        GROUND_PAIR,
         FREE_PATH,
     )
 }

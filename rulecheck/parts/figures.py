@@ -110,7 +110,7 @@ APPLICABLE: Mapping[Kind, Words] = {
         *("ratings.voltage", "ratings.ripple-current", "ratings.dielectric"),
         "ratings.isolation",
     ),
-    Kind.INDUCTOR: ("ratings.current", "ratings.rms-current"),
+    Kind.INDUCTOR: ("ratings.current", "ratings.rms-current", "ratings.isolation"),
     Kind.WINDING_SET: (
         *("ratings.current", "ratings.rms-current", "ratings.voltage"),
         "ratings.isolation",

@@ -6,6 +6,7 @@ from dataclasses import dataclass, replace
 
 from rulecheck.parts import Kind, Part, PartList
 from rulecheck.stage.branches import build_transformers, part_branches, port_branches
+from rulecheck.stage.domains import find_crossings
 from rulecheck.stage.gate_command import GateCommand
 from rulecheck.stage.gate_region import GateRegion, find_gate_region
 from rulecheck.stage.gate_timing import find_gate_commands
@@ -59,6 +60,7 @@ def read_stage(parts: PartList, sheet: Sheet) -> StageReading:
     grouping = _group(known, branches, transformers)
     potentials = mean_potentials(branches, transformers, layout.net(parts.ground))
     positions = build_positions(grouping.pieces, parts.by_name, layout.merged, potentials)
+    domains = _domains(layout, sheet)
     drives = trace_gates(layout, known.region)
     commands = find_gate_commands(layout, drives)
     stage = Stage(
@@ -76,8 +78,11 @@ def read_stage(parts: PartList, sheet: Sheet) -> StageReading:
         _switching(sheet.switching, commands),
         _leg_switching(layout, sheet),
         commands,
-        _domains(layout, sheet),
+        domains,
         sheet.barriers,
+        find_crossings(parts, domains, sheet.barriers),
+        {n: o.current for n, o in _overrides(parts, sheet) if o.current is not None},
+        {n: o.voltage for n, o in _overrides(parts, sheet) if o.voltage is not None},
         {n: o.leakage for n, o in _overrides(parts, sheet) if o.leakage is not None},
         {n: o.balance for n, o in _overrides(parts, sheet) if o.balance},
         sheet.efficiency,

@@ -8,7 +8,7 @@ from rulecheck.parts import PartList
 from rulecheck.stage.gate_command import GateCommand
 from rulecheck.stage.gate_drive import GateDrive
 from rulecheck.stage.position import Position
-from rulecheck.values import Interval, Span
+from rulecheck.values import Interval, Span, Unknown
 
 
 class PortKind(StrEnum):
@@ -146,6 +146,19 @@ class Barrier:
 
 
 @dataclass(frozen=True, slots=True)
+class Crossing:
+    """A part at which two domains meet."""
+
+    name: str
+    """The part's name, or the core's."""
+    barrier: Barrier
+    insulates: bool | Unknown
+    parts: tuple[str, ...]
+    chain: tuple[str, ...]
+    """Where it joins the domains: all parts of the shortest way, in order."""
+
+
+@dataclass(frozen=True, slots=True)
 class Stage:
     netlist: str
     parts: PartList
@@ -172,6 +185,12 @@ class Stage:
     """By name: nets that the sheet says belong together galvanically, as the netlist names them."""
     barriers: tuple[Barrier, ...] = ()
     """One for each two domains of the sheet."""
+    crossings: tuple[Crossing, ...] = ()
+    """Every part at which two domains of the sheet meet."""
+    stated_current: Mapping[str, Interval] = field(default_factory=dict)
+    """By part: what the sheet says passes it, AC as plus and minus its peak."""
+    stated_voltage: Mapping[str, Interval] = field(default_factory=dict)
+    """By part: what the sheet says stands across it."""
     leakage: Mapping[str, float] = field(default_factory=dict)
     """By winding: the leakage inductance seen from it, henry."""
     balance: Mapping[str, str] = field(default_factory=dict)

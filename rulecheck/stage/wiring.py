@@ -58,7 +58,8 @@ def _why_wire(part: Part, sheet: Sheet) -> str:
         return "role of the stage sheet" if wired else ""
     if through_nets(part):
         return _THROUGH_WORDS.get(part.kind, part.kind.value)
-    if override is not None and (override.current or override.voltage):
+    passes = part.kind is not Kind.RESISTOR and override is not None and override.current
+    if passes or (override is not None and override.voltage):
         return ""
     if len(part.nets) != 2:
         return ""
