@@ -14,6 +14,7 @@ from rulecheck.values import BOUNDS
 STEPS = ("circuit", "parts", "stage", "capability", "demand", "facts")
 SCHEMAS = ("sheet", "parts", "rules", "project")
 LEVELS = ("error", "warning", "note")
+SHELLS = ("bash", "zsh", "fish")
 
 
 class _Format(argparse.Action):
@@ -80,14 +81,15 @@ def command_parser() -> Parser:
         prog="rulecheck",
         description="Checks the netlist of a power stage: what every switch position must block\n"
         "and carry, and whether the drawn devices can.",
-        epilog="First run:  rulecheck demo hut && cd hut && rulecheck lint\n\n"
+        epilog="First run:  rulecheck demo hut && cd hut && rulecheck lint\n"
+        "Then:       rulecheck help WORD  for a rule, a fact or a key of a file\n\n"
         "Exit status: 0 nothing broken, 1 something broken, 2 the input could not be used.",
     )
     parser.add_argument("--version", action="version", version=f"rulecheck {__version__}")
     commands = parser.add_subparsers(
         dest="command", required=True, metavar="COMMAND", parser_class=Parser
     )
-    for add in (_lint, _quadrants, _explain, _report, _rules, _schema, _demo):
+    for add in (_lint, _quadrants, _explain, _report, _rules, _help, _schema, _demo, _completion):
         add(commands)
     return parser
 
@@ -177,6 +179,19 @@ def _rules(commands: Any) -> None:
     _add_outputs(command, ())
 
 
+def _help(commands: Any) -> None:
+    command = _command(
+        commands,
+        "help",
+        "print the page on a command, a rule, a fact, a parameter or a key of a YAML file",
+        "help dead-time",
+    )
+    command.add_argument("names", nargs="*", metavar="WORD", help="default: list all words")
+    _add_project(command)
+    _add_packs(command)
+    _add_outputs(command, ())
+
+
 def _schema(commands: Any) -> None:
     command = _command(
         commands,
@@ -194,6 +209,20 @@ def _demo(commands: Any) -> None:
     )
     command.add_argument("names", nargs=1, metavar="DIR", help="a new or empty folder")
     command.add_argument("--quiet", action="store_true", help="print nothing")
+
+
+def _completion(commands: Any) -> None:
+    command = _command(
+        commands,
+        "completion",
+        "print the script that lets a shell complete this command, or install it",
+        "completion fish --install",
+    )
+    command.add_argument("names", nargs=1, choices=SHELLS, metavar="|".join(SHELLS))
+    command.add_argument(
+        "--install", action="store_true", help="write it where the shell looks for it"
+    )
+    _add_file(command, "write it there")
 
 
 def _add_inputs(command: Parser) -> None:

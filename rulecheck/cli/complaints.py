@@ -27,6 +27,12 @@ def complain(problems: Iterable[Problem], limits: Limits = USUAL) -> int:
     return UNUSABLE
 
 
+def refuse(what: str, remedy: str) -> int:
+    """Print an error that stands in no file; return the exit status for it."""
+    print(printable(f"rulecheck: error: {what}; {remedy}"), file=sys.stderr)
+    return UNUSABLE
+
+
 def printable(line: str) -> str:
     """One line without control signs, in what standard error can write."""
     clean = "".join(

@@ -21,8 +21,10 @@ COMMANDS = {
     "explain": "rulecheck.cli.explain_command",
     "report": "rulecheck.cli.report_command",
     "rules": "rulecheck.cli.rules_command",
+    "help": "rulecheck.cli.help_command",
     "schema": "rulecheck.cli.schema_command",
     "demo": "rulecheck.cli.demo_command",
+    "completion": "rulecheck.cli.completion_command",
 }
 _WATCHING = "rulecheck.cli.watching"
 

@@ -37,6 +37,7 @@ class Request:
     try_packs: bool = False
     facts: bool = False
     watch: bool = False
+    install: bool = False
 
     @property
     def limits(self) -> Limits:

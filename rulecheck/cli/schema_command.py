@@ -3,24 +3,17 @@
 import json
 
 from rulecheck.cli.complaints import complain
+from rulecheck.cli.file_shapes import FILE_SHAPES
 from rulecheck.cli.output import Document, write_documents
-from rulecheck.cli.project import ProjectFile
 from rulecheck.cli.request import Request
-from rulecheck.parts import PartDataFile
 from rulecheck.reading import json_schema
-from rulecheck.rulebook import PackFile
-from rulecheck.stage import SheetFile
-
-SHAPES = {
-    "sheet": SheetFile,
-    "parts": PartDataFile,
-    "rules": PackFile,
-    "project": ProjectFile,
-}
+from rulecheck.reading.keys import put_words
 
 
 def run(request: Request) -> int:
     """Print the schema, or write it to each file named by `-o`."""
-    text = json.dumps(json_schema(SHAPES[request.names[0]]), indent=1) + "\n"
+    file = FILE_SHAPES[request.names[0]]
+    schema = put_words(json_schema(file.shape), file.words)
+    text = json.dumps(schema, indent=1) + "\n"
     problems = write_documents(Document(text, output.file) for output in request.outputs)
     return complain(problems) if problems else 0

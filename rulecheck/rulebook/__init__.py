@@ -13,7 +13,7 @@ from rulecheck.rulebook.load import load_packs
 from rulecheck.rulebook.pack_file import PackFile
 from rulecheck.rulebook.record import new_since, read_record, record_text
 from rulecheck.rulebook.rulebook import PackInForce, Rule, Rulebook, SwitchedOff
-from rulecheck.rulebook.rules_text import rule_text, rules_text
+from rulecheck.rulebook.rules_text import rules_text
 from rulecheck.rulebook.shipped import (
     IN_FORCE,
     PROFILES,
@@ -48,7 +48,6 @@ __all__ = [
     "read_deviations",
     "read_record",
     "record_text",
-    "rule_text",
     "rules_text",
     "shipped_pack",
     "try_examples",

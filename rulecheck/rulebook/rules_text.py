@@ -1,8 +1,6 @@
-"""The rules in force as text: one line each, or one rule as its own manual page."""
+"""The rules in force as text: one line each, then what packs changed and set."""
 
-from collections.abc import Iterator, Mapping
-
-from rulecheck.rulebook.rulebook import Rule, Rulebook
+from rulecheck.rulebook.rulebook import Rulebook
 from rulecheck.rulebook.scope import Parameter
 from rulecheck.values import write_quantity
 
@@ -20,36 +18,14 @@ def rules_text(rulebook: Rulebook) -> str:
     return "\n".join(lines) + "\n"
 
 
-def rule_text(rule: Rule, rulebook: Rulebook) -> str:
-    """One rule: what it asks, why, what to do, its source, its parameters and examples."""
-    return "\n".join(_page(rule, rulebook.parameters)) + "\n"
-
-
-def _page(rule: Rule, parameters: Mapping[str, Parameter]) -> Iterator[str]:
-    yield f"{rule.id}  ({rule.level}, on every {rule.subject}, pack {rule.pack})"
-    for key in ("applies", "requires"):
-        if key in rule.texts:
-            yield f"  {key}: {_one_line(rule.texts[key])}"
-    if "graver" in rule.texts:
-        yield f"  {rule.graver_level} where: {_one_line(rule.texts['graver'])}"
-    yield f"  why: {_one_line(rule.why)}"
-    yield f"  remedy: {_one_line(rule.remedy)}"
-    yield f"  source: {_one_line(rule.source)}"
-    for parameter in (*rule.parameters.values(), *_used(rule, parameters)):
-        yield f"  {parameter_line(parameter)}"
-    for example in rule.examples:
-        subject = f" of {example.of}" if example.of else ""
-        yield f"  example{subject}, {example.expect}: {_one_line(example.shows)}"
-        yield from (f"    {line}" for line in example.netlist.rstrip().splitlines())
-
-
-def _used(rule: Rule, parameters: Mapping[str, Parameter]) -> tuple[Parameter, ...]:
-    written = " ".join(rule.texts.values())
-    return tuple(p for name, p in parameters.items() if name in written)
-
-
 def parameter_line(parameter: Parameter) -> str:
-    """`parameter derate.blocking = 0.8: share of the rating that may be used (source)`."""
+    """`parameter derate.blocking, share of the rating that may be used: 0.8 (source)`."""
+    between = ", " if parameter.meaning else ": "
+    return f"parameter {parameter.name}{between}{parameter_text(parameter)}"
+
+
+def parameter_text(parameter: Parameter) -> str:
+    """`share of the rating that may be used: 0.8 (source)`."""
     unit = parameter.dimension.value
     by_source: dict[str, list[str]] = {}
     for word, row in parameter.rows.items():
@@ -57,8 +33,7 @@ def parameter_line(parameter: Parameter) -> str:
         shown = figure if parameter.plain else f"{word} {figure}"
         by_source.setdefault(row.source, []).append(shown)
     values = "; ".join(f"{', '.join(v)} ({_one_line(s)})" for s, v in by_source.items())
-    meaning = f", {parameter.meaning}" if parameter.meaning else ""
-    return f"parameter {parameter.name}{meaning}: {values}"
+    return f"{parameter.meaning}: {values}" if parameter.meaning else values
 
 
 def _one_line(text: str) -> str:

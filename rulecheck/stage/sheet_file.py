@@ -5,9 +5,10 @@ switching: {frequency: 20 kHz, dead-time: 400 ns}
 set: {L1: {current: [-90 A, 90 A]}}
 """
 
-from typing import Literal
+from typing import Annotated, Literal
 
 import msgspec
+from msgspec import Meta
 
 from rulecheck.reading.quantities import (
     Frequency,
@@ -22,7 +23,10 @@ from rulecheck.reading.quantities import (
 
 AlternatingText = str | int | float
 """A quantity, with `peak` or `rms` behind it where it is AC."""
-AlternatingRange = AlternatingText | list[AlternatingText]
+AlternatingRange = Annotated[
+    AlternatingText | list[AlternatingText],
+    Meta(description="a quantity, such as 58 V or 230 V rms, or a list of two: [LOW, HIGH]"),
+]
 NetName = str | int
 """A net may be called 0 or 12."""
 

@@ -15,7 +15,7 @@ def test_the_list_names_level_subject_and_pack_and_what_the_project_changes(hut)
 
 def test_a_rule_is_its_own_manual_page(tmp_path):
     page = run("rules", "reverse-current-path", folder=tmp_path).stdout
-    for words in ("why: ", "remedy: ", "source: ", "example"):
+    for words in ("  why ", "  remedy ", "  source ", "  example"):
         assert words in page
 
 

@@ -3,7 +3,7 @@
 import pytest
 
 from rulecheck.reading import SourceText
-from rulecheck.rulebook import load_packs, rule_text, rules_text
+from rulecheck.rulebook import load_packs, rules_text
 from rulecheck.rulebook.scope import Row
 from tests.rulebook.making import pack
 
@@ -187,7 +187,7 @@ def test_a_parameter_keeps_its_unit():
     assert found[0].startswith("p2.rules.yaml:3:3: error: 'share' is in plain numbers")
 
 
-def test_the_rules_print_as_a_list_and_as_pages():
+def test_the_rules_print_as_a_list():
     off = "pack: team\nchange:\n  - {rule: second, off: true, reason: not our boards}\n"
     book = load(BASE + rule("second"), off)
     assert rules_text(book) == (
@@ -195,7 +195,3 @@ def test_the_rules_print_as_a_list_and_as_pages():
         "off: second, by team: not our boards\n"
         "parameter share: 0.8 (common practice)\n"
     )
-    page = rule_text(book.rules[0], book)
-    for word in ("requires: gated", "why: because", "remedy: mend it", "source: common practice"):
-        assert word in page
-    assert page.count("example, ") == 2
