@@ -62,6 +62,10 @@ def _fault(request: Request) -> str | None:
         return "two formats for standard output; give each but one a file with -o FILE"
     if request.command == "lint" and request.stage and len(request.names) != 1:
         return "--stage is the sheet of one netlist; name that netlist alone"
+    if request.command == "lint" and request.against and len(request.names) != 1:
+        return "--against compares one netlist with an earlier one; name the new one alone"
+    if request.against and any(output.format == "junit" for output in request.outputs):
+        return "JUnit has no place for changes; leave --against or --format junit out"
     if request.command == "explain" and request.step and len(request.names) != 1:
         return "--step explains a whole netlist; leave the name out"
     if request.command == "explain" and not request.step and len(request.names) != 2:
@@ -121,7 +125,12 @@ def _lint(commands: Any) -> None:
     command.add_argument("--jobs", type=_jobs, metavar="N", help="netlists at once; 0: all cores")
     command.add_argument("--record", metavar="FILE", help="write today's broken findings there")
     command.add_argument("--since", metavar="FILE", help="fail only on what this record lacks")
+    _add_against(command)
     _add_watch(command)
+
+
+def _add_against(command: argparse.ArgumentParser) -> None:
+    command.add_argument("--against", metavar="OLD", help="an earlier netlist: show what changed")
 
 
 def _quadrants(commands: Any) -> None:
@@ -161,6 +170,7 @@ def _report(commands: Any) -> None:
     _add_inputs(command)
     _add_packs(command)
     _add_outputs(command, ())
+    _add_against(command)
 
 
 def _rules(commands: Any) -> None:

@@ -6,12 +6,16 @@ import os
 import signal
 from collections.abc import Sequence
 from concurrent.futures.process import BrokenProcessPool
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 
+from rulecheck.cli.analysing import sources_for
 from rulecheck.cli.packs import load_rulebook
 from rulecheck.cli.progress import Progress
-from rulecheck.pipeline import Sources, Unusable, analyse
+from rulecheck.cli.project import Project
+from rulecheck.cli.request import Request
+from rulecheck.pipeline import Analysis, Sources, Unusable, analyse
+from rulecheck.report.changes import Changes, Version, find_changes
 from rulecheck.report.lint_result import OpenPoints, open_points
 from rulecheck.rulebook import Rulebook, Verdicts, judge
 from rulecheck.values import Limits, Problem, Span, error
@@ -21,6 +25,8 @@ from rulecheck.values import Limits, Problem, Span, error
 class Task:
     netlist: Path
     sources: Sources
+    against: "Task | None" = None
+    """An earlier netlist, where the changes since are asked for."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -31,6 +37,15 @@ class Checked:
     points: OpenPoints | None
     problems: tuple[Problem, ...]
     inputs: tuple[str, ...] = ()
+    changes: Changes | None = None
+
+
+def earlier_task(request: Request, project: Project) -> Task | None:
+    """The netlist of `--against`; `--stage` is the sheet of the new one alone."""
+    if request.against is None:
+        return None
+    old = Path(request.against)
+    return Task(old, sources_for(old, replace(request, stage=None), project))
 
 
 def check_all(
@@ -57,12 +72,39 @@ def check_one(task: Task, rulebook: Rulebook, progress: Progress) -> Checked:
     if isinstance(analysis, Unusable):
         return Checked(None, None, analysis.problems)
     progress.step("rules")
+    verdicts = judge(rulebook, analysis.facts)
+    past = compared(task.against, rulebook, version_of(analysis, verdicts))
     return Checked(
-        judge(rulebook, analysis.facts),
+        verdicts,
         open_points(analysis.stage, analysis.demands, analysis.problems),
-        analysis.problems,
-        analysis.inputs,
+        (*analysis.problems, *past.problems),
+        (*analysis.inputs, *past.inputs),
+        past.changes,
     )
+
+
+@dataclass(frozen=True, slots=True)
+class Past:
+    """The changes since an earlier netlist; none where none is asked for or it is unusable."""
+
+    changes: Changes | None = None
+    problems: tuple[Problem, ...] = ()
+    inputs: tuple[str, ...] = ()
+
+
+def compared(against: Task | None, rulebook: Rulebook, new: Version) -> Past:
+    """Analyse and judge the earlier netlist by the same rules, and compare."""
+    if against is None:
+        return Past()
+    old = analyse(against.netlist, against.sources)
+    if isinstance(old, Unusable):
+        return Past(problems=old.problems)
+    changes = find_changes(version_of(old, judge(rulebook, old.facts)), new)
+    return Past(changes, old.problems, old.inputs)
+
+
+def version_of(analysis: Analysis, verdicts: Verdicts) -> Version:
+    return Version(analysis.stage, analysis.capabilities, analysis.demands, verdicts)
 
 
 def _check_apart(

@@ -7,7 +7,7 @@ from dataclasses import dataclass, replace
 from pathlib import Path
 
 from rulecheck.cli.analysing import Answer, finish, sources_for
-from rulecheck.cli.checking import Checked, Task, check_all
+from rulecheck.cli.checking import Checked, Task, check_all, earlier_task
 from rulecheck.cli.complaints import complain
 from rulecheck.cli.formats import LINT
 from rulecheck.cli.output import Document
@@ -96,7 +96,8 @@ def _prepare(request: Request) -> _Basis | tuple[Problem, ...]:
         problems = (*problems, _NO_NETLIST)
     if problems or isinstance(known, Problem):
         return problems
-    tasks = tuple(Task(path, sources_for(path, request, project)) for path in netlists)
+    earlier = earlier_task(request, project)
+    tasks = tuple(Task(path, sources_for(path, request, project), earlier) for path in netlists)
     return _Basis(project, packs, rulebook, reading.deviations, known, tasks)
 
 
@@ -117,7 +118,10 @@ def _lint_run(
     request: Request, basis: _Basis, answers: Sequence[Checked], today: datetime.date
 ) -> LintRun:
     reports = tuple(
-        lint_report(answer.verdicts, answer.points, _recorded(answer.verdicts, basis.known))
+        replace(
+            lint_report(answer.verdicts, answer.points, _recorded(answer.verdicts, basis.known)),
+            changes=answer.changes,
+        )
         for answer in answers
         if answer.verdicts is not None and answer.points is not None
     )

@@ -1,11 +1,12 @@
 """`rulecheck report NETLIST -o FILE`: the review document, one self-contained HTML file."""
 
 import datetime
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 
 from rulecheck import __version__
 from rulecheck.cli.analysing import finish, sources_for
+from rulecheck.cli.checking import Past, Task, compared, earlier_task, version_of
 from rulecheck.cli.complaints import complain
 from rulecheck.cli.inputs_read import inputs_read
 from rulecheck.cli.moment import Moment, asked_moment, moment_of
@@ -41,13 +42,13 @@ def run(request: Request) -> int:
     analysis = analyse(netlist, sources_for(netlist, request, basis.project))
     if isinstance(analysis, Unusable):
         return complain(analysis.problems, request.limits)
-    review = _review(analysis, basis)
+    review, past = _review(analysis, basis, earlier_task(request, basis.project))
     documents = [
         Document(rendered(review, render, look_at(request, output.file)), output.file)
         for output in request.outputs
     ]
-    inputs = (*analysis.inputs, basis.project.file)
-    return finish(documents, inputs, analysis.problems, limits=request.limits)
+    inputs = (*analysis.inputs, *past.inputs, basis.project.file)
+    return finish(documents, inputs, (*analysis.problems, *past.problems), limits=request.limits)
 
 
 def _prepare(request: Request) -> _Basis | tuple[Problem, ...]:
@@ -64,15 +65,18 @@ def _prepare(request: Request) -> _Basis | tuple[Problem, ...]:
     return _Basis(project, rulebook, reading.deviations, asked)
 
 
-def _review(analysis: Analysis, basis: _Basis) -> Review:
+def _review(analysis: Analysis, basis: _Basis, earlier: Task | None) -> tuple[Review, Past]:
     moment = basis.asked or moment_of(Path(analysis.netlist))
     # a deviation ends on its day, whatever the date of the netlist's file
     today = basis.asked.day if basis.asked else datetime.date.today()
-    verdicts = apply_deviations(judge(basis.rulebook, analysis.facts), basis.deviations, today)
+    judged = judge(basis.rulebook, analysis.facts)
+    past = compared(earlier, basis.rulebook, version_of(analysis, judged))
+    verdicts = apply_deviations(judged, basis.deviations, today)
     points = open_points(analysis.stage, analysis.demands, analysis.problems)
-    return make_review(
+    review = make_review(
         Studied(analysis.stage, analysis.capabilities, analysis.demands, analysis.problems),
         Findings(lint_report(verdicts, points), basis.rulebook, basis.deviations),
         inputs_read(analysis, basis.project.file),
         Occasion(moment.day.isoformat(), moment.whose, __version__),
     )
+    return replace(review, changes=past.changes), past

@@ -34,6 +34,7 @@ class Request:
     step: str | None = None
     record: str | None = None
     since: str | None = None
+    against: str | None = None
     try_packs: bool = False
     facts: bool = False
     watch: bool = False

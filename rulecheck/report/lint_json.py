@@ -4,6 +4,7 @@ import json
 from typing import TextIO
 
 from rulecheck import __version__
+from rulecheck.report.changes import ABSENT, Changes
 from rulecheck.report.figures import json_number
 from rulecheck.report.lint_result import LintReport, LintRun
 from rulecheck.report.look import PLAIN, Look
@@ -19,7 +20,7 @@ def render(run: LintRun, stream: TextIO, look: Look = PLAIN) -> None:
 
 
 def _document(report: LintReport) -> dict[str, object]:
-    return {
+    document: dict[str, object] = {
         "rulecheck": __version__,
         "netlist": report.netlist,
         "findings": [_finding(finding) for finding in report.findings],
@@ -30,6 +31,29 @@ def _document(report: LintReport) -> dict[str, object]:
             "excused": report.tally.excused,
         },
     }
+    if report.changes is not None:
+        document["changes"] = _changes(report.changes)
+    return document
+
+
+def _changes(changes: Changes) -> dict[str, object]:
+    groups = (
+        ("findings", changes.findings),
+        ("positions", changes.positions),
+        ("parts", changes.parts),
+        ("ports", changes.ports),
+    )
+    return {"against": changes.old} | {
+        name: [
+            {"subject": c.subject, "what": c.what, "old": _there(c.old), "new": _there(c.new)}
+            for c in group
+        ]
+        for name, group in groups
+    }
+
+
+def _there(text: str) -> str | None:
+    return None if text == ABSENT else text
 
 
 def _finding(finding: Verdict) -> dict[str, object]:

@@ -8,6 +8,7 @@ from collections.abc import Iterator
 from typing import TextIO
 
 from rulecheck.report.cautions import CAUTIONS
+from rulecheck.report.changes import change_line
 from rulecheck.report.lint_result import (
     LintReport,
     LintRun,
@@ -51,6 +52,15 @@ def finding_line(finding: Verdict, recorded: bool = False) -> str:
     return f"{finding.span}: {finding.level}: {text}"
 
 
+def _change_lines(report: LintReport) -> Iterator[str]:
+    if report.changes is None:
+        return
+    for _, group in report.changes.groups:
+        yield from (f"{change.span}: note: changed: {change_line(change)}" for change in group)
+    if not report.changes.groups:
+        yield f"{report.netlist}: note: nothing changed since {report.changes.old}"
+
+
 def _lines(report: LintReport, look: Look) -> Iterator[str]:
     name = report.netlist
     if not look.quiet:
@@ -63,4 +73,5 @@ def _lines(report: LintReport, look: Look) -> Iterator[str]:
     yield from (f"{name}: note: not covered: {line}" for line in report.not_covered)
     if not look.quiet:
         yield from (f"{name}: note: assumed: {line}" for line in merged(report.assumed))
+    yield from _change_lines(report)
     yield f"{name}: note: {tally_line(report.tally)}"

@@ -6,6 +6,7 @@ from rulecheck.report.cautions import CAUTIONS
 from rulecheck.report.lint_result import (
     LintReport,
     LintRun,
+    changed_sections,
     excuse_text,
     off_line,
     tally_line,
@@ -61,6 +62,7 @@ def _cells(run: LintRun, report: LintReport, finding: Verdict) -> tuple[str, ...
 def _write_open_points(report: LintReport, stream: TextIO, look: Look) -> None:
     assumed = () if look.quiet else report.assumed
     sections = (
+        *changed_sections(report),
         ("Undecided, and what would decide it", undecided_lines(report)),
         *open_sections(report.undetermined, assumed, report.not_covered),
     )

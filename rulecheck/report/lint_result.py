@@ -5,6 +5,7 @@ from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field
 
 from rulecheck.demand import Demands, Undetermined
+from rulecheck.report.changes import Changes, change_lines
 from rulecheck.report.quadrant_result import assumptions, open_questions, what_is_not_covered
 from rulecheck.rulebook import Rule, SwitchedOff, Tally, Verdict, Verdicts, Waiting
 from rulecheck.stage import Stage
@@ -31,6 +32,8 @@ class LintReport:
     """How doubtful cards were read."""
     recorded: frozenset[str] | None = None
     """With a record at hand: the fingerprints of findings that it has, which fail no run."""
+    changes: Changes | None = None
+    """With an earlier netlist at hand: what changed since."""
 
     @property
     def broken(self) -> tuple[Verdict, ...]:
@@ -154,6 +157,19 @@ def waiting_lines(waiting: Iterable[Waiting]) -> tuple[str, ...]:
 def _waiting_line(checks: int, datum: str, cards: list[str]) -> str:
     lead = "1 check waits for" if checks == 1 else f"{checks} checks wait for"
     return f"{lead} {datum}{', '.join(cards)}"
+
+
+def changed_sections(report: LintReport) -> tuple[tuple[str, tuple[str, ...]], ...]:
+    """Headings with lines of what changed; nothing where nothing was compared."""
+    changes = report.changes
+    if changes is None:
+        return ()
+    if not changes.groups:
+        return ((f"Changed since {changes.old}", ("nothing",)),)
+    return tuple(
+        (f"Changed since {changes.old}: {heading[0].lower()}{heading[1:]}", lines)
+        for heading, lines in change_lines(changes)
+    )
 
 
 def unusable_line(netlist: str) -> str:

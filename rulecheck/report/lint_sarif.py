@@ -10,6 +10,7 @@ from urllib.parse import quote
 
 from rulecheck import __version__
 from rulecheck.report.cautions import CAUTIONS
+from rulecheck.report.changes import ABSENT, Changes
 from rulecheck.report.lint_json import json_value
 from rulecheck.report.lint_result import (
     LintReport,
@@ -91,6 +92,8 @@ def _result(report: LintReport, finding: Verdict, places: dict[str, int]) -> dic
         result["partialFingerprints"] = {"rulecheck/v1": finding.fingerprint}
     if report.recorded is not None:
         result["baselineState"] = "unchanged" if report.is_recorded(finding) else "new"
+    elif report.changes is not None:
+        result["baselineState"] = _since(report.changes, finding)
     if finding.related:
         result["relatedLocations"] = [
             {"id": number, "physicalLocation": _place(span)}
@@ -101,6 +104,12 @@ def _result(report: LintReport, finding: Verdict, places: dict[str, int]) -> dic
             {"kind": "external", "status": "accepted", "justification": excuse_text(finding)}
         ]
     return result
+
+
+def _since(changes: Changes, finding: Verdict) -> str:
+    """Against an earlier netlist: `new`, `updated` where it says otherwise, or `unchanged`."""
+    of_it = (c for c in changes.findings if (c.what, c.subject) == (finding.rule, finding.subject))
+    return next(("new" if c.old == ABSENT else "updated" for c in of_it), "unchanged")
 
 
 def _location(finding: Verdict) -> dict[str, object]:

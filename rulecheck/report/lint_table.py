@@ -8,6 +8,7 @@ from rich.text import Text
 from rulecheck.report.lint_result import (
     LintReport,
     LintRun,
+    changed_sections,
     excuse_text,
     off_line,
     tally_line,
@@ -71,6 +72,7 @@ def _sections(report: LintReport, look: Look) -> tuple[tuple[str, tuple[str, ...
     assumed = () if look.quiet else report.assumed
     remarks = () if look.quiet else tuple(problem.line() for problem in report.remarks)
     return (
+        *changed_sections(report),
         ("Undecided, and what would decide it", undecided_lines(report)),
         *open_sections(report.undetermined, assumed, report.not_covered),
         ("Remarks on the reading", remarks),

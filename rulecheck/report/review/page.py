@@ -11,6 +11,7 @@ from rulecheck.report.review.review import Review
 
 CONTENTS = (
     ("summary", "Summary"),
+    ("changes", "Changes"),
     ("stage", "Stage"),
     ("wall", "V-I planes"),
     ("findings", "Findings"),

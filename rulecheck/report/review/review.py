@@ -1,7 +1,8 @@
 """The review document as data: what a template shows, already in words and figures."""
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 
+from rulecheck.report.changes import Changes
 from rulecheck.report.explanation import Entry
 from rulecheck.report.review.derating import Factor
 from rulecheck.report.review.drawing import Mark, Schematics
@@ -143,4 +144,6 @@ class Review:
     ports: tuple[Row, ...]
     quantities: tuple[Row, ...]
     cautions: tuple[str, ...]
-    deviations: tuple[Row, ...] = field(default=())
+    deviations: tuple[Row, ...] = ()
+    changes: Changes | None = None
+    """Since an earlier netlist, where one was named."""
