@@ -5,7 +5,6 @@ from collections.abc import Iterable
 from rulecheck.demand import Bridge, Leg
 from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.feeding import Wires, find_wires
-from rulecheck.facts.gate_source import find_gate_source
 from rulecheck.facts.inputs import Inputs
 from rulecheck.facts.short_path import is_short_sensed
 from rulecheck.facts.terms import SubjectTerm, count, link, number, text, texts, yes_no
@@ -115,7 +114,8 @@ def _gates(inputs: Inputs, positions: Iterable[str]) -> set[str]:
         for pin in device.pins
         if pin.role in ("gate", "base")
     }
-    return gates | ({find_gate_source(inputs, gate).net for gate in gates} - {""})
+    drives = inputs.stage.gate_drives
+    return gates | ({drives[gate].output.net for gate in gates if gate in drives} - {""})
 
 
 def _turned(inputs: Inputs, names: Iterable[str], starts_at: set[str], ends_at: set[str]) -> bool:

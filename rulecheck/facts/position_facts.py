@@ -8,6 +8,7 @@ from rulecheck.demand.evaluate import SMALL, SMALL_VOLTAGE
 from rulecheck.facts.asked import Asked, largest, whole
 from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.free_path_facts import names_by_position
+from rulecheck.facts.gate_pair import command_count, takes_turns
 from rulecheck.facts.inputs import Inputs, at_least, group_name
 from rulecheck.facts.position_build import (
     free_path_doubled,
@@ -58,6 +59,8 @@ def _subject(
             "turned": _turned(demand.quadrants, capability.quadrants),
             **position_values(inputs, position.name),
             "tied": position.name not in inputs.group_of_position,
+            "commands": command_count(inputs, position),
+            "takes-turns": takes_turns(inputs, position),
         },
         _links(inputs, position, devices, free_paths),
         position.parts,

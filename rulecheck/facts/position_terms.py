@@ -60,6 +60,8 @@ POSITION = SubjectTerm(
         yes_no("turned", "As drawn it does not fit its demand; drawn the other way up it would."),
         yes_no("all-turned", "So it is with every such position of the stage, of two or more."),
         *POSITION_TERMS,
+        count("commands", "How many separate outputs command its gates."),
+        yes_no("takes-turns", "A four-quadrant switch beside it is on only while it is off."),
         yes_no("tied", "It joins two independent voltages and is on only where they are equal."),
     ),
     (

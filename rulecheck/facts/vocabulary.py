@@ -4,7 +4,8 @@ from collections.abc import Mapping
 
 from rulecheck.facts.clamp_facts import CLAMP
 from rulecheck.facts.free_path_facts import FREE_PATH
-from rulecheck.facts.gate_drive_facts import GATE_DRIVE
+from rulecheck.facts.gate_drive_terms import GATE_DRIVE
+from rulecheck.facts.gate_supply_facts import GATE_SUPPLY
 from rulecheck.facts.isolation_facts import CROSSING, GROUND_PAIR
 from rulecheck.facts.leg_facts import BRIDGE, LEG
 from rulecheck.facts.line_facts import LINE_ELEMENT
@@ -31,6 +32,7 @@ VOCABULARY: Mapping[str, SubjectTerm] = {
         GROUP,
         SWITCH_STATE,
         GATE_DRIVE,
+        GATE_SUPPLY,
         INDUCTOR,
         CAPACITOR,
         RESISTOR,

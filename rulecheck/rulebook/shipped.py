@@ -3,7 +3,10 @@
 from rulecheck.reading import SourceText, packaged
 
 SUFFIX = ".rules.yaml"
-IN_FORCE = ("netlist", "position", "leg", "rating", "free-path", "protection", "isolation")
+IN_FORCE = (
+    *("netlist", "position", "leg", "rating", "free-path", "gate-drive"),
+    *("protection", "isolation"),
+)
 """Packs in force where a project names none, in order."""
 PROFILES = (
     "derating/ecss-q-st-30-11c",

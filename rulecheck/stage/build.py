@@ -93,6 +93,7 @@ def read_stage(parts: PartList, sheet: Sheet) -> StageReading:
         ),
         _not_covered(known, grouping),
         drives,
+        _gate_supplies(layout, sheet),
     )
     return StageReading(stage, (*ports.problems, *_unknown_names(parts, layout, sheet)))
 
@@ -235,6 +236,15 @@ def _leg_switching(layout: Layout, sheet: Sheet) -> dict[str, Switching]:
         by_lower[leg.midpoint.lower()]: leg.switching
         for leg in sheet.legs
         if leg.midpoint.lower() in by_lower
+    }
+
+
+def _gate_supplies(layout: Layout, sheet: Sheet) -> dict[str, Interval]:
+    by_lower = {net.lower(): merged for net, merged in layout.merged.items()}
+    return {
+        by_lower[supply.net.lower()]: supply.voltage
+        for supply in sheet.gate_supplies
+        if supply.net.lower() in by_lower
     }
 
 

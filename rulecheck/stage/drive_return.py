@@ -10,7 +10,7 @@ from dataclasses import replace
 
 from rulecheck.parts import Kind, Part
 from rulecheck.stage.gate_drive import DrivenBy, GateDrive
-from rulecheck.stage.layout import Layout, main_nets
+from rulecheck.stage.layout import Layout, Touch, main_nets
 from rulecheck.values import Unknown
 
 _SENSE = 1.0
@@ -43,6 +43,9 @@ def judge_return(layout: Layout, drive: GateDrive) -> GateDrive:
     if output.return_net in joined:
         unknown = Unknown(f"negative bias of gate {drive.gate}", "a zener or source that sets it")
         return replace(drive, return_right=True, bias=unknown)
+    if any(_hidden(layout, rail, joined) for rail in rails):
+        unknown = _unknown_return(drive)
+        return replace(drive, return_right=unknown, bias=unknown)
     return replace(drive, return_right=False, bias=0.0)
 
 
@@ -88,17 +91,35 @@ def _joined(layout: Layout, nets: Iterable[str]) -> frozenset[str]:
     return nets | near
 
 
+_BIASING = (Kind.ZENER, Kind.VOLTAGE_SOURCE, Kind.OTHER, Kind.CAPACITOR)
+"""Kinds that can hold a rail below the source, the most telling first."""
+
+
 def _between(layout: Layout, rail: str, returns: frozenset[str]) -> tuple[Part, ...]:
-    """Zeners, sources, supplies and capacitors from the rail to the returns."""
-    kinds = (Kind.ZENER, Kind.VOLTAGE_SOURCE, Kind.OTHER, Kind.UNKNOWN, Kind.CAPACITOR)
+    """Zeners, sources, outputs of one supply, and capacitors beside them, from rail to returns."""
     found = [
         touch.part
         for touch in layout.touches.get(rail, ())
-        if touch.part.kind in kinds and set(layout.others(touch.part, rail)) & returns
+        if touch.part.kind in _BIASING and _joins(layout, touch, returns)
     ]
-    found.sort(key=lambda part: kinds.index(part.kind))
+    found.sort(key=lambda part: _BIASING.index(part.kind))
     # a capacitor alone holds no voltage
     return tuple(found) if found and found[0].kind is not Kind.CAPACITOR else ()
+
+
+def _joins(layout: Layout, touch: Touch, returns: frozenset[str]) -> bool:
+    far = [pin for pin in touch.part.pins if layout.net(pin.net) in returns]
+    if touch.part.kind is not Kind.OTHER:
+        return bool(far)
+    return touch.role.startswith("out") and any(pin.role.startswith("out") for pin in far)
+
+
+def _hidden(layout: Layout, rail: str, returns: frozenset[str]) -> bool:
+    """A part whose inside nobody describes touches both: it may hold any voltage."""
+    return any(
+        touch.part.kind is Kind.UNKNOWN and set(layout.others(touch.part, rail)) & returns
+        for touch in layout.touches.get(rail, ())
+    )
 
 
 def _bias(drive: GateDrive, parts: tuple[Part, ...]) -> float | Unknown:

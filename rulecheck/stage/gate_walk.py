@@ -15,6 +15,7 @@ from rulecheck.stage.gate_network import Network, OneWay, Resistive
 from rulecheck.stage.gate_region import GateRegion, is_bead
 from rulecheck.stage.layout import (
     CIRCUITS,
+    SOURCES,
     Layout,
     Touch,
     is_semiconductor,
@@ -95,7 +96,7 @@ class Walk:
             if gives_out(part, touch.role):
                 self.outputs.append(drive_output(self.layout, part, touch.role, net))
             return []
-        if part.kind is Kind.VOLTAGE_SOURCE:
+        if part.kind in SOURCES:
             self.outputs.append(_source_output(self.layout, part, net))
             return []
         if part.name in self.core_of:
@@ -158,7 +159,7 @@ class Walk:
 
 def _source_output(layout: Layout, part: Part, net: str) -> DriveOutput:
     by = DrivenBy.SOURCE if part.waveform is not None else DrivenBy.CONSTANT
-    if isinstance(part.value, Unknown):
+    if isinstance(part.value, Unknown) or part.kind is Kind.CURRENT_SOURCE:
         by = DrivenBy.SOURCE
     other = next(iter(layout.others(part, net)), net)
     return DriveOutput(by, part.name, "", net, other, other, input_nets=(net,), own_return=True)

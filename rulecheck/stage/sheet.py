@@ -5,7 +5,7 @@
 """
 
 import math
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, field
 from itertools import combinations
 
@@ -77,6 +77,15 @@ class Domain:
 
 
 @dataclass(frozen=True, slots=True)
+class SupplySheet:
+    """What the sheet states of a gate supply: its voltage over the return that goes with it."""
+
+    net: str
+    voltage: Interval
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
 class Sheet:
     file: str = ""
     ports: tuple[SheetPort, ...] = ()
@@ -89,6 +98,7 @@ class Sheet:
     domains: Mapping[str, Domain] = field(default_factory=dict)
     barriers: tuple[Barrier, ...] = ()
     """One for each two domains."""
+    gate_supplies: tuple[SupplySheet, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)
@@ -133,6 +143,7 @@ def _sheet(file: str, entries: SheetFile, reader: Reader) -> Sheet:
             for name, nets in entries.domains.items()
         },
         _barriers(entries, reader),
+        tuple(_gate_supplies(entries, reader)),
     )
 
 
@@ -157,6 +168,14 @@ def _barriers(entries: SheetFile, reader: Reader) -> tuple[Barrier, ...]:
         stated.get(frozenset(pair), Barrier(pair, None, None, whole))
         for pair in combinations(names, 2)
     )
+
+
+def _gate_supplies(entries: SheetFile, reader: Reader) -> Iterator[SupplySheet]:
+    for net, written in entries.gate_supplies.items():
+        path: Path = ("gate-supplies", net)
+        voltage = reader.interval(written, Dimension.VOLTAGE, path)
+        if voltage is not None:
+            yield SupplySheet(net, voltage, reader.marks.span(path))
 
 
 def _leg(net: str, entry: LegSwitchingEntry, entries: SheetFile, reader: Reader) -> LegSheet:

@@ -19,6 +19,7 @@ from rulecheck.reading.quantities import (
     PowerRange,
     Time,
     Voltage,
+    VoltageRange,
 )
 
 AlternatingText = str | int | float
@@ -111,5 +112,6 @@ class SheetFile(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename=
     efficiency: Plain = 1.0
     parts: list[str] = []
     set: dict[str, OverrideEntry] = {}
+    gate_supplies: dict[str, VoltageRange] = {}
     domains: dict[str, list[NetName]] = {}
     barriers: list[BarrierEntry] = []

@@ -202,3 +202,5 @@ class Stage:
     not_covered: tuple[str, ...] = ()
     gate_drives: Mapping[str, GateDrive] = field(default_factory=dict)
     """By merged gate net: what drives the devices with their gate there."""
+    gate_supplies: Mapping[str, Interval] = field(default_factory=dict)
+    """By merged net: volts over the return that goes with it, where the sheet states them."""

@@ -1,0 +1,72 @@
+"""What a rule may ask of a gate net and its drive."""
+
+from rulecheck.facts.terms import SubjectTerm, count, link, number, text, texts, yes_no
+from rulecheck.values import Dimension
+
+V, OHM, W = Dimension.VOLTAGE, Dimension.RESISTANCE, Dimension.POWER
+
+GATE_DRIVE = SubjectTerm(
+    "gate-drive",
+    "A net with the gate or base of a device on it, and what drives it; named after the net.",
+    (
+        count("gates", "How many devices have their gate on it."),
+        count("positions-driven", "How many positions those devices are in."),
+        texts("kinds", "Kinds of the devices with their gate on it."),
+        yes_no("insulated", "They are all insulated gates, which take no steady current."),
+        yes_no("driven", "Something leads to it from elsewhere than its devices' own terminals."),
+        text(
+            "driven-by",
+            "`driver`, `source`, `transformer`, `controller`, `isolator`, `module`,"
+            " `circuit`, `transistor`, `connector`, `constant`; empty where nothing is found.",
+        ),
+        text("driver", "The name of what drives it."),
+        texts("buffered-by", "The drive transistors between that and the gate."),
+        text("transformer", "The gate transformer in between; empty where there is none."),
+        yes_no("isolated", "The drive's input side has its own ground."),
+        yes_no("own-return", "The output has a return pin of its own, apart from the ground."),
+        text("return", "The net that the output is measured against."),
+        texts("returns", "The source, emitter and Kelvin nets of the devices."),
+        yes_no("return-right", "The two are one net, or a bias stands between them."),
+        yes_no("upside", "They are p-channel devices: driven below the rail of their source."),
+        number("drive-voltage", V, "The largest voltage that it puts on the gate."),
+        number("unclamped-voltage", V, "The largest voltage that it would put there unclamped."),
+        number("least-drive-voltage", V, "The smallest voltage that it puts on the gate when on."),
+        number("off-voltage", V, "The gate's voltage while it is held off: 0, or below."),
+        number("swing", V, "Gate voltage between off and on."),
+        number("turn-on-resistance", OHM, "External resistance from the output to the gate."),
+        number("turn-off-resistance", OHM, "External resistance from the gate to the output."),
+        number("holding-resistance", OHM, "Turn-off resistance, device and driver included."),
+        yes_no("on-own-return", "A device's gate is on that device's own source or emitter."),
+        yes_no("series-resistor", "Turning on, some resistance is in series with the gate."),
+        yes_no("held", "A resistor, or a winding, ties the gate to its return while undriven."),
+        number("hold-resistor", OHM, "The smallest such resistor; of none, unknown."),
+        yes_no("clamped", "A zener limits the gate's voltage."),
+        number("clamp-high", V, "The lowest voltage at which a clamp limits the gate upwards."),
+        number("clamp-low", V, "The highest voltage at which a clamp limits it downwards."),
+        count("side-by-side", "The most devices of one position that share this gate net."),
+        number("charge", Dimension.CHARGE, "Gate charge of all its devices."),
+        number("frequency", Dimension.FREQUENCY, "How often a second it is switched."),
+        number("power", W, "Power that its gates take from the drive."),
+        number("resistor-power", W, "The largest part of it that heats one resistor."),
+        number("resistor-rating", W, "The rated power of that resistor."),
+        text("hottest-resistor", "The name of that resistor."),
+        number("peak-current", Dimension.CURRENT, "Peak gate current, limited by resistors alone."),
+        number("output-peak-current", Dimension.CURRENT, "The same of all gates of one output."),
+        number("output-current", Dimension.CURRENT, "Peak current that the driver can give."),
+        number("edge-voltage", V, "The height of the edge that the other switch puts on it."),
+        number("induced-voltage", V, "Gate voltage that this edge pushes a gate held off to."),
+        number("threshold", V, "The least gate voltage at which one of its devices turns on."),
+        number("full-on", V, "The largest threshold among its devices."),
+        number("return-potential", V, "Largest voltage of the return over the driver's ground."),
+        number("insulation", V, "Insulation voltage that the driver states."),
+        number("offset-rating", V, "Largest voltage of the floating output that it states."),
+        yes_no("commanded", "Something leads to the input that belongs to the output."),
+    ),
+    (
+        link("devices", "part", "The devices with their gate on it."),
+        link("positions", "position", "The positions of those devices."),
+        link("legs", "leg", "The legs of those positions."),
+        link("supply", "gate-supply", "The supply of its output."),
+        link("gate-resistors", "part", "The resistors in series with the gate, either way."),
+    ),
+)
