@@ -67,8 +67,9 @@ def _subject(
         "threshold": _lowest_threshold(parts),
         "full-on": _highest_threshold(parts),
         **(_undriven(gate) if drive is None else _drive_values(inputs, drive, positions, steps)),
-        **(_not_drawn(drive) if not drawn else {}),
     }
+    if drive is not None and not drawn:
+        values |= _not_drawn(values)
     links = {
         "devices": devices,
         "positions": positions,
@@ -89,14 +90,11 @@ def _undriven(gate: str) -> dict[str, Value]:
     return empty | {"driven-by": "", "driver": "", "transformer": "", "return": ""}
 
 
-def _not_drawn(drive: GateDrive | None) -> dict[str, Value]:
-    """Of a stage in which no drive is drawn: whether a gate is held or limited is open too."""
-    if drive is None:
-        return {}
-    found: dict[str, Value] = {"driven-by": _NOT_DRAWN, "series-resistor": _NOT_DRAWN}
-    if not drive.hold_resistors:
-        found["held"] = _NOT_DRAWN
-    return found
+def _not_drawn(values: Mapping[str, Value]) -> dict[str, Value]:
+    """Of a stage in which no drive is drawn: what rests on the drive is open for that reason."""
+    unknown = {n: _NOT_DRAWN for n, v in values.items() if isinstance(v, Unknown) and n not in _OWN}
+    found: dict[str, Value] = {**unknown, "driven-by": _NOT_DRAWN, "series-resistor": _NOT_DRAWN}
+    return found | ({} if values["held"] is True else {"held": _NOT_DRAWN})
 
 
 _OWN = frozenset(

@@ -89,11 +89,35 @@ def _source_between(inputs: Inputs, net: str, returned: str) -> Interval | None:
 
 
 def supply_of(inputs: Inputs, drive: GateDrive) -> Interval | Unknown:
-    """Volts of the drive's own supply over its return."""
+    """Volts of the drive's own supply over its return; behind drive transistors, of their rail."""
     output = drive.output
+    if drive.buffers and not drive.transformer:
+        return _rail_of_buffers(inputs, drive)
     if output.by in _WITH_SUPPLY and output.supply_net:
         return supply_range(inputs, output.supply_net, output.return_net)
     return Unknown(f"supply voltage of gate {drive.gate}", f"the supply of {drive.gate}'s driver")
+
+
+def _rail_of_buffers(inputs: Inputs, drive: GateDrive) -> Interval | Unknown:
+    """Of the first rail of the drive transistors, other than the return, that is known."""
+    rails = [
+        net
+        for name in drive.buffers
+        for net in (inputs.merged(pin.net) for pin in inputs.part_by_name[name].pins)
+        if net not in drive.returns and not _within(inputs, drive, net)
+    ]
+    found = [supply_range(inputs, net, "") for net in dict.fromkeys(rails)]
+    known = next((volts for volts in found if isinstance(volts, Interval)), None)
+    unknown = Unknown(f"supply of the buffer at gate {drive.gate}", "gate-supplies: {RAIL: ...}")
+    return known or next(iter(found), unknown)
+
+
+def _within(inputs: Inputs, drive: GateDrive, net: str) -> bool:
+    """Nets between the drive transistors: another one's base or gate, or one's way to the gate."""
+    parts = (inputs.part_by_name[name] for name in drive.buffers)
+    roles = [pin.role for part in parts for pin in part.pins if inputs.merged(pin.net) == net]
+    shared = len(inputs.parts_at_net.get(net, ())) > 1 and len(roles) > 1
+    return net == drive.gate or shared or any(role in ("base", "gate") for role in roles)
 
 
 def on_level(inputs: Inputs, drive: GateDrive) -> Value:
@@ -141,7 +165,7 @@ def _level(inputs: Inputs, drive: GateDrive, upper: bool) -> Value:
 def _by_permitted_supply(inputs: Inputs, drive: GateDrive, unknown: Unknown) -> Value:
     """Within what the driver's maker permits as its supply."""
     part = inputs.part_by_name.get(drive.output.part)
-    if part is None or drive.output.by not in _WITH_SUPPLY:
+    if part is None or drive.buffers or drive.output.by not in _WITH_SUPPLY:
         return unknown
     datum = part.datum("driver.supply")
     if not isinstance(datum, Datum):

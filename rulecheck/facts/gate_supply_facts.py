@@ -9,7 +9,7 @@ from rulecheck.facts.inputs import Inputs, stated_number, stated_range
 from rulecheck.facts.potential import Steps, known_steps, largest_difference
 from rulecheck.facts.terms import SubjectTerm, count, link, number, span_of, text, texts, yes_no
 from rulecheck.parts import Kind, Part
-from rulecheck.stage import GateDrive
+from rulecheck.stage import GateCommand, GateDrive
 from rulecheck.values import Dimension, Interval, Unknown, natural_key
 
 V, S = Dimension.VOLTAGE, Dimension.TIME
@@ -176,17 +176,29 @@ def _highest(values: Sequence[Value]) -> Value:
 def _longest_on_time(
     inputs: Inputs, drives: Sequence[GateDrive], positions: Sequence[str]
 ) -> Value:
-    """From the gates' own pulses, else a whole period."""
-    pulses = [
-        inputs.stage.gate_pulses[name]
-        for drive in drives
-        for name in drive.devices
-        if name in inputs.stage.gate_pulses
-    ]
-    if pulses:
-        return max(pulse.width for pulse in pulses)
+    """From the gates' own commands, else a whole period."""
+    commands = _commands(inputs, drives)
+    if commands and not any(command.steady for command in commands):
+        return max(_longest_of(command) for command in commands)
     frequency = frequency_of(inputs, positions)
     return 1.0 / frequency if isinstance(frequency, float) else frequency
+
+
+def _commands(inputs: Inputs, drives: Sequence[GateDrive]) -> list[GateCommand]:
+    known = inputs.stage.gate_commands
+    return [known[name] for drive in drives for name in drive.devices if name in known]
+
+
+def _longest_of(command: GateCommand) -> float:
+    """The longest on-time, one that runs past the end of the period in one piece."""
+    times = [span.high - span.low for span in command.on]
+    if len(times) > 1 and command.repeats and _wraps(command):
+        times.append(times[0] + times[-1])
+    return max(times, default=0.0)
+
+
+def _wraps(command: GateCommand) -> bool:
+    return command.on[0].low <= 0.0 and command.on[-1].high >= command.period
 
 
 def _bootstrap_values(
@@ -265,5 +277,5 @@ def _joined(pairs: Sequence[tuple[str, str]], start: str, end: str) -> bool:
 def _held_on(inputs: Inputs, drives: Sequence[GateDrive]) -> bool:
     """A switch between two independent voltages is on for as long as they are joined."""
     tied = any(p not in inputs.group_of_position for p in _positions(inputs, drives))
-    pulses = [inputs.stage.gate_pulses.get(n) for drive in drives for n in drive.devices]
-    return tied or any(pulse is not None and pulse.width >= pulse.period for pulse in pulses)
+    commands = _commands(inputs, drives)
+    return tied or any(c.on and _longest_of(c) >= c.period for c in commands)
