@@ -8,7 +8,6 @@ from collections.abc import Iterator
 
 from rulecheck.demand import Leg
 from rulecheck.facts.feeding import Wires
-from rulecheck.facts.gate_source import find_gate_source
 from rulecheck.facts.inputs import Inputs
 from rulecheck.facts.shunt_facts import is_shunt
 from rulecheck.parts import Kind, Part, through_nets
@@ -74,5 +73,11 @@ def _driver_watches(inputs: Inputs, device: Part) -> bool:
     gate = next((pin.net for pin in device.pins if pin.role in ("gate", "base")), None)
     if gate is None:
         return False
-    driver = inputs.part_by_name.get(find_gate_source(inputs, inputs.merged(gate)).part)
+    driver = inputs.part_by_name.get(_driver_name(inputs, gate))
     return driver is not None and any(pin.role.startswith(_SENSING_PINS) for pin in driver.pins)
+
+
+def _driver_name(inputs: Inputs, gate: str) -> str:
+    """What drives the gate; empty where nothing is found."""
+    drive = inputs.stage.gate_drives.get(inputs.merged(gate))
+    return drive.output.part if drive is not None else ""
