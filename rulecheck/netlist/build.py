@@ -33,7 +33,7 @@ def read_circuit_text(source: SourceText, access: Access = ORDINARY) -> Circuit:
     if foreign is not None:
         return _nothing(source.file, foreign)
     deck = read_deck(source, access)
-    flat = flatten(deck)
+    flat = flatten(deck, access.limits)
     problems = [*deck.problems, *flat.problems]
     if not errors_of(tuple(problems)) and all(one.letter == UNTOLD for one in flat.elements):
         problems.append(_no_element(deck, bool(flat.elements)))

@@ -33,7 +33,7 @@ def read_deck(source: SourceText, access: Access = ORDINARY) -> Deck:
     top = Definition("", (), Span(source.file, 1))
     netlist = Path(source.file)
     sorter = Sorter(top, [top], access, access.folders_for(netlist))
-    lines = split_lines(source, top=True)
+    lines = split_lines(source, top=True, limits=access.limits)
     sorter.title = lines.title
     sorter.problems.extend(source.notes)
     sorter.characters = len(source.text)
@@ -171,7 +171,7 @@ def _read_included(path: Path, section: str, line: LogicalLine, sorter: Sorter) 
     sorter.characters += len(source.text)
     sorter.problems.extend(source.notes)
     sorter.open_files.append(mark)
-    _sort(source.file, split_lines(source, top=False), sorter, section)
+    _sort(source.file, split_lines(source, top=False, limits=sorter.access.limits), sorter, section)
     sorter.open_files.pop()
 
 

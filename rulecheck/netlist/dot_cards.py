@@ -7,6 +7,7 @@ from rulecheck.netlist.definition import Definition
 from rulecheck.netlist.lines import LogicalLine
 from rulecheck.netlist.sorter import Sorter
 from rulecheck.netlist.syntax import GROUP, MARK, PAIR, WORD, Item
+from rulecheck.values import raise_limit
 
 _OPTIONAL = "optional:"
 
@@ -21,6 +22,11 @@ def _open_subcircuit(line: LogicalLine, keyword: str, sorter: Sorter) -> None:
         sorter.stack.append(Definition("", (), line.span()))
         return
     name = words[0].text
+    deepest = sorter.access.limits["subcircuit-depth"]
+    if len(sorter.stack) > deepest:
+        what = f"subcircuit '{name}' is defined within {deepest} others, and is not read"
+        sorter.fail(line.span(), what, raise_limit("subcircuit-depth"))
+        return
     ports, optional, pairs = _ports(words[1:])
     definition = Definition(name, tuple(ports), line.span(), optional)
     definition.parameters.update(read_pair_assignments(line, pairs))

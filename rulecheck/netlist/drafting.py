@@ -1,15 +1,19 @@
 """Read the cards of one definition, once, however many instances it has."""
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Iterator
 from dataclasses import dataclass
 
 from rulecheck.netlist.draft import Draft, Reading
 from rulecheck.netlist.elements import read_element
 from rulecheck.netlist.lines import LogicalLine
 from rulecheck.netlist.models import model_is_known
+from rulecheck.netlist.numbers import beyond_numbers
 from rulecheck.netlist.scope import Scope, has_parameter
 from rulecheck.netlist.syntax import WORD, Card, read_card
 from rulecheck.values import Problem, Span, error
+
+_VALUED = "RCLKVIEFGH"
+"""Letters of elements whose text, where it is no number, is not the name of a model."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -41,8 +45,21 @@ def read_drafts(scope: Scope) -> Drafts:
             problems.append(error(outcome.span, what, remedy))
             unread.append(outcome.name)
             continue
+        problems.extend(_beyond_numbers(outcome, line))
         drafts.append(outcome)
     return Drafts(tuple(drafts), tuple(unread), tuple(problems))
+
+
+def _beyond_numbers(draft: Draft, line: LogicalLine) -> Iterator[Problem]:
+    """Values and parameters of which no finite number has the value that is written."""
+    valued = draft.value is None and draft.letter in _VALUED
+    written = draft.text.split() if valued else []
+    written += [value for _, value in draft.parameters if isinstance(value, str)]
+    for text in written:
+        if beyond_numbers(text):
+            span = line.span(max(line.text.rfind(text), 0))
+            what = f"'{text}' is beyond what a number can hold"
+            yield error(span, what, "write the number that is meant")
 
 
 def _certain_nets(cards: Iterable[LogicalLine]) -> frozenset[str]:

@@ -81,19 +81,34 @@ def net_words(reading: Reading, items: Sequence[Item]) -> list[Item]:
 
 def mend_blanks(reading: Reading, words: list[Item]) -> list[Item]:
     """`/Main Supply/BUS`: a hierarchical net name of which the sheet's name holds a blank."""
-    for start, word in enumerate(words):
-        if not word.text.startswith("/") or "/" in word.text[1:]:
+    mended: list[Item] = []
+    position = 0
+    while position < len(words):
+        end = _name_end(reading, words, position)
+        if end is None:
+            mended.append(words[position])
+            position += 1
             continue
-        for end in range(start + 1, min(start + _LONGEST_SHEET_NAME, len(words))):
-            if words[end].text.startswith("/") or reading.is_model(words[end].text):
-                break
-            if "/" in words[end].text and not _is_amount(words[end]):
-                whole = reading.text[word.start : words[end].end]
-                remark = f"'{whole}' is taken as one net, of which the sheet's name holds a blank"
-                reading.remark(word, remark, "rename the sheet without a blank")
-                joined = Item(WORD, word.start, words[end].end, whole)
-                return [*words[:start], joined, *mend_blanks(reading, words[end + 1 :])]
-    return words
+        word = words[position]
+        whole = reading.text[word.start : words[end].end]
+        remark = f"'{whole}' is taken as one net, of which the sheet's name holds a blank"
+        reading.remark(word, remark, "rename the sheet without a blank")
+        mended.append(Item(WORD, word.start, words[end].end, whole))
+        position = end + 1
+    return mended
+
+
+def _name_end(reading: Reading, words: list[Item], start: int) -> int | None:
+    """Where a name that begins here and holds blanks ends; None where none begins."""
+    word = words[start]
+    if not word.text.startswith("/") or "/" in word.text[1:]:
+        return None
+    for end in range(start + 1, min(start + _LONGEST_SHEET_NAME, len(words))):
+        if words[end].text.startswith("/") or reading.is_model(words[end].text):
+            return None
+        if "/" in words[end].text and not _is_amount(words[end]):
+            return end
+    return None
 
 
 def _is_amount(item: Item) -> bool:
@@ -119,37 +134,42 @@ def written(text: str, items: Sequence[Item]) -> str:
 
 def take_amount(reading: Reading, items: Sequence[Item]) -> tuple[Amount, list[Item]]:
     """The number or expression at the head of the items, and the rest; None takes nothing."""
-    if not items:
-        return None, []
-    end = 1
+    amount, end = amount_at(reading, items, 0)
+    return amount, list(items[end:])
+
+
+def amount_at(reading: Reading, items: Sequence[Item], start: int) -> tuple[Amount, int]:
+    """The number or expression that begins at that item, and where the rest begins."""
+    if start >= len(items):
+        return None, start
+    end = start + 1
     while end < len(items) and items[end].kind != MARK and items[end].start == items[end - 1].end:
         end += 1
-    run, rest = items[:end], list(items[end:])
+    run = items[start:end]
     whole = reading.text[run[0].start : run[-1].end] if len(run) > 1 else _own_text(reading, run[0])
     if any(item.kind == BRACED for item in run) or run[0].kind == GROUP:
-        return formula_at(reading.card.line, run[0].start, run[-1].end), rest
+        return formula_at(reading.card.line, run[0].start, run[-1].end), end
     if run[0].kind == QUOTED:
         if whole.startswith('"'):
-            return None, list(items)
-        return formula_at(reading.card.line, run[0].start, run[-1].end), rest
-    return _word_amount(reading, run[0], whole, rest, items)
+            return None, start
+        return formula_at(reading.card.line, run[0].start, run[-1].end), end
+    amount = _word_amount(reading, run[0], whole)
+    return amount, start if amount is None else end
 
 
 def _own_text(reading: Reading, item: Item) -> str:
     return item.text if item.kind == WORD else reading.text[item.start : item.end]
 
 
-def _word_amount(
-    reading: Reading, item: Item, whole: str, rest: list[Item], items: Sequence[Item]
-) -> tuple[Amount, list[Item]]:
+def _word_amount(reading: Reading, item: Item, whole: str) -> Amount:
     number = read_number(whole)
     if number is not None:
         remark_number(reading, item, number)
-        return number.value, rest
+        return number.value
     if reading.is_parameter(whole) and not reading.is_model(whole):
         reading.remark(item, f"'{whole}' is taken as the parameter of that name", "write {...}")
-        return formula_at(reading.card.line, item.start, item.start + len(whole)), rest
-    return None, list(items)
+        return formula_at(reading.card.line, item.start, item.start + len(whole))
+    return None
 
 
 def remark_number(reading: Reading, item: Item, number: Number) -> None:

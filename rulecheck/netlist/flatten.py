@@ -10,10 +10,7 @@ from rulecheck.netlist.drafting import Drafts, read_drafts
 from rulecheck.netlist.formula import Formula
 from rulecheck.netlist.models import find_model
 from rulecheck.netlist.scope import Fault, Scope, compute
-from rulecheck.values import Problem, Span, Unknown, error
-
-_DEEPEST = 50
-_MOST_ELEMENTS = 1_000_000
+from rulecheck.values import USUAL, Limits, Problem, Span, Unknown, error, raise_limit
 
 
 @dataclass(slots=True)
@@ -41,6 +38,8 @@ class Flattening:
     """What is collected while a deck is expanded."""
 
     deck: Deck
+    limits: Limits
+    most_elements: int
     elements: list[Element] = field(default_factory=list)
     unread: list[str] = field(default_factory=list)
     problems: list[Problem] = field(default_factory=list)
@@ -49,11 +48,18 @@ class Flattening:
     globals: dict[str, str] = field(default_factory=dict)
 
 
-def flatten(deck: Deck) -> Flattening:
-    """The flat list of elements of a deck, instances kept before their contents."""
-    result = Flattening(deck)
+def flatten(deck: Deck, limits: Limits = USUAL) -> Flattening:
+    """The flat list of elements of a deck, instances kept before their contents.
+
+    Beyond the limit of elements there are none at all: a part of a circuit is another circuit.
+    """
+    result = Flattening(deck, limits, limits["elements"])
     place = _Place(Scope(deck.top), "", {GROUND: GROUND}, (), (deck.top,))
     _expand(place, result)
+    if len(result.elements) > result.most_elements:
+        what = f"the netlist has more than {result.most_elements} elements"
+        result.problems.append(error(Span(deck.file, 1), what, raise_limit("elements")))
+        result.elements.clear()
     return result
 
 
@@ -62,6 +68,8 @@ def _expand(place: _Place, result: Flattening) -> None:
     result.unread.extend(place.full(name) for name in drafts.unread)
     place.names = {draft.name.lower(): draft.name for draft in drafts.drafts}
     for draft in drafts.drafts:
+        if len(result.elements) > result.most_elements:
+            return
         if draft.subcircuit:
             _instance(draft, place, result)
         else:
@@ -234,14 +242,15 @@ def _port_nets(
 def _too_much(
     draft: Draft, definition: Definition, place: _Place, result: Flattening
 ) -> Problem | None:
-    """A subcircuit that contains itself, or an expansion without sensible end."""
+    """A subcircuit that contains itself, or instances within each other without sensible end."""
     if definition in place.within[1:]:
         start = place.within.index(definition)
         names = [inner.name for inner in place.within[start:]]
         path = " -> ".join([*names, definition.name])
         what = f"subcircuit '{definition.name}' contains itself ({path})"
         return error(draft.span, what, "take the instance out of its own definition")
-    if len(place.within) > _DEEPEST or len(result.elements) > _MOST_ELEMENTS:
-        what = "the instances expand to more than can be analysed"
-        return error(draft.span, what, f"keep to {_MOST_ELEMENTS} elements, {_DEEPEST} levels deep")
+    deepest = result.limits["subcircuit-depth"]
+    if len(place.within) > deepest:
+        what = f"'{draft.name}' stands within {deepest} instances, and is not expanded"
+        return error(draft.span, what, raise_limit("subcircuit-depth"))
     return None

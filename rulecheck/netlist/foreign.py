@@ -7,7 +7,7 @@ from rulecheck.reading import SourceText
 from rulecheck.values import Problem, Span, error
 
 _HEAD = 20_000
-_WEB = re.compile(r"^\s*<(?:!doctype\s+html|html)\b", re.IGNORECASE | re.MULTILINE)
+_WEB = re.compile(r"^[ \t]*<(?:!doctype\s+html|html)\b", re.IGNORECASE | re.MULTILINE)
 _XML = re.compile(r"\s*<\?xml\b", re.IGNORECASE)
 _TAG = re.compile(r"\s*</?[a-z!][\w:-]*[\s/>]", re.IGNORECASE)
 _LIST = re.compile(r"\s*(?:\(\s*[A-Za-z_]|\))")

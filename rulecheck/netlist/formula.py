@@ -10,8 +10,10 @@ from lark import Lark, Token, Transformer, UnexpectedInput
 from rulecheck.netlist.grammars import compile_grammar
 from rulecheck.netlist.lines import LogicalLine
 from rulecheck.netlist.numbers import read_number
+from rulecheck.netlist.syntax import DEEPEST, too_deep
 from rulecheck.values import Span
 
+LONGEST = 20_000
 NUMBER, NAME, CALL, OPERATOR, CHOOSE = "number", "name", "call", "operator", "choose"
 _CIRCUIT_QUANTITY = re.compile(r"\b[vi]\s*\(", re.IGNORECASE)
 
@@ -106,6 +108,10 @@ def _parser() -> Lark:
 @cache
 def compile_formula(text: str) -> Program | NoFormula:
     """The program of an expression, in braces or bare."""
+    if len(text) > LONGEST:
+        return NoFormula(f"an expression of more than {LONGEST} characters", 0)
+    if too_deep(text):
+        return NoFormula(f"an expression nested more than {DEEPEST} deep", 0)
     plain = _BRACES.sub(r"\1", text)
     number = read_number(plain)
     if number is not None and not number.remark:

@@ -5,8 +5,10 @@ from bisect import bisect_right
 from dataclasses import dataclass, field
 
 from rulecheck.reading import SourceText
-from rulecheck.values import Problem, Span, error, note
+from rulecheck.values import USUAL, Limits, Problem, Span, error, note, raise_limit
 
+_BEGINNING = 200
+"""Characters of a line that tell what kind of line it is."""
 _COMMENT_SIGNS = "*;#$%"
 _CONTROL = re.compile(r"[\x00-\x08\x0b\x0c\x0e-\x1f\x7f]")
 _DOLLAR = re.compile(r"(?<=\s)\$(?=\s|\Z)")
@@ -27,6 +29,8 @@ class LogicalLine:
     file: str
     marks: tuple[tuple[int, int, int], ...]
     """(offset in the text, line, column) of each physical line, in order."""
+    flaw: Problem | None = None
+    """Why it is not to be read; the text is then its beginning alone."""
 
     def span(self, offset: int = 0) -> Span:
         mark = self.marks[bisect_right(self.marks, (offset, 1 << 60, 0)) - 1]
@@ -76,6 +80,9 @@ class _Joiner:
     file: str
     cards: list[LogicalLine] = field(default_factory=list)
     problems: list[Problem] = field(default_factory=list)
+    longest: int = USUAL["card-characters"]
+    unclosed: set[int] = field(default_factory=set)
+    """Of which block, by its place in the table, no end follows any more."""
     pieces: list[str] = field(default_factory=list)
     marks: list[tuple[int, int, int]] = field(default_factory=list)
     length: int = 0
@@ -93,21 +100,27 @@ class _Joiner:
 
     def flush(self) -> None:
         if self.pieces:
-            line = LogicalLine(" ".join(self.pieces), self.file, tuple(self.marks))
-            self.cards.append(line)
+            text, marks = " ".join(self.pieces), tuple(self.marks)
+            flaw = None
+            if len(text) > self.longest:
+                span = Span(self.file, marks[0][1], marks[0][2])
+                what = f"a card of more than {self.longest} characters is not read"
+                flaw = error(span, what, raise_limit("card-characters"))
+                text = text[:_BEGINNING]
+            self.cards.append(LogicalLine(text, self.file, marks, flaw))
         self.pieces = []
 
 
-def split_lines(source: SourceText, top: bool) -> Lines:
+def split_lines(source: SourceText, top: bool, limits: Limits = USUAL) -> Lines:
     """Logical lines of a file; in a top-level deck the first physical line is the title."""
     rows = _CONTROL.sub(" ", source.text).split("\n")
-    joiner = _Joiner(source.file)
+    joiner = _Joiner(source.file, longest=limits["card-characters"])
     title, number = "", 0
     if top and rows and not _STRUCTURAL.match(rows[0]):
         title, number = _title(rows[0], joiner), 1
     while number < len(rows):
         stripped = rows[number].strip()
-        block = _block_at(stripped)
+        block = _block_at(stripped, joiner)
         if block is not None:
             number = _skip_block(block, rows, number, joiner)
         elif _END.match(stripped):
@@ -161,21 +174,26 @@ def without_comment(text: str) -> str:
     return text[: dollar.start() if dollar else len(masked)].rstrip()
 
 
-def _block_at(stripped: str) -> _Block | None:
+def _block_at(stripped: str, joiner: _Joiner) -> _Block | None:
     if not stripped or stripped[0] not in ".$*#":
         return None
-    return next((block for block in _BLOCKS if block.start.match(stripped)), None)
+    head = stripped[:_BEGINNING]  # the patterns' time grows with the square of the length
+    for place, block in enumerate(_BLOCKS):
+        if place not in joiner.unclosed and block.start.match(head):
+            return block
+    return None
 
 
 def _skip_block(block: _Block, rows: list[str], number: int, joiner: _Joiner) -> int:
     """The number of the block's last row; the rest of the file where it is never closed."""
     span = Span(joiner.file, number + 1)
     for last in range(number + 1, len(rows)):
-        if block.end.match(rows[last].strip()):
+        if block.end.match(rows[last].strip()[:_BEGINNING]):
             what = f"{block.what} of {last - number - 1} lines skipped"
             joiner.problems.append(note(span, what))
             return last
     if not block.must_close:
+        joiner.unclosed.add(_BLOCKS.index(block))
         return number
     what = f"this {block.what} is never closed, so that the rest of the file is not read"
     joiner.problems.append(error(span, what, "add its end card"))

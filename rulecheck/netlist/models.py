@@ -1,6 +1,6 @@
 """Model cards, parsed when an element asks for them."""
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 
 from rulecheck.netlist.assignments import formula_at
@@ -8,13 +8,17 @@ from rulecheck.netlist.circuit import Model
 from rulecheck.netlist.draft import Amount
 from rulecheck.netlist.formula import Formula
 from rulecheck.netlist.lines import LogicalLine
-from rulecheck.netlist.numbers import read_number
+from rulecheck.netlist.numbers import beyond_numbers, read_number
 from rulecheck.netlist.scope import Fault, Scope, compute, has_parameter
 from rulecheck.netlist.syntax import BRACED, GROUP, MARK, PAIR, QUOTED, WORD, Card, Item, read_card
 from rulecheck.values import Problem, error, note
 
 _TOLERANCES = ("lot", "dev")
 _INHERITS = "ako:"
+
+
+_MOST_HEIRS = 40
+"""Models that inherit from each other in a row."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -48,7 +52,7 @@ def _find(
     lower = name.lower()
     while scope is not None:
         line = scope.definition.models.get(lower)
-        if line is not None and line not in heirs:
+        if line is not None and line not in heirs and len(heirs) < _MOST_HEIRS:
             if lower not in scope.models:
                 scope.models[lower] = _build(line, scope, problems, heirs)
             return scope.models[lower]
@@ -74,7 +78,15 @@ def _build(
             type_name = type_name or parent.type
     for name, amount in raw.parameters:
         parameters[name] = _settled(amount, scope, problems)
+    problems.extend(_beyond(raw))
     return Model(raw.name, type_name, parameters, line.span())
+
+
+def _beyond(raw: RawModel) -> Iterator[Problem]:
+    for name, amount in raw.parameters:
+        if isinstance(amount, str) and beyond_numbers(amount):
+            what = f"'{name}={amount}' is beyond what a number can hold"
+            yield error(raw.line.span(), what, "write the number that is meant")
 
 
 def _settled(amount: Amount | str, scope: Scope, problems: list[Problem]) -> float | str:

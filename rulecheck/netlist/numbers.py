@@ -37,6 +37,8 @@ def read_number(text: str) -> Number | None:
     >>> read_number("100NF").value
     1e-07
     """
+    if len(text) > _LONGEST:
+        return None
     comma = _COMMA.match(text)
     if comma:
         return _with_comma(text, f"{comma[1]}.{comma[2]}")
@@ -52,12 +54,28 @@ def read_number(text: str) -> Number | None:
     return _plain(match, letters)
 
 
+_LONGEST = 400
+"""Characters: the time to read digits grows with the square of their number."""
+_FAR = re.compile(
+    r"[+-]?(?:(?:[0-9]+(?:\.[0-9]*)?|\.[0-9]+)[eE][+-]?[0-9]{3,}|[0-9]{300,}(?:\.[0-9]*)?)"
+    r"[A-Za-zµμΩΩ]*\Z"
+)
+_ENDLESS = frozenset({"nan", "inf", "infinity"})
+
+
+def beyond_numbers(text: str) -> bool:
+    """Whether a text is written as a number and no finite one has that value: `1e999`, `-inf`."""
+    if text.lower().lstrip("+-") in _ENDLESS:
+        return True
+    return _FAR.match(text) is not None and read_number(text) is None
+
+
 def _plain(match: re.Match[str], letters: str) -> Number | None:
     scale, power = _scale(letters)
     value = float(f"{match[1]}e{int(match[2] or 0) + power}")
     if scale == "mil":
         value *= _MICROMETRES_OF_A_MIL
-    if not math.isfinite(value):
+    if not math.isfinite(value) or (value == 0.0 and any(sign in "123456789" for sign in match[1])):
         return None
     rest = match[3][len(letters) :]
     return Number(value, letters[: len(scale)], f"'{rest}' is ignored" if rest else "")

@@ -1,6 +1,7 @@
 """Values of parameters in their scope: computed when asked for, cycles found, faults as values."""
 
 import difflib
+import itertools
 import math
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field
@@ -14,13 +15,19 @@ from rulecheck.netlist.formula import (
     NUMBER,
     Formula,
     NoFormula,
+    Program,
     Step,
     compile_formula,
 )
 from rulecheck.netlist.functions import CHOOSERS, CONSTANTS, FUNCTIONS, OPERATORS, RUNNING
+from rulecheck.netlist.numbers import beyond_numbers
 from rulecheck.values import Problem, Span, error, note
 
 _DEEPEST = 120
+_MOST_NAMES = 500
+"""Among which a misspelt one is looked for."""
+_MOST_STEPS = 100_000
+"""Of one expression, those of the parameters and functions that it asks for included."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -62,28 +69,55 @@ class Scope:
         return None
 
 
-def compute(formula: Formula, scope: Scope, depth: int = 0) -> Outcome:
+@dataclass(slots=True)
+class _Effort:
+    """What one expression has cost so far: functions that call each other can double it a step."""
+
+    depth: int = 0
+    steps: int = 0
+
+
+def compute(formula: Formula, scope: Scope) -> Outcome:
     """The value of an expression; a Fault where it has none."""
-    return _run(formula, scope, {}, depth)
+    return _run(formula, scope, {}, _Effort())
 
 
-def _run(formula: Formula, scope: Scope, arguments: Mapping[str, Outcome], depth: int) -> Outcome:
+def _run(
+    formula: Formula, scope: Scope, arguments: Mapping[str, Outcome], effort: _Effort
+) -> Outcome:
     program = compile_formula(formula.text)
     if isinstance(program, NoFormula):
         return _unreadable(formula, program)
-    if depth > _DEEPEST:
+    effort.steps += len(program)
+    if effort.depth > _DEEPEST:
         return _fault(formula.span(), "the expression refers to itself, or too deep", _UNRAVEL)
+    if effort.steps > _MOST_STEPS:
+        what = f"the expression takes more than {_MOST_STEPS} steps"
+        return _fault(formula.span(), what, "write its value as a number")
+    effort.depth += 1
+    outcome = _steps(program, formula, scope, arguments, effort)
+    effort.depth -= 1
+    return outcome
+
+
+def _steps(
+    program: Program,
+    formula: Formula,
+    scope: Scope,
+    arguments: Mapping[str, Outcome],
+    effort: _Effort,
+) -> Outcome:
     stack: list[Outcome] = []
     for step in program:
         if step.kind == NUMBER:
             stack.append(step.number)
             continue
         if step.kind == NAME:
-            stack.append(_name(step, formula, scope, arguments, depth))
+            stack.append(_name(step, formula, scope, arguments, effort))
             continue
         operands = stack[len(stack) - step.count :]
         del stack[len(stack) - step.count :]
-        stack.append(_apply(step, operands, formula, scope, depth))
+        stack.append(_apply(step, operands, formula, scope, effort))
     return stack[-1]
 
 
@@ -98,21 +132,35 @@ def _unreadable(formula: Formula, reason: NoFormula) -> Fault:
 
 
 def _name(
-    step: Step, formula: Formula, scope: Scope, arguments: Mapping[str, Outcome], depth: int
+    step: Step, formula: Formula, scope: Scope, arguments: Mapping[str, Outcome], effort: _Effort
 ) -> Outcome:
     name = step.word.lower()
     if name in arguments:
         return arguments[name]
-    found = _parameter(name, scope, depth)
+    found = _parameter(name, scope, effort)
     if found is not None:
         return found
     if name in CONSTANTS:
         return CONSTANTS[name]
     if name in RUNNING:
         return Fault(f"depends on {name}, which only a simulation knows")
-    close = difflib.get_close_matches(name, _names_in(scope), 1)
+    if beyond_numbers(step.word):
+        what = f"'{step.word}' is beyond what a number can hold"
+        return _fault(formula.span(step.position), what, "write the number that is meant")
+    close = difflib.get_close_matches(name, _alike(name, _names_in(scope)), 1)
     remedy = f"did you mean '{close[0]}'?" if close else f"define it: .param {step.word}=..."
     return _fault(formula.span(step.position), f"parameter '{step.word}' is not defined", remedy)
+
+
+def _alike(name: str, names: list[str]) -> list[str]:
+    """Few names that begin or end alike: a close look at all costs too much in a large file."""
+    near = (
+        known
+        for known in names[:_MOST_NAMES]
+        if abs(len(known) - len(name)) < 4
+        and (known[:2] == name[:2] or known[-2:] == name[-2:] or len(name) < 4)
+    )
+    return list(itertools.islice(near, 20))
 
 
 def _names_in(scope: Scope | None) -> list[str]:
@@ -133,23 +181,23 @@ def has_parameter(name: str, scope: Scope) -> bool:
     return False
 
 
-def _parameter(name: str, scope: Scope | None, depth: int) -> Outcome | None:
+def _parameter(name: str, scope: Scope | None, effort: _Effort) -> Outcome | None:
     while scope is not None:
         if name in scope.cache:
             return scope.cache[name]
         if name in scope.overrides or name in scope.definition.parameters:
-            return _evaluate_parameter(name, scope, depth)
+            return _evaluate_parameter(name, scope, effort)
         scope = scope.parent
     return None
 
 
-def _evaluate_parameter(name: str, scope: Scope, depth: int) -> Outcome:
+def _evaluate_parameter(name: str, scope: Scope, effort: _Effort) -> Outcome:
     override = scope.overrides.get(name)
     formula, home = override or (scope.definition.parameters[name], scope)
     if name in scope.busy:
         return _cycle(scope.busy[scope.busy.index(name) :], scope)
     scope.busy.append(name)
-    outcome = compute(formula, home, depth + 1)
+    outcome = _run(formula, home, {}, effort)
     scope.busy.pop()
     scope.cache[name] = outcome
     return outcome
@@ -167,7 +215,7 @@ def _cycle(ring: list[str], scope: Scope) -> Fault:
 
 
 def _apply(
-    step: Step, operands: list[Outcome], formula: Formula, scope: Scope, depth: int
+    step: Step, operands: list[Outcome], formula: Formula, scope: Scope, effort: _Effort
 ) -> Outcome:
     word = step.word.lower()
     faults = [operand for operand in operands if isinstance(operand, Fault)]
@@ -183,12 +231,12 @@ def _apply(
         return faults[0]
     numbers = [operand for operand in operands if isinstance(operand, float | int)]
     if step.kind == CALL:
-        return _call(step, word, numbers, formula, scope, depth)
+        return _call(step, word, numbers, formula, scope, effort)
     return _arithmetic(OPERATORS[step.word], numbers, step, formula)
 
 
 def _call(
-    step: Step, word: str, numbers: list[float], formula: Formula, scope: Scope, depth: int
+    step: Step, word: str, numbers: list[float], formula: Formula, scope: Scope, effort: _Effort
 ) -> Outcome:
     user = _user_function(word, scope)
     if user is not None:
@@ -196,7 +244,7 @@ def _call(
         if len(numbers) != len(function.arguments):
             return _wrong_count(step, formula, str(len(function.arguments)), len(numbers))
         arguments = dict(zip(function.arguments, numbers, strict=True))
-        return _run(function.body, home, arguments, depth + 1)
+        return _run(function.body, home, arguments, effort)
     known = FUNCTIONS.get(word)
     span = formula.span(step.position)
     if known is None:

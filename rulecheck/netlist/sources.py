@@ -6,6 +6,7 @@ from dataclasses import replace
 from rulecheck.netlist.assignments import key_name
 from rulecheck.netlist.draft import Amount, Draft, DraftWave, Outcome, Reading
 from rulecheck.netlist.fields import (
+    amount_at,
     behind,
     net_words,
     pair_amount,
@@ -37,6 +38,8 @@ _WAVEFORMS = {
 }
 _KEYWORDS = frozenset({"dc", "ac", "tran", "distof1", "distof2", *_WAVEFORMS})
 _EXPRESSIONS = frozenset({"r", "v", "i", "table", "tbl", "value"})
+_MOST_WORDS = 1000
+"""Keywords, values and waveforms of one source; a waveform counts as one, however long."""
 _LISTS_END = frozenset({"file", "endrepeat", "r", "td"})
 _REPEATED = frozenset({"repeat", "forever", "for"})
 """Words before a piecewise list that repeats; `for` takes a count."""
@@ -84,7 +87,9 @@ def _value_and_wave(reading: Reading, rest: list[Item]) -> tuple[Amount, DraftWa
     value: Amount = None
     wave: DraftWave | None = None
     left = [item for item in rest]
-    while left:
+    for _ in range(_MOST_WORDS):
+        if not left:
+            break
         word = left[0].text.lower() if left[0].kind == WORD else ""
         if word in _WAVEFORMS:
             wave, left = _wave(reading, word, left)
@@ -155,20 +160,20 @@ def _amounts(
     left = _behind_repeat(left) if piecewise else left
     amounts: list[Amount] = []
     relative: set[int] = set()
-    while left:
-        word = left[0].text.lower()
-        if left[0].kind == PAIR or word in _LISTS_END:
+    position = 0
+    while position < len(left):
+        first = left[position]
+        if first.kind == PAIR or first.text.lower() in _LISTS_END:
             break
-        amount, after = take_amount(reading, left)
+        amount, position = amount_at(reading, left, position)
         if amount is None:
-            what = f"'{left[0].text}' is no number for a waveform"
-            problem = error(reading.card.span(left[0]), what, "write a number or {expression}")
+            what = f"'{first.text}' is no number for a waveform"
+            problem = error(reading.card.span(first), what, "write a number or {expression}")
             reading.notes.append(problem)
             return (), frozenset()
-        if piecewise and len(amounts) % 2 == 0 and left[0].text.startswith("+"):
+        if piecewise and len(amounts) % 2 == 0 and first.text.startswith("+"):
             relative.add(len(amounts))
         amounts.append(amount)
-        left = after
     return tuple(amounts), frozenset(relative)
 
 

@@ -15,6 +15,7 @@ from rulecheck.values import Problem, Span, error, note
 WORD, QUOTED, BRACED, GROUP, PAIR, MARK = "word", "quoted", "braced", "group", "pair", "mark"
 
 
+DEEPEST = 40
 _DELIMITER = re.compile(r"[,=(){}\"']")
 _WORDS = re.compile(r"\S+")
 
@@ -69,6 +70,11 @@ def _parser() -> Lark:
 
 def read_card(line: LogicalLine) -> Card | Problem:
     """Parse one logical line; unclosed parentheses are closed at its end, with a note."""
+    if line.flaw is not None:
+        return line.flaw
+    if too_deep(line.text):
+        what = f"parentheses nested more than {DEEPEST} deep"
+        return error(line.span(), what, "no card needs that; check how the file was made")
     if not _DELIMITER.search(line.text):
         return Card(line, tuple(_plain_words(line.text)))
     text, notes = _balanced(line)
@@ -80,6 +86,17 @@ def read_card(line: LogicalLine) -> Card | Problem:
     if any(item.kind == PAIR for item in items):
         items = _extend_pairs(text, items)
     return Card(replace(line, text=text), tuple(items), notes)
+
+
+def too_deep(text: str) -> bool:
+    """Whether parentheses and braces nest deeper than anything that can be taken apart."""
+    if text.count("(") + text.count("{") <= DEEPEST:
+        return False
+    depth = deepest = 0
+    for sign in text:
+        depth += (sign in "({") - (sign in ")}" and depth > 0)
+        deepest = max(deepest, depth)
+    return deepest > DEEPEST
 
 
 def _plain_words(text: str) -> Iterator[Item]:
@@ -168,16 +185,21 @@ def _pair(text: str, key: Token, raw: Any) -> Item:
 def _extend_pairs(text: str, items: list[Item]) -> list[Item]:
     """A pair's value goes on as long as no blank follows: `tc=1m,2m`, `V=V(a)*2`."""
     result: list[Item] = []
+    extended: set[int] = set()
     for item in items:
         last = result[-1] if result else None
         if last is not None and last.kind == PAIR and item.start == last.end:
             if item.kind == PAIR or (item.kind == MARK and item.text == ")"):
                 result.append(item)
                 continue
-            whole = text[last.value_start : item.end]
-            result[-1] = last._replace(end=item.end, text=whole, value_kind=WORD)
+            result[-1] = last._replace(end=item.end, value_kind=WORD)
+            extended.add(len(result) - 1)
         else:
             result.append(item)
+    for place in extended:
+        result[place] = result[place]._replace(
+            text=text[result[place].value_start : result[place].end]
+        )
     return [_without_final_comma(item) for item in result]
 
 

@@ -24,7 +24,7 @@ BOUNDS: Mapping[str, Bound] = MappingProxyType(
         "file-bytes": Bound(64_000_000, _ANY, "bytes of one file, or of a netlist with its files"),
         "include-depth": Bound(20, 100, "files that include each other"),
         "includes": Bound(1_000, _ANY, "files that a netlist includes"),
-        "card-characters": Bound(1_000_000, _ANY, "characters of one card with its continuations"),
+        "card-characters": Bound(250_000, _ANY, "characters of one card with its continuations"),
         "subcircuit-depth": Bound(50, 200, "subcircuits within each other"),
         "elements": Bound(250_000, _ANY, "elements, those of expanded subcircuits included"),
         "condition-steps": Bound(5_000_000, _ANY, "steps of one rule on one netlist"),

@@ -5,9 +5,15 @@ import re
 _RUN = re.compile(r"\d+|\D+")
 
 
-def natural_key(name: str) -> tuple[tuple[int, int, str], ...]:
-    """A sort key under which digits compare as numbers."""
+def natural_key(name: str) -> tuple[tuple[int, int, str, str], ...]:
+    """A sort key under which digits compare as numbers, by their count and then one by one."""
     return tuple(
-        (0, int(run), run) if run.isdigit() and run.isascii() else (1, 0, run.lower())
+        _number_key(run) if run.isdigit() and run.isascii() else (1, 0, run.lower(), "")
         for run in _RUN.findall(name)
     )
+
+
+def _number_key(run: str) -> tuple[int, int, str, str]:
+    """Without a conversion to int, which refuses thousands of digits."""
+    digits = run.lstrip("0")
+    return 0, len(digits), digits, run

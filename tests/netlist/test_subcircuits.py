@@ -200,4 +200,4 @@ def test_an_expansion_without_sensible_end_is_stopped() -> None:
     rows += [f".subckt L{k} p\nX1 p L{k + 1}\n.ends" for k in range(200)]
     found = circuit("\n".join([*rows, ".subckt L200 p\nR1 p 0 1\n.ends"]) + "\n")
     assert len(errors(found)) == 1
-    assert "expand to more than can be analysed" in errors(found)[0]
+    assert "stands within 50 instances" in errors(found)[0]
