@@ -162,3 +162,54 @@ def test_the_document_never_overwrites_an_input(leg):
     done = run("report", "leg.cir", "-o", "leg.stage.yaml", folder=leg, environment=ONE_DAY)
     assert done.returncode == 2
     assert (leg / "leg.stage.yaml").read_text(encoding="utf-8") == SHEET
+
+
+PULSED = """* half bridge, its gates driven by sources
+V1 BUS 0 100
+M1 BUS G1 SW SW FET
+M2 SW G2 0 0 FET
+VG1 G1 SW PULSE(0 12 0 10n 10n 4u 10u)
+VG2 G2 0 PULSE(0 12 4.3u 10n 10n 5.4u 10u)
+L1 SW OUT 33u
+C1 OUT 0 100u
+R1 OUT 0 4
+.model FET NMOS
+"""
+
+
+def test_gate_commands_of_the_netlist_are_drawn_and_told(tmp_path):
+    (tmp_path / "half.cir").write_text(PULSED, encoding="utf-8")
+    page = Outline(reported(tmp_path, "half.cir"))
+    assert "Gate commands of SW over 10 us" in page.text
+    told = [a.get("aria-label") or "" for a in page.named("svg")]
+    assert [text for text in told if text.startswith("M1: on ") and "by VG1" in text]
+    assert [text for text in told if text.startswith("M2: on ") and "by VG2" in text]
+
+
+def test_without_gate_commands_the_timing_says_so(hut):
+    page = Outline(reported(hut, "battery-bus.cir"))
+    assert "No source of the netlist commands a gate of a leg" in page.text
+    assert "Switching as stated, by leg" in page.text
+    assert "300 ns" in page.text
+
+
+def test_the_stress_sheet_sets_what_is_asked_beside_what_is_rated(hut):
+    text = Outline(reported(hut, "battery-bus.cir")).text
+    sheet = text[text.index("Stress sheet Switch positions") :]
+    for words in ("Inductors and windings", "L1 33 uH", "150 A", "Capacitors of the power path"):
+        assert words in sheet
+
+
+def test_the_block_view_joins_ports_filter_and_leg(hut):
+    page = Outline(reported(hut, "battery-bus.cir"))
+    told = [a.get("aria-label") or "" for a in page.named("svg")]
+    (blocks,) = [text for text in told if text.startswith("battery at ")]
+    assert blocks == "battery at BATIN; bus at BUSOUT; L1 at BATIN, SW; SW at BUSOUT, SW"
+
+
+def test_every_device_of_every_position_is_drawn_once(hut):
+    for netlist in ("pump-npc.cir", "transfer-switch.cir"):
+        page = Outline(reported(hut, netlist))
+        told = " ".join(a.get("aria-label") or "" for a in page.named("svg"))
+        devices = re.findall(r"\b([DQ]\d+) \S+ from ", told)
+        assert len(devices) == len(set(devices)) > 4

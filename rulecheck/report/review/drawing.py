@@ -77,6 +77,28 @@ class Schematic:
 
 
 @dataclass(frozen=True, slots=True)
+class BlockBox:
+    kind: str
+    x: float
+    y: float
+    width: float
+    height: float
+    texts: tuple[Label, ...]
+    marks: tuple[PlacedMark, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class BlockView:
+    width: float
+    height: float
+    boxes: tuple[BlockBox, ...]
+    lines: tuple[Line, ...]
+    dots: tuple[tuple[float, float], ...]
+    labels: tuple[Label, ...]
+    description: str
+
+
+@dataclass(frozen=True, slots=True)
 class Schematics:
     drawings: tuple[Schematic, ...]
     symbols: tuple[Symbol, ...]

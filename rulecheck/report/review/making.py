@@ -25,6 +25,9 @@ from rulecheck.report.review.finding_cards import (
 )
 from rulecheck.report.review.position_pages import position_anchors, position_pages
 from rulecheck.report.review.review import InputFile, Occasion, OpenList, Review, Row
+from rulecheck.report.review.stage_blocks import block_view
+from rulecheck.report.review.stress import stress_sheet
+from rulecheck.report.review.timing import stated_timing, timing_diagrams
 from rulecheck.rulebook import Deviation, Rulebook, Verdict
 from rulecheck.stage import Port, Stage
 from rulecheck.values import Gravity, Interval, Problem
@@ -73,6 +76,7 @@ def make_review(
         rulebook.changes,
         report.tally,
         len(rulebook.rules),
+        block_view(stage, demands, result, marks),
         draw_legs(stage, demands, result, marks),
         position_pages(result, stage, demands, rulebook, marks.parts),
         tuple(card for card in cards if not card.deviation),
@@ -80,6 +84,9 @@ def make_review(
         undecided_checks(report),
         _not_checked(report, rulebook, studied.problems),
         _on_trust(report),
+        stress_sheet(stage, demands, result),
+        timing_diagrams(stage, demands),
+        stated_timing(stage, demands),
         _legs(demands),
         tuple(_port(port) for port in stage.ports),
         _quantities(demands),

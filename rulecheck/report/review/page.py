@@ -19,6 +19,8 @@ CONTENTS = (
     ("not-checked", "Not checked"),
     ("trust", "Assumptions"),
     ("positions", "Positions"),
+    ("stress", "Stress sheet"),
+    ("timing", "Timing"),
     ("basis", "Basis"),
 )
 

@@ -5,7 +5,7 @@ from dataclasses import dataclass
 from rulecheck.report.changes import Changes
 from rulecheck.report.explanation import Entry
 from rulecheck.report.review.derating import Factor
-from rulecheck.report.review.drawing import Mark, Schematics
+from rulecheck.report.review.drawing import BlockView, Mark, Schematics
 from rulecheck.report.review.plane import Plane
 from rulecheck.rulebook import PackInForce, Tally
 
@@ -122,6 +122,30 @@ class Row:
 
 
 @dataclass(frozen=True, slots=True)
+class Table:
+    caption: str
+    heads: tuple[str, ...]
+    rows: tuple[Row, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Trace:
+    """A gate's command over the window, as an SVG path of height 18, and in words."""
+
+    name: str
+    path: str
+    told: str
+
+
+@dataclass(frozen=True, slots=True)
+class Timing:
+    leg: str
+    window: str
+    traces: tuple[Trace, ...]
+    width: float
+
+
+@dataclass(frozen=True, slots=True)
 class Review:
     netlist: str
     sheet: str
@@ -133,6 +157,7 @@ class Review:
     pack_changes: tuple[str, ...]
     tally: Tally
     rules_in_force: int
+    blocks: BlockView | None
     schematics: Schematics
     positions: tuple[PositionPage, ...]
     findings: tuple[FindingCard, ...]
@@ -140,6 +165,9 @@ class Review:
     undecided: tuple[UndecidedCheck, ...]
     open_lists: tuple[OpenList, ...]
     taken_on_trust: tuple[OpenList, ...]
+    stress: tuple[Table, ...]
+    timing: tuple[Timing, ...]
+    stated_timing: Table
     legs: tuple[Row, ...]
     ports: tuple[Row, ...]
     quantities: tuple[Row, ...]
