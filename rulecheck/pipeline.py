@@ -2,7 +2,6 @@
 
 import os
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass, field
 from pathlib import Path
 
 from rulecheck.capability import Capabilities, find_capabilities
@@ -13,6 +12,7 @@ from rulecheck.parts import PartList, identify_parts, read_part_data
 from rulecheck.reading import SourceText, read_text
 from rulecheck.stage import EMPTY_SHEET, SheetReading, Stage, read_sheet, read_stage
 from rulecheck.values import Problem, Span, error, errors_of
+from rulecheck.values.record import Record, field
 
 SHEET_SUFFIX = ".stage.yaml"
 NO_SHEET = SheetReading(EMPTY_SHEET, ())
@@ -25,8 +25,7 @@ def _tell_nobody(step: str) -> None:
     """Nobody waits for word."""
 
 
-@dataclass(frozen=True, slots=True)
-class Analysis:
+class Analysis(Record):
     """Every product of the steps for one netlist, and every problem met on the way."""
 
     netlist: str
@@ -42,15 +41,13 @@ class Analysis:
     """Every file that was read."""
 
 
-@dataclass(frozen=True, slots=True)
-class Unusable:
+class Unusable(Record):
     """No analysis: a file could not be read, or sheet or part data are at fault."""
 
     problems: tuple[Problem, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class Sources:
+class Sources(Record):
     """Where a netlist's companions are; no sheet named means the one beside it, if any."""
 
     sheet: Path | None = None

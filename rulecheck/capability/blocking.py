@@ -9,17 +9,16 @@ add, which assumes that the devices share the voltage.
 
 import heapq
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass
 
 from rulecheck.parts import Conduction, Edge
 from rulecheck.values import Unknown, natural_key
+from rulecheck.values.record import Record
 
 LABELS_PER_NET = 64
 """Chains kept for each net; past it only further names of missing ratings would be found."""
 
 
-@dataclass(frozen=True, slots=True)
-class Chain:
+class Chain(Record):
     """A way through the position: known volts, and edges (by index) that have no rating yet."""
 
     volts: float
@@ -31,8 +30,7 @@ class Chain:
         return self.volts <= other.volts and self.unrated <= other.unrated
 
 
-@dataclass(frozen=True, slots=True)
-class Blocking:
+class Blocking(Record):
     holds_off: bool
     volts: float | Unknown
     at_least: float

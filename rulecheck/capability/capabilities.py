@@ -1,13 +1,12 @@
 """The product of this step: what each position can do, whatever is asked of it."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 
 from rulecheck.values import QuadrantSet, Unknown
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Direction:
+class Direction(Record):
     """What a position can do in one direction."""
 
     carries: bool
@@ -31,14 +30,12 @@ class Direction:
     """The parts of one path that carries the direction, in order."""
 
 
-@dataclass(frozen=True, slots=True)
-class Capability:
+class Capability(Record):
     position: str
     forward: Direction
     reverse: Direction
     quadrants: QuadrantSet
 
 
-@dataclass(frozen=True, slots=True)
-class Capabilities:
+class Capabilities(Record):
     positions: Mapping[str, Capability]

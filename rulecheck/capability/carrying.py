@@ -8,13 +8,13 @@ which assumes that parallel devices share the current.
 """
 
 from collections.abc import Iterator, Mapping, Sequence
-from dataclasses import dataclass, field
 from itertools import islice, pairwise
 
 import networkx as nx
 
 from rulecheck.parts import Conduction, Edge
 from rulecheck.values import Unknown, natural_key
+from rulecheck.values.record import Mutable, Record, field
 
 PATHS_TRIED = 64
 """Paths looked at for the names of missing ratings; the numbers do not depend on it."""
@@ -22,8 +22,7 @@ PATHS_TRIED = 64
 Pair = tuple[str, str]
 
 
-@dataclass(frozen=True, slots=True)
-class Carrying:
+class Carrying(Record):
     carries: bool
     freewheels: bool
     amperes: float | Unknown
@@ -32,8 +31,7 @@ class Carrying:
     carried_by: tuple[str, ...]
 
 
-@dataclass(slots=True)
-class _Lane:
+class _Lane(Mutable):
     """All edges from one net to another: parallel ratings add."""
 
     amperes: float = 0.0

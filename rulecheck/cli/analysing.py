@@ -1,7 +1,6 @@
 """What the commands on netlists share: find the companions, analyse, answer with a status."""
 
 import os
-from dataclasses import dataclass
 from pathlib import Path
 
 from rulecheck.cli.complaints import complain
@@ -12,10 +11,10 @@ from rulecheck.cli.request import Request
 from rulecheck.netlist import Access
 from rulecheck.pipeline import Analysis, Sources, Unusable, analyse
 from rulecheck.values import USUAL, Limits, Problem, errors_of
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Answer:
+class Answer(Record):
     """A command's exit status, and every file that it read; none where it stopped early."""
 
     status: int

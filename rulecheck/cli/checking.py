@@ -6,7 +6,6 @@ import os
 import signal
 from collections.abc import Sequence
 from concurrent.futures.process import BrokenProcessPool
-from dataclasses import dataclass, replace
 from pathlib import Path
 
 from rulecheck.cli.analysing import sources_for
@@ -19,18 +18,17 @@ from rulecheck.report.changes import Changes, Version, find_changes
 from rulecheck.report.lint_result import OpenPoints, open_points
 from rulecheck.rulebook import Rulebook, Verdicts, judge
 from rulecheck.values import Limits, Problem, Span, error
+from rulecheck.values.record import Record, replace
 
 
-@dataclass(frozen=True, slots=True)
-class Task:
+class Task(Record):
     netlist: Path
     sources: Sources
     against: "Task | None" = None
     """An earlier netlist, where the changes since are asked for."""
 
 
-@dataclass(frozen=True, slots=True)
-class Checked:
+class Checked(Record):
     """The verdicts on one netlist and what its analysis left open; None where it is unusable."""
 
     verdicts: Verdicts | None
@@ -83,8 +81,7 @@ def check_one(task: Task, rulebook: Rulebook, progress: Progress) -> Checked:
     )
 
 
-@dataclass(frozen=True, slots=True)
-class Past:
+class Past(Record):
     """The changes since an earlier netlist; none where none is asked for or it is unusable."""
 
     changes: Changes | None = None

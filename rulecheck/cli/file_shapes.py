@@ -1,7 +1,6 @@
 """The YAML files that a user writes: the shape of each, its words, and what it is called."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 
 from rulecheck.cli.project import ProjectFile
 from rulecheck.cli.project_words import PROJECT_WORDS
@@ -12,10 +11,10 @@ from rulecheck.rulebook import PackFile
 from rulecheck.rulebook.pack_words import PACK_WORDS
 from rulecheck.stage import SheetFile
 from rulecheck.stage.sheet_words import SHEET_WORDS
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class FileShape:
+class FileShape(Record):
     shape: type
     words: Words
     called: str

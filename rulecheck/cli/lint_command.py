@@ -3,7 +3,6 @@
 import datetime
 import sys
 from collections.abc import Sequence
-from dataclasses import dataclass, replace
 from pathlib import Path
 
 from rulecheck.cli.analysing import Answer, finish, sources_for
@@ -32,6 +31,7 @@ from rulecheck.rulebook import (
 from rulecheck.rulebook.record import Known
 from rulecheck.rulebook.waiting import tally_of
 from rulecheck.values import Problem, Span, error, errors_of
+from rulecheck.values.record import Record, replace
 
 NOTHING_OPEN = OpenPoints((), (), (), ())
 _NO_NETLIST = error(
@@ -41,8 +41,7 @@ _NO_NETLIST = error(
 )
 
 
-@dataclass(frozen=True, slots=True)
-class _Basis:
+class _Basis(Record):
     """What all netlists of the run are judged by."""
 
     project: Project

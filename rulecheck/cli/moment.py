@@ -5,16 +5,15 @@ SOURCE_DATE_EPOCH is the convention of reproducible builds: seconds since 1970-0
 
 import datetime
 import os
-from dataclasses import dataclass
 from pathlib import Path
 
 from rulecheck.values import Problem, Span, error
+from rulecheck.values.record import Record
 
 VARIABLE = "SOURCE_DATE_EPOCH"
 
 
-@dataclass(frozen=True, slots=True)
-class Moment:
+class Moment(Record):
     day: datetime.date
     whose: str
 

@@ -4,14 +4,13 @@ import os
 import sys
 import tempfile
 from collections.abc import Iterable
-from dataclasses import dataclass
 from pathlib import Path
 
 from rulecheck.values import Problem, Span, error
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Document:
+class Document(Record):
     """A finished report and where it goes; no file is standard output."""
 
     text: str

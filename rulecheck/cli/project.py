@@ -3,7 +3,6 @@
 import itertools
 import os
 from collections.abc import Mapping
-from dataclasses import dataclass, field
 from pathlib import Path, PurePath
 from typing import Literal
 
@@ -12,6 +11,7 @@ import msgspec
 from rulecheck.reading import SourceText, YamlReading, read_text, read_yaml
 from rulecheck.rulebook import DeviationEntry
 from rulecheck.values import USUAL, Limits, Problem, Span, error, raise_limit
+from rulecheck.values.record import Record, field
 
 PROJECT_NAME = "rulecheck.yaml"
 _WILD = "*?["
@@ -32,8 +32,7 @@ class ProjectFile(
     undecided: Literal["pass", "fail"] | None = None
 
 
-@dataclass(frozen=True, slots=True)
-class Project:
+class Project(Record):
     """The project file with its paths resolved; without a file, all is empty."""
 
     file: str = ""

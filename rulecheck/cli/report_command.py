@@ -1,7 +1,6 @@
 """`rulecheck report NETLIST -o FILE`: the review document, one self-contained HTML file."""
 
 import datetime
-from dataclasses import dataclass, replace
 from pathlib import Path
 
 from rulecheck import __version__
@@ -21,10 +20,10 @@ from rulecheck.report.review import Findings, Occasion, Review, Studied, make_re
 from rulecheck.report.review.page import render
 from rulecheck.rulebook import Deviation, Rulebook, apply_deviations, judge, read_deviations
 from rulecheck.values import Problem, errors_of
+from rulecheck.values.record import Record, replace
 
 
-@dataclass(frozen=True, slots=True)
-class _Basis:
+class _Basis(Record):
     """What the netlist is judged by."""
 
     project: Project

@@ -1,20 +1,17 @@
 """What the user asked for, read from the arguments; light, so that `--version` costs nothing."""
 
-from dataclasses import dataclass
-
 from rulecheck.values import Limits
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Output:
+class Output(Record):
     """One report: its format (None: the default) and its file (None: standard output)."""
 
     format: str | None
     file: str | None
 
 
-@dataclass(frozen=True, slots=True)
-class Request:
+class Request(Record):
     command: str
     names: tuple[str, ...] = ()
     """The positional arguments of the command."""

@@ -5,7 +5,6 @@ Examples are written for the values that their own pack knows; what a project se
 
 import re
 from collections.abc import Iterable
-from dataclasses import dataclass
 
 from rulecheck.cli.packs import find_pack, load_rulebook
 from rulecheck.facts import Facts
@@ -14,14 +13,14 @@ from rulecheck.pipeline import Unusable, analyse_text
 from rulecheck.reading import SourceText
 from rulecheck.rulebook import IN_FORCE, Rulebook, Trial, try_examples
 from rulecheck.values import USUAL, Limits, Problem
+from rulecheck.values.record import Record
 
 _NO_FILES = Access(beside=False)
 """An example is all in its pack: it includes nothing."""
 _PACK_NAME = re.compile(r"^pack:\s*([\w/-]+)", re.MULTILINE)
 
 
-@dataclass(frozen=True, slots=True)
-class Trials:
+class Trials(Record):
     """Every example that was run."""
 
     trials: tuple[Trial, ...]

@@ -1,7 +1,6 @@
 """The whole procedure on one stage, step by step: voltages, topology, states, currents, ranges."""
 
 from collections.abc import Iterable, Iterator, Mapping, Sequence
-from dataclasses import dataclass, replace
 from itertools import product
 
 from rulecheck.demand.alternating import alternating_parts
@@ -41,6 +40,7 @@ from rulecheck.demand.topology import Cluster, Topology, build_topology
 from rulecheck.demand.voltages import Voltages, derive_voltages, name_of
 from rulecheck.stage import Position, Stage
 from rulecheck.values import AffineForm, Interval
+from rulecheck.values.record import Record, replace
 
 _MOST_RECTIFIER_STATES = 32
 
@@ -48,8 +48,7 @@ _MOST_RECTIFIER_STATES = 32
 _Names = Sequence[frozenset[str]]
 
 
-@dataclass(frozen=True, slots=True)
-class Worked:
+class Worked(Record):
     """Everything the procedure found for one reading of the stage."""
 
     stage: Stage
@@ -69,8 +68,7 @@ class Worked:
     """Diodes that only carry the charging pulses of a capacitor."""
 
 
-@dataclass(frozen=True, slots=True)
-class _Routed:
+class _Routed(Record):
     """Carriers with their routes, and by carrier the variables and the cases that matter to it."""
 
     routes: Sequence[tuple[Carrier, Route]]

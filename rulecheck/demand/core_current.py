@@ -10,19 +10,18 @@ Electronics, chapters on steady state and on discontinuous conduction (from memo
 
 import math
 from collections.abc import Sequence
-from dataclasses import dataclass
 
 from rulecheck.demand.analysis import Worked
 from rulecheck.demand.readings import across
 from rulecheck.demand.states import RawState
 from rulecheck.demand.stiff import Box
 from rulecheck.values import Interval
+from rulecheck.values.record import Record
 
 States = Sequence[tuple[RawState, Box]]
 
 
-@dataclass(frozen=True, slots=True)
-class CoreCurrent:
+class CoreCurrent(Record):
     """Its magnitude, half its ripple, and what tells how long it flows."""
 
     span: Interval

@@ -2,7 +2,6 @@
 
 import math
 from collections.abc import Collection, Mapping, Sequence
-from dataclasses import dataclass, replace
 
 from rulecheck.demand.evaluate import SMALL
 from rulecheck.demand.means import Unknowns, find_means, magnetising_means
@@ -11,10 +10,10 @@ from rulecheck.demand.stiff import EVERYTHING, Box
 from rulecheck.demand.surroundings import Ripple, Surroundings, ripple_of
 from rulecheck.stage import Transformer
 from rulecheck.values import AffineForm, Interval, write_quantity
+from rulecheck.values.record import Record, replace
 
 
-@dataclass(frozen=True, slots=True)
-class Means:
+class Means(Record):
     """Of the inductors, by variable: the mean as a form, and how it was found."""
 
     forms: Mapping[str, AffineForm]
@@ -94,8 +93,7 @@ def _same_rails(unknowns: Unknowns, names: Sequence[str], net: str) -> bool:
     return len(set(far)) == 1 and len(far[0]) >= 1
 
 
-@dataclass(frozen=True, slots=True)
-class CurrentRange:
+class CurrentRange(Record):
     range: Interval
     ripple: float
     """Half of it, peak to peak, in amperes; infinite where nobody can tell."""

@@ -1,14 +1,13 @@
 """The product of this step: what the circuit asks of each position, and how that is known."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
 
 from rulecheck.demand.waveforms.records import Waveforms
 from rulecheck.values import AffineForm, Interval, QuadrantSet, Unknown
+from rulecheck.values.record import Record, field
 
 
-@dataclass(frozen=True, slots=True)
-class Variable:
+class Variable(Record):
     """A stiff quantity: constant within a switching period, with its range and its reason."""
 
     name: str
@@ -23,8 +22,7 @@ class Variable:
     """Half the peak-to-peak ripple contained in the range."""
 
 
-@dataclass(frozen=True, slots=True)
-class Witness:
+class Witness(Record):
     """Why a number is what it is: the state, the form and the corner of the variables."""
 
     value: float
@@ -34,8 +32,7 @@ class Witness:
     corner: tuple[tuple[str, float], ...]
 
 
-@dataclass(frozen=True, slots=True)
-class PositionDemand:
+class PositionDemand(Record):
     position: str
     off_voltage: Interval | Unknown
     on_current: Interval | Unknown
@@ -48,8 +45,7 @@ class PositionDemand:
     not_covered: tuple[str, ...] = ()
 
 
-@dataclass(frozen=True, slots=True)
-class State:
+class State(Record):
     """One legal combination of on positions in a group, with the forms it leads to."""
 
     on: tuple[str, ...]
@@ -59,8 +55,7 @@ class State:
     """False where a free path of the drawn devices forbids it."""
 
 
-@dataclass(frozen=True, slots=True)
-class Group:
+class Group(Record):
     """Positions whose states depend on each other."""
 
     positions: tuple[str, ...]
@@ -75,8 +70,7 @@ class Group:
     """The positions whose free paths forbid them."""
 
 
-@dataclass(frozen=True, slots=True)
-class Leg:
+class Leg(Record):
     """Positions that share a midpoint, named from the states."""
 
     name: str
@@ -90,24 +84,21 @@ class Leg:
     levels: int
 
 
-@dataclass(frozen=True, slots=True)
-class Bridge:
+class Bridge(Record):
     name: str
     kind: str
     """`H-bridge` or `three-phase bridge`."""
     legs: tuple[str, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class Undetermined:
+class Undetermined(Record):
     """A quantity nobody stated and nothing derives."""
 
     what: str
     settle_with: str
 
 
-@dataclass(frozen=True, slots=True)
-class InterruptedCurrent:
+class InterruptedCurrent(Record):
     """With all gates off, this current finds no free path."""
 
     carrier: str
@@ -120,8 +111,7 @@ class InterruptedCurrent:
     within: Interval | Unknown
 
 
-@dataclass(frozen=True, slots=True)
-class FreeShort:
+class FreeShort(Record):
     """With all gates off, free paths close a loop around a positive voltage."""
 
     positions: tuple[str, ...]
@@ -130,8 +120,7 @@ class FreeShort:
     voltage: Interval | Unknown
 
 
-@dataclass(frozen=True, slots=True)
-class HardCommutation:
+class HardCommutation(Record):
     """A free path that carries in one state and is turned off by another position turning on."""
 
     position: str
@@ -140,8 +129,7 @@ class HardCommutation:
     voltage: float | Unknown
 
 
-@dataclass(frozen=True, slots=True)
-class Demands:
+class Demands(Record):
     variables: tuple[Variable, ...]
     positions: Mapping[str, PositionDemand]
     groups: tuple[Group, ...]

@@ -7,7 +7,6 @@ that is one linear relation an inductor. Continuous conduction is assumed, and s
 """
 
 from collections.abc import Mapping, Sequence
-from dataclasses import replace
 
 from rulecheck.demand.analysis import Worked
 from rulecheck.demand.routes import Route
@@ -15,6 +14,7 @@ from rulecheck.demand.states import RawState
 from rulecheck.demand.voltages import name_of
 from rulecheck.stage import GateCommand, Stage, common_window
 from rulecheck.values import AffineForm, Interval, Unknown, total_of
+from rulecheck.values.record import replace
 
 Shares = Sequence[tuple[RawState, float]]
 _SLIVER = 0.04

@@ -7,13 +7,13 @@ the equations determine.
 """
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
 
 import numpy as np
 import numpy.typing as npt
 
 from rulecheck.demand.topology import Cluster, Link, loop_name
 from rulecheck.values import AffineForm
+from rulecheck.values.record import Record
 
 Matrix = npt.NDArray[np.float64]
 _RANK = 1e-9
@@ -21,8 +21,7 @@ _LOOSE = 1e-6
 _RESIDUAL = 1e-7
 
 
-@dataclass(frozen=True, slots=True)
-class Solution:
+class Solution(Record):
     off_voltages: Mapping[str, AffineForm]
     on_currents: Mapping[str, AffineForm]
     potentials: Mapping[str, AffineForm]

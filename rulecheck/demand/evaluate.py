@@ -2,7 +2,6 @@
 
 import math
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass, replace
 
 from rulecheck.demand.demands import PositionDemand, Witness
 from rulecheck.demand.readings import Amendment, Reading, feasible, free_ways, inequalities
@@ -10,14 +9,14 @@ from rulecheck.demand.states import RawState
 from rulecheck.demand.stiff import Box, bounded_by
 from rulecheck.stage import Position
 from rulecheck.values import AffineForm, Interval, QuadrantSet, Unknown, point
+from rulecheck.values.record import Record, replace
 
 SMALL = 0.02
 """Share of the largest below which a value counts as none; method: 2 %, at least 1 V."""
 SMALL_VOLTAGE = 1.0
 
 
-@dataclass(frozen=True, slots=True)
-class Sample:
+class Sample(Record):
     """One form in one state, with the range that the state leaves it."""
 
     state: RawState

@@ -1,7 +1,6 @@
 """With all gates off: which stiff currents find no free path, and which voltages are shorted."""
 
 from collections.abc import Iterator, Mapping, Sequence
-from dataclasses import replace
 from itertools import pairwise
 
 import networkx as nx
@@ -18,6 +17,7 @@ from rulecheck.demand.voltages import name_of
 from rulecheck.parts import Kind
 from rulecheck.stage import BranchKind, Position
 from rulecheck.values import AffineForm, Interval, Unknown, natural_key, variable
+from rulecheck.values.record import replace
 
 
 def find_interrupted(

@@ -1,12 +1,11 @@
 """Report each group: its legal states, those that a free path forbids, or why it has none."""
 
-from dataclasses import replace
-
 from rulecheck.demand.analysis import Worked
 from rulecheck.demand.demands import Group, State
 from rulecheck.demand.readings import feasible
 from rulecheck.demand.states import RawState
 from rulecheck.values import AffineForm, natural_key
+from rulecheck.values.record import replace
 
 
 def forms_of(state: RawState) -> tuple[AffineForm, ...]:

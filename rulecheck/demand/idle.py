@@ -8,7 +8,6 @@ Electronics, chapter on the discontinuous conduction mode (from memory).
 """
 
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass
 
 from rulecheck.demand.analysis import Worked
 from rulecheck.demand.demands import PositionDemand
@@ -22,13 +21,13 @@ from rulecheck.demand.topology import magnetising_name
 from rulecheck.demand.voltages import name_of
 from rulecheck.stage import BranchKind, Position
 from rulecheck.values import AffineForm
+from rulecheck.values.record import Record
 
 _ALL_OFF = RawState((), Solution({}, {}, {}, (), ()))
 _TOUCHES = 1e-9
 
 
-@dataclass(frozen=True, slots=True)
-class Idle:
+class Idle(Record):
     """What one group's idle state leaves of the variables, and the potentials in it."""
 
     box: Box

@@ -4,7 +4,6 @@ Names come last, as labels; nothing before this step knows one.
 """
 
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass
 from itertools import pairwise, product
 
 import networkx as nx
@@ -15,6 +14,7 @@ from rulecheck.demand.readings import feasible
 from rulecheck.demand.topology import Cluster
 from rulecheck.stage import Position
 from rulecheck.values import Interval, natural_key
+from rulecheck.values.record import Record
 
 
 def find_legs(worked: Worked) -> tuple[Leg, ...]:
@@ -58,8 +58,7 @@ def _line_legs(worked: Worked, legs: Sequence[Leg]) -> list[Leg]:
     return [leg for leg in legs if leg not in selecting] + named
 
 
-@dataclass(frozen=True, slots=True)
-class _OuterPair:
+class _OuterPair(Record):
     """Two positions that join a pair of nets, by net, each to a further net."""
 
     joining: Mapping[str, str]

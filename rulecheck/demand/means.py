@@ -7,7 +7,6 @@ known currents of either side must flow through it.
 """
 
 from collections.abc import Callable, Hashable, Mapping, Sequence
-from dataclasses import dataclass, replace
 
 import networkx as nx
 
@@ -16,10 +15,10 @@ from rulecheck.demand.unions import Unions
 from rulecheck.demand.voltages import Voltages, name_of
 from rulecheck.stage import Branch, BranchKind, Port, PortKind, Position, Transformer
 from rulecheck.values import AffineForm, total_of, variable
+from rulecheck.values.record import Record, replace
 
 
-@dataclass(frozen=True, slots=True)
-class Unknowns:
+class Unknowns(Record):
     """The branches whose means Kirchhoff's law is asked for, and what is known to flow."""
 
     edges: tuple[tuple[str, str, str], ...]

@@ -8,19 +8,18 @@ known in every state, and the capacitor settles at the largest.
 """
 
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass, replace
 
 from rulecheck.demand.analysis import Worked
 from rulecheck.demand.readings import feasible
 from rulecheck.demand.routes import Carrier, find_routes
 from rulecheck.stage import Branch, BranchKind, Position, Stage
 from rulecheck.values import Interval
+from rulecheck.values.record import Record, replace
 
 WorkOut = Callable[[Stage], Worked]
 
 
-@dataclass(frozen=True, slots=True)
-class Peak:
+class Peak(Record):
     """A capacitor that its diodes charge to the largest voltage before them."""
 
     capacitor: str

@@ -7,16 +7,15 @@ The balance is used only where exactly one port's current is missing.
 
 import math
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 
 from rulecheck.demand.stiff import Box
 from rulecheck.demand.voltages import Voltages
 from rulecheck.stage import Branch, BranchKind, Port, PortKind
 from rulecheck.values import Interval
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class PortCurrents:
+class PortCurrents(Record):
     """By port name: the current out of the first net into the stage; the rest is not known."""
 
     ranges: Mapping[str, Interval]

@@ -1,9 +1,8 @@
 """Demands of diodes that charge a capacitor in pulses, which no stiff quantity shows."""
 
-from dataclasses import replace
-
 from rulecheck.demand.demands import PositionDemand
 from rulecheck.values import Interval, QuadrantSet
+from rulecheck.values.record import replace
 
 
 def pulsed(demand: PositionDemand) -> PositionDemand:

@@ -7,7 +7,6 @@ excuse itself from its own job: then all legal states count.
 
 import math
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass, field, replace
 from enum import StrEnum
 from itertools import product
 
@@ -19,6 +18,7 @@ from rulecheck.demand.ties import build_ties
 from rulecheck.demand.topology import Cluster, Link
 from rulecheck.stage import Position
 from rulecheck.values import AffineForm, Interval, total_of
+from rulecheck.values.record import Record, field, replace
 
 _MOST_MIXTURES = 64
 _VOLT_SECOND = 1e-6
@@ -26,8 +26,7 @@ _NO_CURRENT = 1e-5
 """Ampere."""
 
 
-@dataclass(frozen=True, slots=True)
-class Failure:
+class Failure(Record):
     """A carrier that in some case sees voltage of one sign only: its current would run off."""
 
     carrier: Carrier
@@ -47,8 +46,7 @@ class Amendment(StrEnum):
     """Its free path is taken to point the other way."""
 
 
-@dataclass(frozen=True, slots=True)
-class Reading:
+class Reading(Record):
     """For each cluster its states, and the positions that are not taken as drawn."""
 
     clusters: Sequence[Cluster]

@@ -2,13 +2,13 @@
 
 import math
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 
 from rulecheck.demand.account import settling_of
 from rulecheck.demand.analysis import Worked
 from rulecheck.demand.demands import HardCommutation, Leg, PositionDemand, Witness
 from rulecheck.stage import Position
 from rulecheck.values import Interval, Unknown, natural_key
+from rulecheck.values.record import Record
 
 
 def find_hard_commutations(
@@ -43,8 +43,7 @@ def _hard(leg: Leg, demands: Mapping[str, PositionDemand]) -> bool:
     return alone and any(isinstance(demands[name].off_voltage, Unknown) for name in pair)
 
 
-@dataclass(frozen=True, slots=True)
-class _Recovering:
+class _Recovering(Record):
     """A position whose free path another one may turn off."""
 
     position: Position

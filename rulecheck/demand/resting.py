@@ -4,8 +4,6 @@ mains - S1 - L1 - heater        S1 is off only while i(L1) rests at zero; then i
                                 load have no voltage and S1 stands across the mains
 """
 
-from dataclasses import replace
-
 from rulecheck.demand.analysis import Worked
 from rulecheck.demand.demands import PositionDemand, Witness
 from rulecheck.demand.evaluate import quadrants_of
@@ -13,6 +11,7 @@ from rulecheck.demand.offsets import Offsets
 from rulecheck.demand.voltages import name_of
 from rulecheck.stage import BranchKind, Position
 from rulecheck.values import AffineForm, Interval
+from rulecheck.values.record import replace
 
 
 def with_rest(demand: PositionDemand, position: Position, worked: Worked) -> PositionDemand:

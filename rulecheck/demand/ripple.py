@@ -7,7 +7,6 @@ memory). For a two-level leg its maximum is V / (4 L f).
 
 import math
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 from itertools import product
 
 import numpy as np
@@ -17,14 +16,14 @@ from rulecheck.demand.readings import Reading, feasible
 from rulecheck.demand.routes import Route, Step
 from rulecheck.demand.stiff import Box
 from rulecheck.values import AffineForm, total_of, variable
+from rulecheck.values.record import Record
 
 _MOST_COMBINATIONS = 64
 _MOST_POINTS = 20000
 Grid = npt.NDArray[np.float64]
 
 
-@dataclass(frozen=True, slots=True)
-class Level:
+class Level(Record):
     """A voltage that the inductor can see, and the gates that make it."""
 
     form: AffineForm

@@ -4,7 +4,6 @@ L1 from SW to BAT        v(L1) = [SW over PGND, from leg SW] - v(battery)
 """
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass, replace
 
 import networkx as nx
 
@@ -12,10 +11,10 @@ from rulecheck.demand.topology import Node, Topology, magnetising_name
 from rulecheck.demand.voltages import name_of
 from rulecheck.stage import Branch, BranchKind, Port, PortKind, Transformer
 from rulecheck.values import AffineForm
+from rulecheck.values.record import Record, replace
 
 
-@dataclass(frozen=True, slots=True)
-class Carrier:
+class Carrier(Record):
     """A stiff current whose voltage the states decide."""
 
     name: str
@@ -29,8 +28,7 @@ class Carrier:
     """Of a DC port: `draws` or `supplies`, the way in which it handles power."""
 
 
-@dataclass(frozen=True, slots=True)
-class Step:
+class Step(Record):
     """Through one cluster, from island `enter` to island `leave`."""
 
     cluster: int
@@ -39,8 +37,7 @@ class Step:
     weight: float = 1.0
 
 
-@dataclass(frozen=True, slots=True)
-class Route:
+class Route(Record):
     """The carrier's voltage: a fixed form and the potential steps of clusters."""
 
     fixed: AffineForm

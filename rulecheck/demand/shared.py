@@ -12,7 +12,6 @@ within the conduction time.
 
 import math
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass, replace
 from itertools import permutations
 
 from rulecheck.demand.analysis import Worked
@@ -23,6 +22,7 @@ from rulecheck.demand.readings import inequalities
 from rulecheck.demand.states import RawState
 from rulecheck.demand.stiff import Box, tightened
 from rulecheck.values import AffineForm, Interval, QuadrantSet
+from rulecheck.values.record import Record, replace
 
 _MAGNETISING = "i(magnetising "
 _NEARLY = 0.2
@@ -31,8 +31,7 @@ nominal, and diode drops and cross-regulation part them (common practice)."""
 _Demands = Mapping[str, PositionDemand]
 
 
-@dataclass(frozen=True, slots=True)
-class _Rectifier:
+class _Rectifier(Record):
     """A diode that in all its states carries `turns` times one core's magnetising current."""
 
     name: str

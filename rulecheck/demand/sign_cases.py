@@ -8,19 +8,18 @@ three phases                                 six cases
 
 import math
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass, field
 from itertools import product
 
 from rulecheck.demand.means import current_names
 from rulecheck.demand.stiff import Box, PhaseSet
 from rulecheck.stage import Port, PortKind
 from rulecheck.values import Interval, point
+from rulecheck.values.record import Record, field
 
 MOST_CASES = 64
 
 
-@dataclass(frozen=True, slots=True)
-class Case:
+class Case(Record):
     """Signs of variables that can take both, and values of those that are fixed to an instant."""
 
     signs: Mapping[str, bool]

@@ -7,7 +7,6 @@ Search is depth-first; a branch is left as soon as the on positions short a volt
 """
 
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
 from itertools import combinations
 
 from rulecheck.demand.equations import Solution, solve_state
@@ -16,13 +15,13 @@ from rulecheck.demand.stiff import Box
 from rulecheck.demand.ties import Ties
 from rulecheck.demand.topology import Cluster, Link
 from rulecheck.values import AffineForm
+from rulecheck.values.record import Record
 
 MOST_POSITIONS = 20
 """A group with more positions is reported as not analysed."""
 
 
-@dataclass(frozen=True, slots=True)
-class Laws:
+class Laws(Record):
     """What decides whether a form is zero: the relations of the network and the symmetric sets."""
 
     ties: Ties
@@ -32,8 +31,7 @@ class Laws:
         return self.box.is_zero(form) or self.box.is_zero(self.ties.reduced(form))
 
 
-@dataclass(frozen=True, slots=True)
-class RawState:
+class RawState(Record):
     """A legal combination with its forms, before the variables' ranges are looked at."""
 
     on: tuple[str, ...]

@@ -8,16 +8,15 @@ widened by the ripple, both bound it, and a form's range is what both leave.
 import cmath
 import math
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, field
 
 from rulecheck.values import AffineForm, Interval, point
+from rulecheck.values.record import Record, field
 
 EVERYTHING = Interval(-math.inf, math.inf)
 _ZERO = 1e-7
 
 
-@dataclass(frozen=True, slots=True)
-class PhaseSet:
+class PhaseSet(Record):
     """Variables of one symmetrical set, in phase order, with one amplitude."""
 
     names: tuple[str, ...]
@@ -34,8 +33,7 @@ class PhaseSet:
         return size * self.amplitude if size > _ZERO else 0.0
 
 
-@dataclass(frozen=True, slots=True)
-class Box:
+class Box(Record):
     """Ranges of the variables, and what ties them to each other."""
 
     ranges: Mapping[str, Interval]

@@ -2,7 +2,6 @@
 
 import math
 from collections.abc import Sequence
-from dataclasses import dataclass
 
 from rulecheck.demand.readings import Reading, sustainable
 from rulecheck.demand.ripple import levels_seen, open_voltages, swing
@@ -11,6 +10,7 @@ from rulecheck.demand.sign_cases import Case
 from rulecheck.demand.stiff import EVERYTHING, Box
 from rulecheck.stage import Stage
 from rulecheck.values import Interval
+from rulecheck.values.record import Record
 
 _MUCH_SLOWER = 3.0
 """A leg that switches this many times slower stands still within a period of the others."""
@@ -18,8 +18,7 @@ _NO_CURRENT = 1e-5
 """Ampere."""
 
 
-@dataclass(frozen=True, slots=True)
-class Surroundings:
+class Surroundings(Record):
     """What decides one carrier's range besides its mean."""
 
     stage: Stage
@@ -51,8 +50,7 @@ class Surroundings:
         )
 
 
-@dataclass(frozen=True, slots=True)
-class Ripple:
+class Ripple(Record):
     """Half the peak-to-peak ripple of one current, in amperes; infinite where nobody can tell."""
 
     half: float

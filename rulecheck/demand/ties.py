@@ -5,13 +5,12 @@ relations allow exactly when its reduction is zero.
 """
 
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
 
 from rulecheck.values import AffineForm
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Ties:
+class Ties(Record):
     pivots: Mapping[str, AffineForm]
     """Pivot variable -> the form, in other variables, that it equals."""
 

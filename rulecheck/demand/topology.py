@@ -7,7 +7,6 @@ Kirchhoff's law on the branches of that side.
 """
 
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass
 from itertools import pairwise
 from typing import cast
 
@@ -19,13 +18,13 @@ from rulecheck.demand.unions import Unions
 from rulecheck.demand.voltages import name_of
 from rulecheck.stage import Branch, BranchKind, Position, Transformer
 from rulecheck.values import AffineForm, natural_key, total_of, variable
+from rulecheck.values.record import Record
 
 Node = str | int
 """An island by its root net, or a cluster by its index."""
 
 
-@dataclass(frozen=True, slots=True)
-class Link:
+class Link(Record):
     """Something between two islands: a position, a resistor or a winding."""
 
     name: str
@@ -42,8 +41,7 @@ class Link:
     """The nets themselves, which voltage branches may tie to others of their island."""
 
 
-@dataclass(frozen=True, slots=True)
-class Cluster:
+class Cluster(Record):
     """One independent group: its links and the current that the rest drives into its islands."""
 
     links: tuple[Link, ...]
@@ -59,8 +57,7 @@ class Cluster:
         return frozenset(p.name for p in self.positions if p.position and p.position.gated)
 
 
-@dataclass(frozen=True, slots=True)
-class Topology:
+class Topology(Record):
     clusters: tuple[Cluster, ...]
     ties: Ties
     tie_positions: tuple[Position, ...]

@@ -6,7 +6,6 @@ a flying capacitor hangs between switches only: undetermined, and a variable of 
 """
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 
 import networkx as nx
 import numpy as np
@@ -14,10 +13,10 @@ import numpy as np
 from rulecheck.demand.offsets import Offsets
 from rulecheck.stage import Branch, BranchKind, Position, Transformer
 from rulecheck.values import AffineForm, Interval, variable
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Voltages:
+class Voltages(Record):
     """The form of every voltage branch, in base variables `v(NAME)`."""
 
     forms: Mapping[str, AffineForm]

@@ -6,10 +6,10 @@ as a wire: its ringing and the overlap of commutation are then not covered.
 """
 
 from collections.abc import Iterable
-from dataclasses import replace
 
 from rulecheck.stage import Branch, BranchKind, Position, Role, Stage, Transformer
 from rulecheck.values import Unknown, natural_key
+from rulecheck.values.record import replace
 
 
 def wire_leakages(stage: Stage) -> tuple[Stage, tuple[str, ...]]:

@@ -2,15 +2,14 @@
 
 import math
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
 
 from rulecheck.demand import Demands, Variable, Witness
 from rulecheck.facts.facts import Bounds, Value
 from rulecheck.values import Interval, Unknown
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Asked:
+class Asked(Record):
     """A demanded range and the states that gave its ends."""
 
     range: Interval | Unknown

@@ -1,7 +1,6 @@
 """Collect the facts: every subject's module is asked once, the stage's links close the circle."""
 
 from collections.abc import Callable, Iterable, Mapping
-from dataclasses import replace
 
 from rulecheck.capability import Capabilities
 from rulecheck.demand import Demands
@@ -27,6 +26,7 @@ from rulecheck.facts.turned import find_suspects, stage_values
 from rulecheck.facts.vocabulary import VOCABULARY
 from rulecheck.stage import Stage
 from rulecheck.values import natural_key
+from rulecheck.values.record import replace
 
 _COLLECTORS: tuple[Callable[[Inputs], tuple[Subject, ...]], ...] = (
     net_facts.collect,

@@ -1,13 +1,12 @@
 """The product of this step: every subject a rule may judge, with its fields and links."""
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass, field
 
 from rulecheck.values import Interval, Span, Unknown
+from rulecheck.values.record import Record, field
 
 
-@dataclass(frozen=True, slots=True)
-class Bounds:
+class Bounds(Record):
     """A number known only within bounds until what is missing is supplied."""
 
     range: Interval
@@ -22,8 +21,7 @@ truth or word that nobody stated.
 """
 
 
-@dataclass(frozen=True, slots=True)
-class Subject:
+class Subject(Record):
     """One thing that rules judge; its fields and links are those of its kind's vocabulary."""
 
     kind: str
@@ -38,13 +36,12 @@ class Subject:
     """The places of the other parts, for a report."""
 
 
-@dataclass(frozen=True, slots=True)
-class Facts:
+class Facts(Record):
     """All subjects of a stage, by kind in the order of the vocabulary, each kind by name."""
 
     netlist: str
     subjects: Mapping[str, tuple[Subject, ...]]
-    by_name: Mapping[tuple[str, str], Subject] = field(default_factory=dict, repr=False)
+    by_name: Mapping[tuple[str, str], Subject] = field(default_factory=dict)
 
     def of_kind(self, kind: str) -> tuple[Subject, ...]:
         return self.subjects.get(kind, ())

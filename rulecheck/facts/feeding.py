@@ -9,19 +9,18 @@ there, the part carries its current. Capacitors carry no mean current and are pa
 
 import math
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
 
 from rulecheck.facts.inputs import Inputs
 from rulecheck.parts import Part, through_nets
 from rulecheck.stage import BranchKind, Port, PortKind, Position, Role
 from rulecheck.values import Interval, Unknown
+from rulecheck.values.record import Record
 
 Feeder = tuple[str, str]
 """`port`, `position` or `inductor`, and its name."""
 
 
-@dataclass(frozen=True, slots=True)
-class Heating:
+class Heating(Record):
     """A current as a line part sees it: its peak, and its rms between two bounds; amperes."""
 
     peak: float
@@ -29,8 +28,7 @@ class Heating:
     rms_high: float
 
 
-@dataclass(frozen=True, slots=True)
-class Wires:
+class Wires(Record):
     """Who is joined to a net as written by a wire, and which net a feeder stands at."""
 
     at: Mapping[str, tuple[tuple[str, str], ...]]

@@ -5,17 +5,15 @@ divides between the external resistance, the driver's and the device's (applicat
 memory).
 """
 
-from dataclasses import dataclass
-
 from rulecheck.facts.facts import Bounds, Value
 from rulecheck.facts.inputs import Inputs, stated_number
 from rulecheck.parts import Part
 from rulecheck.stage import GateDrive, GatePath
 from rulecheck.values import Interval, Unknown
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Hottest:
+class Hottest(Record):
     name: str
     share: float
     """Of the drive's whole power, at most."""

@@ -1,7 +1,6 @@
 """What the facts are collected from, with the look-ups that several subjects need."""
 
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
 
 from rulecheck.capability import Capabilities
 from rulecheck.demand import Demands, Group, Variable
@@ -9,10 +8,10 @@ from rulecheck.facts.facts import Bounds, Value
 from rulecheck.parts import Datum, Part
 from rulecheck.stage import Position, Role, Stage
 from rulecheck.values import Interval, Span, Unknown, natural_key
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Inputs:
+class Inputs(Record):
     """The three products and their indexes; nothing in it is a decision."""
 
     stage: Stage

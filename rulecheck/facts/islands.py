@@ -4,11 +4,11 @@ A core or an isolator between two islands leaves the far one without a ground on
 """
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 
 from rulecheck.facts.inputs import Inputs
 from rulecheck.parts import Kind
 from rulecheck.values import Unknown, natural_key
+from rulecheck.values.record import Record
 
 _APART = frozenset({Kind.ISOLATOR, Kind.WINDING_SET, Kind.CONTROLLER, Kind.DRIVER, Kind.OTHER})
 
@@ -16,8 +16,7 @@ _LEAVES = _APART | {Kind.CONNECTOR, Kind.SENSOR}
 """Kinds beyond which a potential may be fixed by what the netlist does not show."""
 
 
-@dataclass(frozen=True, slots=True)
-class Island:
+class Island(Record):
     """Nets joined by parts; `head` is the first of them in natural order."""
 
     head: str

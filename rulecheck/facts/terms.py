@@ -3,10 +3,10 @@
 number("blocks-forward", V, "Voltage that it withstands from start to end.")
 """
 
-from dataclasses import dataclass
 from enum import StrEnum
 
 from rulecheck.values import Dimension
+from rulecheck.values.record import Record
 
 
 class Form(StrEnum):
@@ -19,8 +19,7 @@ class Form(StrEnum):
     YES_NO = "yes-no"
 
 
-@dataclass(frozen=True, slots=True)
-class FieldTerm:
+class FieldTerm(Record):
     name: str
     form: Form
     sentence: str
@@ -35,16 +34,14 @@ class FieldTerm:
         return f"{unit}, range" if self.form is Form.RANGE else unit
 
 
-@dataclass(frozen=True, slots=True)
-class LinkTerm:
+class LinkTerm(Record):
     name: str
     to: str
     """The kind of the linked subjects."""
     sentence: str
 
 
-@dataclass(frozen=True, slots=True)
-class SubjectTerm:
+class SubjectTerm(Record):
     name: str
     sentence: str
     fields: tuple[FieldTerm, ...]

@@ -6,19 +6,18 @@ the one assumed here.
 """
 
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass
 
 from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.inputs import Inputs
 from rulecheck.parts import Part
 from rulecheck.values import Unknown
+from rulecheck.values.record import Record
 
 FEWEST = 2
 """A single device drawn upside down is a mistake of its own."""
 
 
-@dataclass(frozen=True, slots=True)
-class Suspects:
+class Suspects(Record):
     """Positions whose devices are all of them turned, and the texts of all suspected devices."""
 
     positions: frozenset[str]

@@ -6,9 +6,9 @@ C2 BUS 0 1F       F is femto there, not farad
 """
 
 import re
-from dataclasses import dataclass
 
 from rulecheck.parts import Kind
+from rulecheck.values.record import Record
 
 _VALUE = re.compile(
     r"[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?"
@@ -26,8 +26,7 @@ _UNITS = {
 _FITTING = {Kind.RESISTOR: "ohm", Kind.CAPACITOR: "F", Kind.INDUCTOR: "H"}
 
 
-@dataclass(frozen=True, slots=True)
-class WrittenValue:
+class WrittenValue(Record):
     unit: str
     """Empty where none is written."""
     fits: bool

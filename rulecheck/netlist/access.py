@@ -1,13 +1,12 @@
 """What a netlist may take in: how much of it, and included files from where."""
 
-from dataclasses import dataclass
 from pathlib import Path
 
 from rulecheck.values import USUAL, Limits
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Access:
+class Access(Record):
     """The limits, and the folders whose files may be included besides the netlist's own."""
 
     limits: Limits = USUAL

@@ -1,15 +1,14 @@
 """The reader's product: one flat list of elements with nets, values and where they stand."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
 
 from rulecheck.values import Problem, Span, Unknown
+from rulecheck.values.record import Record, field
 
 GROUND = "0"
 
 
-@dataclass(frozen=True, slots=True)
-class Waveform:
+class Waveform(Record):
     """A source's time function.
 
     `kind` is the lower-case keyword (`sin`, `pulse`, `pwl`, `exp`, `behavioural`, ...);
@@ -23,8 +22,7 @@ class Waveform:
     """Of a `pwl`: from this time to its last one it repeats, seconds; None: it does not."""
 
 
-@dataclass(frozen=True, slots=True)
-class Model:
+class Model(Record):
     """A `.model` card, found in the scope of the element that names it.
 
     `type` is upper-case (`D`, `NPN`, `VDMOS`, ...); parameter names are lower-case; a
@@ -37,8 +35,7 @@ class Model:
     span: Span
 
 
-@dataclass(frozen=True, slots=True)
-class Element:
+class Element(Record):
     """One element, after parameters are computed and subcircuits expanded.
 
     An instance of a subcircuit stays in the list as an element of letter X, followed by its
@@ -69,8 +66,7 @@ class Element:
     """The cards of the enclosing instances, outermost first."""
 
 
-@dataclass(frozen=True, slots=True)
-class Subcircuit:
+class Subcircuit(Record):
     """A definition that some instance uses."""
 
     name: str
@@ -78,8 +74,7 @@ class Subcircuit:
     span: Span
 
 
-@dataclass(frozen=True, slots=True)
-class Circuit:
+class Circuit(Record):
     """A whole netlist, read and flattened."""
 
     file: str

@@ -1,23 +1,21 @@
 """What a deck defines at one level: cards, parameters, functions, models, subcircuits."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
 
 from rulecheck.netlist.formula import Formula
 from rulecheck.netlist.lines import LogicalLine
 from rulecheck.values import Problem, Span
+from rulecheck.values.record import Mutable, Record, field
 
 
-@dataclass(frozen=True, slots=True)
-class UserFunction:
+class UserFunction(Record):
     """A `.func`: lower-case argument names and the body."""
 
     arguments: tuple[str, ...]
     body: Formula
 
 
-@dataclass(slots=True)
-class Definition:
+class Definition(Mutable):
     """The top level or a subcircuit, filled while the deck is read; names in lower case."""
 
     name: str
@@ -31,8 +29,7 @@ class Definition:
     cards: list[LogicalLine] = field(default_factory=list)
 
 
-@dataclass(frozen=True, slots=True)
-class Deck:
+class Deck(Record):
     """All files of a netlist, read and sorted into definitions."""
 
     file: str

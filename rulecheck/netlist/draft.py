@@ -1,18 +1,17 @@
 """An element card taken apart, before parameters are computed and instances expanded."""
 
 from collections.abc import Callable
-from dataclasses import dataclass, field
 
 from rulecheck.netlist.formula import Formula
 from rulecheck.netlist.syntax import Card, Item
 from rulecheck.values import Problem, Span, note
+from rulecheck.values.record import Mutable, Record, field
 
 Amount = float | Formula | None
 """A number, an expression still to be computed, or nothing that can be."""
 
 
-@dataclass(frozen=True, slots=True)
-class DraftWave:
+class DraftWave(Record):
     """A waveform; `relative` are the positions of times counted from the one before."""
 
     kind: str
@@ -24,8 +23,7 @@ class DraftWave:
     """Of a piecewise one: added to all of its times."""
 
 
-@dataclass(frozen=True, slots=True)
-class Draft:
+class Draft(Record):
     """The fields of `Element` as the card has them, names and nets not yet in their instance."""
 
     name: str
@@ -45,8 +43,7 @@ class Draft:
     """A behavioural expression: that it has no constant value is no mistake."""
 
 
-@dataclass(slots=True)
-class Reading:
+class Reading(Mutable):
     """One card while it is read, and what its surroundings know."""
 
     card: Card

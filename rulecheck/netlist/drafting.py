@@ -1,7 +1,6 @@
 """Read the cards of one definition, once, however many instances it has."""
 
 from collections.abc import Iterable, Iterator
-from dataclasses import dataclass
 
 from rulecheck.netlist.draft import Draft, Reading
 from rulecheck.netlist.elements import read_element
@@ -11,13 +10,13 @@ from rulecheck.netlist.numbers import beyond_numbers
 from rulecheck.netlist.scope import Scope, has_parameter
 from rulecheck.netlist.syntax import WORD, Card, read_card
 from rulecheck.values import Problem, Span, error
+from rulecheck.values.record import Record
 
 _VALUED = "RCLKVIEFGH"
 """Letters of elements whose text, where it is no number, is not the name of a model."""
 
 
-@dataclass(frozen=True, slots=True)
-class Drafts:
+class Drafts(Record):
     """What could be read of one definition, the names of what could not, and why."""
 
     drafts: tuple[Draft, ...]

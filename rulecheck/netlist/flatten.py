@@ -1,7 +1,6 @@
 """Expand instances: every element with its path, its nets in place, its parameters computed."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
 
 from rulecheck.netlist.circuit import GROUND, Element, Subcircuit, Waveform
 from rulecheck.netlist.definition import Deck, Definition
@@ -11,10 +10,10 @@ from rulecheck.netlist.formula import Formula
 from rulecheck.netlist.models import find_model
 from rulecheck.netlist.scope import Fault, Scope, compute
 from rulecheck.values import USUAL, Limits, Problem, Span, Unknown, error, raise_limit
+from rulecheck.values.record import Mutable, field
 
 
-@dataclass(slots=True)
-class _Place:
+class _Place(Mutable):
     """Where a definition is being expanded."""
 
     scope: Scope
@@ -33,8 +32,7 @@ class _Place:
         return f"{self.path}.{name}" if self.path else name
 
 
-@dataclass(slots=True)
-class Flattening:
+class Flattening(Mutable):
     """What is collected while a deck is expanded."""
 
     deck: Deck

@@ -1,7 +1,6 @@
 """Parameter arithmetic becomes a short program in postfix order: no depth limit, no recursion."""
 
 import re
-from dataclasses import dataclass
 from functools import cache
 from typing import Any
 
@@ -12,6 +11,7 @@ from rulecheck.netlist.lines import LogicalLine
 from rulecheck.netlist.numbers import read_number
 from rulecheck.netlist.syntax import DEEPEST, too_deep
 from rulecheck.values import Span
+from rulecheck.values.record import Record
 
 LONGEST = 20_000
 NUMBER, NAME, CALL, OPERATOR, CHOOSE = "number", "name", "call", "operator", "choose"
@@ -22,8 +22,7 @@ _BRACES = re.compile(r"\A\{\s*([^{}\s]+)\s*\}\Z")
 _WORD = re.compile(r"[A-Za-z_]\w*")
 
 
-@dataclass(frozen=True, slots=True)
-class Step:
+class Step(Record):
     """One instruction: push a number or name, or work on the topmost values."""
 
     kind: str
@@ -36,8 +35,7 @@ class Step:
 Program = tuple[Step, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class NoFormula:
+class NoFormula(Record):
     """Why a text cannot be computed; `behavioural` where it asks for voltages or currents."""
 
     what: str
@@ -45,8 +43,7 @@ class NoFormula:
     behavioural: bool = False
 
 
-@dataclass(frozen=True, slots=True)
-class Formula:
+class Formula(Record):
     """An expression as written, and where it stands on its card."""
 
     text: str

@@ -2,16 +2,16 @@
 
 import math
 from collections.abc import Callable
-from dataclasses import dataclass
 from itertools import pairwise
+
+from rulecheck.values.record import Record
 
 CONSTANTS = {"pi": math.pi, "e": math.e, "true": 1.0, "false": 0.0}
 RUNNING = frozenset({"time", "temp", "temper", "freq", "hertz", "omega"})
 """Names whose value only a simulation has."""
 
 
-@dataclass(frozen=True, slots=True)
-class Function:
+class Function(Record):
     least: int
     most: int
     compute: Callable[..., float]

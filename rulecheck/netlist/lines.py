@@ -2,10 +2,10 @@
 
 import re
 from bisect import bisect_right
-from dataclasses import dataclass, field
 
 from rulecheck.reading import SourceText
 from rulecheck.values import USUAL, Limits, Problem, Span, error, note, raise_limit
+from rulecheck.values.record import Mutable, Record, field
 
 _BEGINNING = 200
 """Characters of a line that tell what kind of line it is."""
@@ -21,8 +21,7 @@ _END = re.compile(r"\.end\s*\Z", re.IGNORECASE)
 _CARD_LIKE = re.compile(r"\s*[RCLDQMVIXK][0-9]+\s+\S+\s+\S+", re.IGNORECASE)
 
 
-@dataclass(frozen=True, slots=True)
-class LogicalLine:
+class LogicalLine(Record):
     """A card with its continuations joined, and where each stretch of it stands in the file."""
 
     text: str
@@ -37,15 +36,13 @@ class LogicalLine:
         return Span(self.file, mark[1], mark[2] + offset - mark[0])
 
 
-@dataclass(frozen=True, slots=True)
-class Lines:
+class Lines(Record):
     title: str
     cards: tuple[LogicalLine, ...]
     problems: tuple[Problem, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class _Block:
+class _Block(Record):
     """A stretch of lines that is not circuit."""
 
     start: re.Pattern[str]
@@ -73,8 +70,7 @@ _BLOCKS = (
 )
 
 
-@dataclass(slots=True)
-class _Joiner:
+class _Joiner(Mutable):
     """Collects logical lines while the physical ones go by."""
 
     file: str

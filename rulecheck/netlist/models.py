@@ -1,7 +1,6 @@
 """Model cards, parsed when an element asks for them."""
 
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
 
 from rulecheck.netlist.assignments import formula_at
 from rulecheck.netlist.circuit import Model
@@ -12,6 +11,7 @@ from rulecheck.netlist.numbers import beyond_numbers, read_number
 from rulecheck.netlist.scope import Fault, Scope, compute, has_parameter
 from rulecheck.netlist.syntax import BRACED, GROUP, MARK, PAIR, QUOTED, WORD, Card, Item, read_card
 from rulecheck.values import Problem, error, note
+from rulecheck.values.record import Record
 
 _TOLERANCES = ("lot", "dev")
 _INHERITS = "ako:"
@@ -21,8 +21,7 @@ _MOST_HEIRS = 40
 """Models that inherit from each other in a row."""
 
 
-@dataclass(frozen=True, slots=True)
-class RawModel:
+class RawModel(Record):
     """A card taken apart; `parent` is the model that it inherits from."""
 
     name: str

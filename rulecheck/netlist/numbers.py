@@ -2,7 +2,8 @@
 
 import math
 import re
-from dataclasses import dataclass
+
+from rulecheck.values.record import Record
 
 _NUMBER = re.compile(
     r"([+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+))(?:[eE]([+-]?[0-9]{1,4}))?(.*)\Z", re.DOTALL
@@ -19,8 +20,7 @@ _SCALES = (
 _MICROMETRES_OF_A_MIL = 25.4
 
 
-@dataclass(frozen=True, slots=True)
-class Number:
+class Number(Record):
     """A value in SI units; `remark` says what was not plain about it, `scale` which letter."""
 
     value: float

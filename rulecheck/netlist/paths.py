@@ -7,8 +7,9 @@ folders that were allowed, links followed.
 import os
 import re
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
 from pathlib import Path
+
+from rulecheck.values.record import Record
 
 _DRIVE = re.compile(r"[A-Za-z]:/")
 
@@ -21,8 +22,7 @@ def clean_path(text: str) -> str:
     return stripped.strip().replace("\\", "/")
 
 
-@dataclass(frozen=True, slots=True)
-class Outside:
+class Outside(Record):
     """A path that leads out of all folders whose files may be included."""
 
     path: Path

@@ -4,7 +4,6 @@ import difflib
 import itertools
 import math
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, field
 
 from rulecheck.netlist.circuit import Model
 from rulecheck.netlist.definition import Definition, UserFunction
@@ -22,6 +21,7 @@ from rulecheck.netlist.formula import (
 from rulecheck.netlist.functions import CHOOSERS, CONSTANTS, FUNCTIONS, OPERATORS, RUNNING
 from rulecheck.netlist.numbers import beyond_numbers
 from rulecheck.values import Problem, Span, error, note
+from rulecheck.values.record import Mutable, Record, field
 
 _DEEPEST = 120
 _MOST_NAMES = 500
@@ -30,8 +30,7 @@ _MOST_STEPS = 100_000
 """Of one expression, those of the parameters and functions that it asks for included."""
 
 
-@dataclass(frozen=True, slots=True)
-class Fault:
+class Fault(Record):
     """Why an expression has no value; `problem` is None where that is no mistake."""
 
     what: str
@@ -43,8 +42,7 @@ Outcome = float | Fault
 Lookup = Callable[[str], Outcome | None]
 
 
-@dataclass(slots=True)
-class Scope:
+class Scope(Mutable):
     """One definition in use: the top level, or one instance of a subcircuit.
 
     Names are looked up here, then in the scope in which the definition stands.
@@ -69,8 +67,7 @@ class Scope:
         return None
 
 
-@dataclass(slots=True)
-class _Effort:
+class _Effort(Mutable):
     """What one expression has cost so far: functions that call each other can double it a step."""
 
     depth: int = 0

@@ -1,6 +1,5 @@
 """What is collected while the files of one deck are sorted."""
 
-from dataclasses import dataclass, field
 from pathlib import Path
 
 from rulecheck.netlist.access import Access
@@ -8,10 +7,10 @@ from rulecheck.netlist.definition import Definition
 from rulecheck.netlist.lines import LogicalLine
 from rulecheck.netlist.syntax import Card, Item, read_card
 from rulecheck.values import Problem, Span, error, note
+from rulecheck.values.record import Mutable, field
 
 
-@dataclass(slots=True)
-class Sorter:
+class Sorter(Mutable):
     """What is collected while the files of one deck are read."""
 
     top: Definition

@@ -1,7 +1,6 @@
 """Independent sources: DC value and waveform, with and without parentheses."""
 
 from collections.abc import Sequence
-from dataclasses import replace
 
 from rulecheck.netlist.assignments import key_name
 from rulecheck.netlist.draft import Amount, Draft, DraftWave, Outcome, Reading
@@ -21,6 +20,7 @@ from rulecheck.netlist.numbers import read_number
 from rulecheck.netlist.syntax import GROUP, MARK, PAIR, QUOTED, WORD, Item
 from rulecheck.netlist.terminals import terminal_error
 from rulecheck.values import error
+from rulecheck.values.record import replace
 
 # Keyword as written -> kind; the first argument of each is its value at time zero,
 # but for a piecewise one, where it is the second.

@@ -2,7 +2,6 @@
 
 import re
 from collections.abc import Callable, Iterator
-from dataclasses import dataclass, replace
 from functools import cache
 from typing import Any, NamedTuple
 
@@ -11,6 +10,7 @@ from lark import Lark, Token, Transformer, UnexpectedInput
 from rulecheck.netlist.grammars import compile_grammar
 from rulecheck.netlist.lines import LogicalLine
 from rulecheck.values import Problem, Span, error, note
+from rulecheck.values.record import Record, replace
 
 WORD, QUOTED, BRACED, GROUP, PAIR, MARK = "word", "quoted", "braced", "group", "pair", "mark"
 
@@ -37,8 +37,7 @@ class Item(NamedTuple):
     value_start: int = 0
 
 
-@dataclass(frozen=True, slots=True)
-class Card:
+class Card(Record):
     line: LogicalLine
     items: tuple[Item, ...]
     notes: tuple[Problem, ...] = ()

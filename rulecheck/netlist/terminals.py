@@ -1,12 +1,10 @@
 """How many nets each element letter takes, and what they are called; the table writes the error."""
 
-from dataclasses import dataclass
-
 from rulecheck.values import Problem, Span, error
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Row:
+class Row(Record):
     """One letter: fewest and most nets, value or model or neither, and the names for people."""
 
     label: str

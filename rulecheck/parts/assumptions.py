@@ -4,13 +4,11 @@ D3 read as a zener diode (ZD12)
 D7 read as a zener diode (ZD12)      ->  "D3 and D7 read as a zener diode (ZD12)"
 """
 
-from dataclasses import dataclass, field
-
 from rulecheck.values import natural_key
+from rulecheck.values.record import Mutable, field
 
 
-@dataclass(slots=True)
-class Assumptions:
+class Assumptions(Mutable):
     """Names by sentence, in the order in which the sentences first came up."""
 
     names: dict[str, list[str]] = field(default_factory=dict)

@@ -8,7 +8,6 @@ U3 ... HUT-CTRL-1          not understood: part data must say
 
 import re
 from collections.abc import Callable, Mapping
-from dataclasses import replace
 
 from rulecheck.netlist import Element
 from rulecheck.parts.edges import POLARITY
@@ -16,6 +15,7 @@ from rulecheck.parts.part import Kind
 from rulecheck.parts.part_reading import PartReading, not_understood, read_as
 from rulecheck.parts.roles import PINOUTS, role_of
 from rulecheck.values import Dimension, Quantity, Unknown, read_quantity
+from rulecheck.values.record import replace
 
 _VALUE = re.compile(r"\d[\d.,]*[A-Za-zµΩ]+")
 Maker = Callable[[Element], PartReading]

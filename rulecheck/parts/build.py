@@ -6,7 +6,6 @@ X1 BUS SW PGND GH GL HB-1200-200      X1, a module
 """
 
 from collections.abc import Iterable
-from dataclasses import dataclass, replace
 
 from rulecheck.netlist import Element
 from rulecheck.parts.edges import find_edges
@@ -16,13 +15,13 @@ from rulecheck.parts.part_reading import PartReading
 from rulecheck.parts.roles import pair_up
 from rulecheck.parts.stated import gather, multiplied
 from rulecheck.values import Problem, Unknown
+from rulecheck.values.record import Record, replace
 
 _VALUED = frozenset({Kind.RESISTOR, Kind.CAPACITOR, Kind.INDUCTOR, Kind.NTC})
 _UNNAMED = frozenset("RCLVI")
 
 
-@dataclass(frozen=True, slots=True)
-class Built:
+class Built(Record):
     parts: tuple[Part, ...]
     problems: tuple[Problem, ...]
     cores: tuple[Core, ...] = ()

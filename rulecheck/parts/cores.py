@@ -7,25 +7,23 @@ K3 L1 L9 0.4       too loose for a transformer: left out, and said so
 
 import math
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
 
 from rulecheck.netlist import Element
 from rulecheck.parts.part import Core, Kind, Part
 from rulecheck.values import Problem, Unknown, error
+from rulecheck.values.record import Record
 
 TIGHT = 0.9
 """Coupling from which inductors are windings of one transformer (common practice)."""
 
 
-@dataclass(frozen=True, slots=True)
-class Coupling:
+class Coupling(Record):
     element: Element
     windings: tuple[Part, ...]
     sign: float
 
 
-@dataclass(frozen=True, slots=True)
-class Cores:
+class Cores(Record):
     cores: tuple[Core, ...]
     assumed: tuple[str, ...]
     problems: tuple[Problem, ...]

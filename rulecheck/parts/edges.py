@@ -6,10 +6,10 @@ M1, an n-MOSFET of 100 V and 120 A from D to S:
 """
 
 from collections.abc import Iterable
-from dataclasses import dataclass
 
 from rulecheck.parts.part import Conduction, Edge, Kind, Part
 from rulecheck.values import Interval, Unknown
+from rulecheck.values.record import Record
 
 POLARITY = "polarity"
 """Fact of a bipolar transistor: `pnp`; an NPN has none."""
@@ -17,8 +17,7 @@ BODY_DIODE = "body-diode"
 """Fact of a MOSFET: `none` where its bulk is not on its source."""
 
 
-@dataclass(frozen=True, slots=True)
-class EdgeRow:
+class EdgeRow(Record):
     """One direction: roles, conduction, and where the rating for its off state is stated."""
 
     tail: str

@@ -6,7 +6,6 @@ hut.parts.yaml:2:11: error: 'mosfeet' is no kind of part; did you mean 'mosfet'?
 
 import difflib
 from collections.abc import Iterable
-from dataclasses import dataclass, field
 
 import msgspec
 
@@ -17,21 +16,20 @@ from rulecheck.parts.roles import SIGNAL_ROLES, allowed, required
 from rulecheck.reading import YamlReading
 from rulecheck.reading.quantities import as_interval, as_number
 from rulecheck.values import Dimension, Interval, Problem, Span, error, note
+from rulecheck.values.record import Mutable, Record, field
 
 Path = tuple[str | int, ...]
 _FREE_NAMES = frozenset({Kind.DRIVER, Kind.ISOLATOR})
 
 
-@dataclass(slots=True)
-class Stated:
+class Stated(Mutable):
     """Figures and words of one entry by path."""
 
     data: dict[str, Datum] = field(default_factory=dict)
     facts: dict[str, str] = field(default_factory=dict)
 
 
-@dataclass(frozen=True, slots=True)
-class EntryReader:
+class EntryReader(Record):
     """Reads the entries of one file and collects their problems."""
 
     marks: YamlReading[PartDataFile]

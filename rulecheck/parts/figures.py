@@ -6,16 +6,15 @@ M1 d g s s FET blocking=100  ->   the same
 """
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 
 from rulecheck.parts.part import Kind
 from rulecheck.values import Dimension
+from rulecheck.values.record import Record
 
 Words = tuple[str, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class Figure:
+class Figure(Record):
     """One stated number: where it stands, what it measures, whether a range may be given."""
 
     section: str

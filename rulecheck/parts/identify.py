@@ -6,7 +6,6 @@ are read in its place.
 """
 
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass, field, replace
 
 from rulecheck.netlist import GROUND, Circuit, Element, Subcircuit
 from rulecheck.parts.assumptions import Assumptions
@@ -20,6 +19,7 @@ from rulecheck.parts.part_data import NO_PART_DATA, PartData, StatedPart
 from rulecheck.parts.part_reading import PartReading, not_understood
 from rulecheck.parts.pinning import find_roles, split_nets
 from rulecheck.values import Problem, error, note
+from rulecheck.values.record import Mutable, field, replace
 
 _UNMATCHED = frozenset("VIEGHBK")
 """Letters that no part data can describe: sources and couplings."""
@@ -42,7 +42,7 @@ _PASSIVE_KINDS: Mapping[str, frozenset[Kind]] = {
 
 def identify_parts(circuit: Circuit, part_data: PartData = NO_PART_DATA) -> PartList:
     """All parts of the circuit; `problems` are those of part data, of its use, and of cards."""
-    search = _Search(circuit, part_data)
+    search = _Search(circuit, part_data, _bodies(circuit.elements))
     for element in circuit.elements:
         search.read(element)
     cores = find_cores(search.couplings, {part.name.lower(): part for part in search.parts})
@@ -60,12 +60,12 @@ def identify_parts(circuit: Circuit, part_data: PartData = NO_PART_DATA) -> Part
     )
 
 
-@dataclass(slots=True)
-class _Search:
+class _Search(Mutable):
     """Goes through the elements in netlist order; what was found so far is its state."""
 
     circuit: Circuit
     part_data: PartData
+    bodies: Mapping[str, Sequence[Element]]
     parts: list[Part] = field(default_factory=list)
     couplings: list[Element] = field(default_factory=list)
     cores: list[Core] = field(default_factory=list)
@@ -75,13 +75,9 @@ class _Search:
     instances: dict[str, Element] = field(default_factory=dict)
     opaque: set[str] = field(default_factory=set)
     """Instances whose contents are not looked at."""
-    bodies: Mapping[str, Sequence[Element]] = field(init=False)
     times_used: dict[str, int] = field(default_factory=dict)
     """By lower-case name."""
     fits: dict[tuple[str, str, str], StatedPart | None] = field(default_factory=dict)
-
-    def __post_init__(self) -> None:
-        self.bodies = _bodies(self.circuit.elements)
 
     def read(self, element: Element) -> None:
         element = _with_control_pair(element)

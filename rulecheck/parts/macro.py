@@ -8,7 +8,6 @@ Ports that are named by numbers say nothing; a body of plain devices is flattene
 """
 
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass
 
 from rulecheck.netlist import Element, Subcircuit
 from rulecheck.parts.edges import POLARITY
@@ -17,6 +16,7 @@ from rulecheck.parts.part import Kind
 from rulecheck.parts.part_reading import PartReading
 from rulecheck.parts.roles import PINOUTS, role_of
 from rulecheck.values import Unknown
+from rulecheck.values.record import Record
 
 _EXTRAS = frozenset({"kelvin", "body", "thermal", "substrate"})
 _FOLLOWING = frozenset("EGBFHA")
@@ -25,8 +25,7 @@ _SMALL: Mapping[str, float] = {"R": 0.1, "L": 50e-9, "V": 0.0}
 """Ohm, henry, volts up to which an element inside a model is a lead."""
 
 
-@dataclass(frozen=True, slots=True)
-class _Macro:
+class _Macro(Record):
     """An instance's pins by role and its body with leads merged."""
 
     pins: Mapping[str, str]

@@ -1,11 +1,11 @@
 """What is known of one element: kind, pins by role, ratings with their provenance, edges."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
 from enum import StrEnum
 
 from rulecheck.netlist import Waveform
 from rulecheck.values import Dimension, Interval, Problem, Span, Unknown
+from rulecheck.values.record import Record, field
 
 
 class Kind(StrEnum):
@@ -57,8 +57,7 @@ class Conduction(StrEnum):
     NEVER = "never"
 
 
-@dataclass(frozen=True, slots=True)
-class Edge:
+class Edge(Record):
     """One direction through a device, from net `tail` to net `head`.
 
     `blocks` is the voltage (tail over head, volts) that it withstands when it does not
@@ -75,14 +74,12 @@ class Edge:
     """The name of the part that the edge belongs to."""
 
 
-@dataclass(frozen=True, slots=True)
-class Pin:
+class Pin(Record):
     role: str
     net: str
 
 
-@dataclass(frozen=True, slots=True)
-class Datum:
+class Datum(Record):
     """A stated number or range, in SI units, and who stated it."""
 
     value: float | Interval
@@ -92,8 +89,7 @@ class Datum:
     span: Span
 
 
-@dataclass(frozen=True, slots=True)
-class Part:
+class Part(Record):
     name: str
     kind: Kind
     pins: tuple[Pin, ...]
@@ -142,8 +138,7 @@ class Part:
         return Unknown(f"{what} of {self.name}", f"{path} of {self.settle_in}")
 
 
-@dataclass(frozen=True, slots=True)
-class Core:
+class Core(Record):
     """Windings on one magnetic core: the coupled inductors' names and their relative turns.
 
     Turns are proportional to the square root of inductance; the dot is at the first net.
@@ -155,8 +150,7 @@ class Core:
     span: Span
 
 
-@dataclass(frozen=True, slots=True)
-class PartList:
+class PartList(Record):
     """All parts in netlist order; of a subcircuit either the instance or its contents."""
 
     file: str

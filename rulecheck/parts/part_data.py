@@ -6,16 +6,15 @@
 
 import fnmatch
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
 
 from rulecheck.parts.part import Datum, Kind
 from rulecheck.values import Problem, Span
+from rulecheck.values.record import Record
 
 _WILD = frozenset("*?[]")
 
 
-@dataclass(frozen=True, slots=True)
-class StatedDevice:
+class StatedDevice(Record):
     """One inner device of a module."""
 
     name: str
@@ -27,8 +26,7 @@ class StatedDevice:
     span: Span
 
 
-@dataclass(frozen=True, slots=True)
-class StatedWinding:
+class StatedWinding(Record):
     """One winding of a winding set between two of its pins, in lower case; the dot comes first."""
 
     name: str
@@ -37,8 +35,7 @@ class StatedWinding:
     turns: float
 
 
-@dataclass(frozen=True, slots=True)
-class StatedPart:
+class StatedPart(Record):
     """One entry of a parts file."""
 
     key: str
@@ -63,8 +60,7 @@ class StatedPart:
         return fnmatch.fnmatchcase(text.casefold(), self.key.casefold())
 
 
-@dataclass(frozen=True, slots=True)
-class PartData:
+class PartData(Record):
     """All parts files together, in the order in which they were given."""
 
     parts: tuple[StatedPart, ...] = ()

@@ -1,15 +1,14 @@
 """What an element was read as, before its figures are looked up."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
 
 from rulecheck.netlist import Element
 from rulecheck.parts.part import Kind
 from rulecheck.parts.roles import Roles, default_roles
+from rulecheck.values.record import Record, field
 
 
-@dataclass(frozen=True, slots=True)
-class PartReading:
+class PartReading(Record):
     """Kind, roles in pin order, and what was taken for granted."""
 
     kind: Kind

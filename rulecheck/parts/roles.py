@@ -5,15 +5,14 @@ M1 BUS G SW SW FET       drain BUS, gate G, source SW, body SW
 """
 
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass
 
 from rulecheck.parts.part import Kind
+from rulecheck.values.record import Record
 
 Roles = tuple[str, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class Pinout:
+class Pinout(Record):
     """The roles of a kind in device order; those behind `needed` may be left out."""
 
     needed: Roles

@@ -6,24 +6,22 @@ M1 d g s s FET blocking=100       ratings.blocking 100 V, stated by the card
 
 import math
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, field, replace
 
 from rulecheck.netlist import Element
 from rulecheck.parts.figures import APPLICABLE, BY_PATH, MODEL_FIGURES, Figure, figure_named
 from rulecheck.parts.part import Datum, Kind
 from rulecheck.parts.part_data import StatedPart
 from rulecheck.values import Interval, Problem, error
+from rulecheck.values.record import Mutable, Record, field, replace
 
 
-@dataclass(frozen=True, slots=True)
-class Statements:
+class Statements(Record):
     data: Mapping[str, Datum]
     facts: Mapping[str, str]
     problems: tuple[Problem, ...] = ()
 
 
-@dataclass(slots=True)
-class _Card:
+class _Card(Mutable):
     data: dict[str, Datum] = field(default_factory=dict)
     facts: dict[str, str] = field(default_factory=dict)
     problems: list[Problem] = field(default_factory=list)

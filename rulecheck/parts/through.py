@@ -6,10 +6,10 @@ XU1 A K C E OC-1               an optocoupler: A with K on one side, C with E on
 """
 
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
 
 from rulecheck.parts.part import Kind, Part
 from rulecheck.values import Unknown
+from rulecheck.values.record import Record
 
 INRUSH_RESISTANCE = 100.0
 """Ohm, cold; common practice: inrush limiters are below it, temperature sensors above."""
@@ -38,8 +38,7 @@ _BARRIER_ROLES = ("supply-in", "ground-in", "primary-in", "in-plus", "in-minus")
 """A driver, sensor or supply module with such a pin has an insulated input side."""
 
 
-@dataclass(frozen=True, slots=True)
-class Joined:
+class Joined(Record):
     """The groups of nets that a part joins; `sure` is False where its inside is not known."""
 
     groups: tuple[tuple[str, ...], ...]

@@ -1,13 +1,13 @@
 """YAML as a tree of marked branches: every scalar, list and mapping knows where it stands."""
 
 import re
-from dataclasses import dataclass, field
 from typing import Any
 
 import yaml
 
 from rulecheck.reading.text import SourceText
 from rulecheck.values import Problem, Span, error
+from rulecheck.values.record import Mutable, field
 
 DEEPEST = 60
 LARGEST = 200_000
@@ -30,8 +30,7 @@ class _PlainLoader(yaml.CSafeLoader):
 _PlainLoader.yaml_implicit_resolvers = {}
 
 
-@dataclass(slots=True)
-class Branch:
+class Branch(Mutable):
     """One node: a scalar's text, or children by key or position; the key's own mark too."""
 
     span: Span
@@ -89,8 +88,7 @@ def _scalar(text: str) -> str | int | float | bool | None:
     return float(text) if _FRACTION.match(text) else text
 
 
-@dataclass(slots=True)
-class _Growth:
+class _Growth(Mutable):
     """What is collected while a tree is built."""
 
     file: str

@@ -3,9 +3,9 @@
 import difflib
 import re
 from collections.abc import Callable
-from dataclasses import dataclass
 
 from rulecheck.reading.schema import Path, keys_allowed, words_allowed
+from rulecheck.values.record import Record
 
 _STEP = re.compile(r"\.([^.\[]+)|\[(\d+|\.\.\.)\]")
 _WANTED = re.compile(r"Expected `([^`]+)`, got `([^`]+)`\Z")
@@ -24,8 +24,7 @@ _TYPE_WORDS = {
 _MOST_CHOICES = 30
 
 
-@dataclass(frozen=True, slots=True)
-class Complaint:
+class Complaint(Record):
     """One error of the library: its words, the path's steps, and whether it is about a key."""
 
     words: str

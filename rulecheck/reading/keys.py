@@ -5,10 +5,11 @@ what a person is told: `{"ports.*.between": Word("The nets of ...", "[BAT, PGND]
 """
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
 from typing import Any
 
 import msgspec
+
+from rulecheck.values.record import Record
 
 EACH = "*"
 """The step of a place for any key of a mapping by name, or any item of a list."""
@@ -22,8 +23,7 @@ _NOUNS = {
 }
 
 
-@dataclass(frozen=True, slots=True)
-class Word:
+class Word(Record):
     """What a key means, its value as it may stand in YAML, and an example of a name below it."""
 
     sentence: str
@@ -35,8 +35,7 @@ Words = Mapping[str, Word]
 """By place, such as `ports.*.between`."""
 
 
-@dataclass(frozen=True, slots=True)
-class Key:
+class Key(Record):
     """A key of a file: `path` from its root, and the form of its value in words."""
 
     path: tuple[str, ...]

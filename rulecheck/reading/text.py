@@ -3,10 +3,10 @@
 import difflib
 import os
 import stat
-from dataclasses import dataclass
 from pathlib import Path
 
 from rulecheck.values import USUAL, Limits, Problem, Span, error, note, raise_limit
+from rulecheck.values.record import Record
 
 _MARKS = (
     (b"\xef\xbb\xbf", "utf-8"),
@@ -18,8 +18,7 @@ _END_OF_FILE = 0x1A
 _WITHOUT_WAITING: int = getattr(os, "O_NONBLOCK", 0) | getattr(os, "O_BINARY", 0)
 
 
-@dataclass(frozen=True, slots=True)
-class SourceText:
+class SourceText(Record):
     """A file's text with lines ended by newline alone; `file` is the path as the user gave it."""
 
     file: str

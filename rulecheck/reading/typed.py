@@ -1,6 +1,5 @@
 """YAML validated against a typed shape: all mistakes of a file in one run, each at its place."""
 
-from dataclasses import dataclass, field
 from typing import Generic, TypeVar
 
 import msgspec
@@ -10,19 +9,19 @@ from rulecheck.reading.complaints import ANY_KEY, Complaint, explain, parse_comp
 from rulecheck.reading.schema import Path
 from rulecheck.reading.text import SourceText
 from rulecheck.values import Problem, Span, error
+from rulecheck.values.record import Record, field
 
 T = TypeVar("T")
 _MOST_ERRORS = 200
 
 
-@dataclass(frozen=True, slots=True)
-class YamlReading(Generic[T]):
+class YamlReading(Record, Generic[T]):
     """What could be read: the value without its faulty entries, None where nothing is left."""
 
     value: T | None
     problems: tuple[Problem, ...]
     file: str
-    root: Branch | None = field(default=None, repr=False, compare=False)
+    root: Branch | None = field(default=None)
 
     def span(self, path: Path) -> Span:
         """Where the entry stands: a mapping entry's key, a list's item; else its nearest parent."""
@@ -36,8 +35,7 @@ class YamlReading(Generic[T]):
         return span
 
 
-@dataclass(frozen=True, slots=True)
-class _Refusal:
+class _Refusal(Record):
     """The library's message."""
 
     said: str

@@ -1,7 +1,6 @@
 """What changed between two netlists of a stage: parts, ports, positions, findings."""
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
 
 from rulecheck.capability import Capabilities, Direction
 from rulecheck.demand import Demands
@@ -12,6 +11,7 @@ from rulecheck.report.standing import standing
 from rulecheck.rulebook import Verdicts
 from rulecheck.stage import Port, Stage, Switching
 from rulecheck.values import Interval, QuadrantSet, Span, Unknown, natural_key, write_quantity
+from rulecheck.values.record import Record
 
 ABSENT = "not there"
 _DIGITS = 9
@@ -19,8 +19,7 @@ Fields = Mapping[str, str]
 """What is compared of one thing: by its label, as text."""
 
 
-@dataclass(frozen=True, slots=True)
-class Version:
+class Version(Record):
     """One of the two netlists, analysed and judged."""
 
     stage: Stage
@@ -29,8 +28,7 @@ class Version:
     verdicts: Verdicts
 
 
-@dataclass(frozen=True, slots=True)
-class Change:
+class Change(Record):
     """One thing of one subject that reads otherwise now."""
 
     subject: str
@@ -41,8 +39,7 @@ class Change:
     """In the new netlist, or in the old one where the subject is gone."""
 
 
-@dataclass(frozen=True, slots=True)
-class Changes:
+class Changes(Record):
     old: str
     new: str
     parts: tuple[Change, ...]
@@ -93,8 +90,7 @@ def change_line(change: Change) -> str:
     return f"{lead} was {change.old}, is {change.new}"
 
 
-@dataclass(frozen=True, slots=True)
-class _Thing:
+class _Thing(Record):
     name: str
     fields: Fields
     span: Span

@@ -1,10 +1,9 @@
 """The answer to "why?": a title and entries, each a label, a text and a depth."""
 
-from dataclasses import dataclass
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Entry:
+class Entry(Record):
     """One line of an explanation; a deeper one supports the one above it."""
 
     label: str
@@ -12,7 +11,6 @@ class Entry:
     depth: int = 0
 
 
-@dataclass(frozen=True, slots=True)
-class Explanation:
+class Explanation(Record):
     title: str
     entries: tuple[Entry, ...]

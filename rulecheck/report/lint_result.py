@@ -2,7 +2,6 @@
 
 import re
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, field
 
 from rulecheck.demand import Demands, Undetermined
 from rulecheck.report.changes import Changes, change_lines
@@ -10,14 +9,14 @@ from rulecheck.report.quadrant_result import assumptions, open_questions, what_i
 from rulecheck.rulebook import Rule, SwitchedOff, Tally, Verdict, Verdicts, Waiting
 from rulecheck.stage import Stage
 from rulecheck.values import Gravity, Problem, natural_key
+from rulecheck.values.record import Record, field
 
 LEVELS = ("error", "warning", "note")
 """From the gravest to the lightest, as SARIF names them."""
 _OF_A_CARD = re.compile(r"(.* of the card )(\S+ \(.*\))", re.DOTALL)
 
 
-@dataclass(frozen=True, slots=True)
-class LintReport:
+class LintReport(Record):
     """One netlist's answer."""
 
     netlist: str
@@ -51,8 +50,7 @@ class LintReport:
         return self.recorded is not None and finding.fingerprint in self.recorded
 
 
-@dataclass(frozen=True, slots=True)
-class LintRun:
+class LintRun(Record):
     """The answers on all netlists of a run, and the rules that were asked."""
 
     reports: tuple[LintReport, ...]
@@ -78,8 +76,7 @@ class LintRun:
         return any(self.fails(report, f) for report in self.reports for f in report.findings)
 
 
-@dataclass(frozen=True, slots=True)
-class OpenPoints:
+class OpenPoints(Record):
     """What the analysis of a netlist left open, took on trust or found doubtful to read."""
 
     undetermined: tuple[Undetermined, ...]

@@ -1,10 +1,9 @@
 """How a human report may look: how wide, in which characters, with or without colour."""
 
-from dataclasses import dataclass
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Look:
+class Look(Record):
     """`width` in columns; `ascii` keeps to seven-bit signs; `color` allows colour codes;
     `quiet` leaves out assumptions, remarks and cautions, never what is broken or open.
     """

@@ -2,11 +2,11 @@
 
 import textwrap
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
 from typing import TextIO
 
 from rulecheck.report.look import PLAIN, Look
 from rulecheck.report.one_line import visible
+from rulecheck.values.record import Record
 
 _MARGIN = "  "
 _BLOCK = "      "
@@ -14,16 +14,14 @@ _WIDEST = 100
 """Columns; a longer line of prose is hard to read."""
 
 
-@dataclass(frozen=True, slots=True)
-class Block:
+class Block(Record):
     """Lines that keep their line ends, under a heading."""
 
     heading: str
     lines: tuple[str, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class ManualPage:
+class ManualPage(Record):
     word: str
     about: str
     """What sort of word it is: `fact of a position, in V`."""

@@ -1,7 +1,5 @@
 """What the quadrant reports show: each position's demand beside its capability."""
 
-from dataclasses import dataclass
-
 from rulecheck.capability import Capabilities, Capability
 from rulecheck.demand import (
     Bridge,
@@ -14,14 +12,14 @@ from rulecheck.demand import (
 )
 from rulecheck.stage import Position, Stage
 from rulecheck.values import QuadrantSet, Unknown, natural_key
+from rulecheck.values.record import Record
 
 _NO_POSITION = (
     "no switch position was found, so nothing was compared: are the power devices understood?"
 )
 
 
-@dataclass(frozen=True, slots=True)
-class PositionResult:
+class PositionResult(Record):
     position: Position
     demand: PositionDemand
     capability: Capability
@@ -55,8 +53,7 @@ class PositionResult:
         return all(ways[positive].holds_off for positive in polarities_of(off))
 
 
-@dataclass(frozen=True, slots=True)
-class QuadrantResult:
+class QuadrantResult(Record):
     netlist: str
     positions: tuple[PositionResult, ...]
     legs: tuple[Leg, ...]

@@ -9,7 +9,6 @@ import datetime
 import difflib
 import fnmatch
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass, replace
 
 from rulecheck.rulebook.deviation_file import DeviationEntry
 from rulecheck.rulebook.fingerprint import fingerprint_of
@@ -17,13 +16,13 @@ from rulecheck.rulebook.rulebook import Rulebook
 from rulecheck.rulebook.verdicts import BROKEN, Excuse, Verdict, Verdicts
 from rulecheck.rulebook.waiting import tally_of
 from rulecheck.values import Problem, Span, error
+from rulecheck.values.record import Record, replace
 
 UNUSED, EXPIRED = "deviation-unused", "deviation-expired"
 LEVEL = "warning"
 
 
-@dataclass(frozen=True, slots=True)
-class Deviation:
+class Deviation(Record):
     rule: str
     subject: str
     """A name or pattern, compared without regard to case."""
@@ -56,8 +55,7 @@ def _fits(pattern: str, name: str) -> bool:
     return plain == wanted or fnmatch.fnmatchcase(plain, wanted.replace("[", "[[]"))
 
 
-@dataclass(frozen=True, slots=True)
-class DeviationReading:
+class DeviationReading(Record):
     deviations: tuple[Deviation, ...]
     problems: tuple[Problem, ...]
 

@@ -6,18 +6,17 @@ The rating of Q1 is at least 100 V (a second one in series states none): [100 V,
 
 import math
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
 
 from rulecheck.rulebook.kleene import NO, YES, Answer, undecided
 from rulecheck.values import Unknown
+from rulecheck.values.record import Record
 
 SAME = 1e-9
 """Numbers that differ by less than this share of the larger count as equal."""
 NO_QUOTIENT = Unknown("a quotient", "a divisor other than 0")
 
 
-@dataclass(frozen=True, slots=True)
-class Estimate:
+class Estimate(Record):
     """One number somewhere between `low` and `high`; exact where they are equal."""
 
     low: float
@@ -29,8 +28,7 @@ class Estimate:
         return self.low == self.high
 
 
-@dataclass(frozen=True, slots=True)
-class Spread:
+class Spread(Record):
     """A quantity that takes all values of a range, whose ends are estimates."""
 
     low: Estimate

@@ -1,7 +1,6 @@
 """Run the examples that rules carry: each rule is its own test."""
 
 from collections.abc import Callable, Iterable, Iterator
-from dataclasses import dataclass
 
 from rulecheck.facts import Facts
 from rulecheck.reading import SourceText
@@ -9,6 +8,7 @@ from rulecheck.rulebook.judge import judge_one
 from rulecheck.rulebook.rulebook import Example, ReadyRule, Rulebook
 from rulecheck.rulebook.verdicts import BROKEN, HOLDS, UNDECIDED, Verdict
 from rulecheck.values import Problem, Span
+from rulecheck.values.record import Record
 
 SILENT = "silent"
 Analyse = Callable[
@@ -18,8 +18,7 @@ Analyse = Callable[
 _WORST_FIRST = (BROKEN, UNDECIDED, HOLDS)
 
 
-@dataclass(frozen=True, slots=True)
-class Trial:
+class Trial(Record):
     """One example: what its rule should have said, and what it said."""
 
     rule: str

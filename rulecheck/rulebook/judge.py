@@ -5,7 +5,6 @@ undecided, unless the requirement is met anyhow: then, too, there is nothing to 
 """
 
 from collections.abc import Iterable, Iterator
-from dataclasses import replace
 
 from rulecheck.facts import Facts, Subject
 from rulecheck.rulebook.fingerprint import fingerprint_of
@@ -16,6 +15,7 @@ from rulecheck.rulebook.scope import OWN, Scene
 from rulecheck.rulebook.verdicts import BROKEN, HOLDS, UNDECIDED, Verdict, Verdicts
 from rulecheck.rulebook.waiting import tally_of, waiting_for
 from rulecheck.values import Unknown
+from rulecheck.values.record import replace
 
 
 def judge(rulebook: Rulebook, facts: Facts) -> Verdicts:

@@ -6,13 +6,12 @@ the data that it waits for.
 """
 
 from collections.abc import Iterable
-from dataclasses import dataclass
 
 from rulecheck.values import Unknown
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Answer:
+class Answer(Record):
     """True, false, or None for unknown, and then what is missing."""
 
     truth: bool | None

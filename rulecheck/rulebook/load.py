@@ -3,7 +3,6 @@
 import difflib
 import hashlib
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass, field, replace
 
 from rulecheck.reading import SourceText
 from rulecheck.rulebook.pack_reading import Change, Pack, read_pack
@@ -12,10 +11,10 @@ from rulecheck.rulebook.ready import Missing, make_ready
 from rulecheck.rulebook.rulebook import PackInForce, ReadyRule, Rule, Rulebook, SwitchedOff
 from rulecheck.rulebook.scope import OTHER, Parameter
 from rulecheck.values import Problem, error
+from rulecheck.values.record import Mutable, field, replace
 
 
-@dataclass(slots=True)
-class _Layers:
+class _Layers(Mutable):
     """The rulebook while pack after pack is laid on it."""
 
     rules: dict[str, Rule] = field(default_factory=dict)

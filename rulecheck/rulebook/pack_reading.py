@@ -2,7 +2,6 @@
 
 import difflib
 from collections.abc import Mapping
-from dataclasses import dataclass, field
 
 from rulecheck.facts import TABLE_WORDS, VOCABULARY
 from rulecheck.reading import SourceText, YamlReading, read_yaml
@@ -22,13 +21,13 @@ from rulecheck.values import (
     error,
     read_quantity,
 )
+from rulecheck.values.record import Mutable, Record, field
 
 Path = tuple[str | int, ...]
 FEWEST_EXAMPLES = 2
 
 
-@dataclass(frozen=True, slots=True)
-class Change:
+class Change(Record):
     """What a pack changes in an earlier pack's rule."""
 
     rule: str
@@ -39,8 +38,7 @@ class Change:
     span: Span
 
 
-@dataclass(frozen=True, slots=True)
-class Pack:
+class Pack(Record):
     name: str
     file: str
     parameters: Mapping[str, Parameter]
@@ -51,8 +49,7 @@ class Pack:
     version: str = ""
 
 
-@dataclass(slots=True)
-class PackReader:
+class PackReader(Mutable):
     """Collects the problems of one file while its entries are converted."""
 
     source: SourceText

@@ -1,17 +1,16 @@
 """Make a rule ready: bind its conditions, values and message to the vocabulary."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 
 from rulecheck.facts import Form
 from rulecheck.rulebook.binding import bind
 from rulecheck.rulebook.rulebook import ReadyRule, Rule
 from rulecheck.rulebook.scope import Bound, Parameter
 from rulecheck.rulebook.tree import Flaw, Node
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Missing:
+class Missing(Record):
     """A flaw and the text of the rule that it is in: `requires`, `message`, `values.needs`."""
 
     key: str
@@ -37,8 +36,7 @@ def make_ready(rule: Rule, parameters: Mapping[str, Parameter]) -> ReadyRule | t
     return ReadyRule(rule, applies, requires, graver, message, known)
 
 
-@dataclass(frozen=True, slots=True)
-class _Maker:
+class _Maker(Record):
     rule: Rule
     parameters: Mapping[str, Parameter]
     missing: list[Missing]

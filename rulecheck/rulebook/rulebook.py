@@ -1,15 +1,14 @@
 """The rulebook: all rules in force with their parameters, and what packs changed."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
 
 from rulecheck.rulebook.scope import Bound, Parameter
 from rulecheck.rulebook.tree import Node
 from rulecheck.values import Problem, Span
+from rulecheck.values.record import Record, field
 
 
-@dataclass(frozen=True, slots=True)
-class Example:
+class Example(Record):
     """A small stage as text, and the verdict that the rule must give on it."""
 
     netlist: str
@@ -21,8 +20,7 @@ class Example:
     span: Span
 
 
-@dataclass(frozen=True, slots=True)
-class Piece:
+class Piece(Record):
     """A stretch of a message: plain words, or an expression to be written out."""
 
     words: str
@@ -30,8 +28,7 @@ class Piece:
     at: int = 0
 
 
-@dataclass(frozen=True, slots=True)
-class Rule:
+class Rule(Record):
     """A rule as its pack states it, after later packs have had their say."""
 
     id: str
@@ -56,8 +53,7 @@ class Rule:
     """By the same key: where the text starts."""
 
 
-@dataclass(frozen=True, slots=True)
-class ReadyRule:
+class ReadyRule(Record):
     """A rule bound to the vocabulary and to its parameters' values."""
 
     rule: Rule
@@ -68,8 +64,7 @@ class ReadyRule:
     values: Mapping[str, Bound]
 
 
-@dataclass(frozen=True, slots=True)
-class SwitchedOff:
+class SwitchedOff(Record):
     """A rule that a pack switched off, and why."""
 
     rule: str
@@ -78,8 +73,7 @@ class SwitchedOff:
     span: Span
 
 
-@dataclass(frozen=True, slots=True)
-class PackInForce:
+class PackInForce(Record):
     """Which text of a pack was read: what a review names, so that it can be repeated."""
 
     name: str
@@ -89,8 +83,7 @@ class PackInForce:
     """SHA-256 of the text, hexadecimal."""
 
 
-@dataclass(frozen=True, slots=True)
-class Rulebook:
+class Rulebook(Record):
     """What `judge` works with; with errors among the problems it must not be used."""
 
     rules: tuple[Rule, ...]

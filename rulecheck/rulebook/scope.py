@@ -1,13 +1,13 @@
 """What the names in a condition stand for, and what a bound condition is run on."""
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, field, replace
 from typing import Any
 
 from rulecheck.facts import VOCABULARY, Facts, FieldTerm, Form, LinkTerm, Subject
 from rulecheck.rulebook.tree import Flaw
 from rulecheck.rulebook.units import OF_DIMENSION, PLAIN, Unit
 from rulecheck.values import Dimension, Span
+from rulecheck.values.record import Record, field, replace
 
 NAME_FIELD = FieldTerm("name", Form.TEXT, "Its name.")
 OWN = ""
@@ -18,14 +18,12 @@ OTHER = "other"
 """The row of a parameter that stands for every word without a row of its own."""
 
 
-@dataclass(frozen=True, slots=True)
-class Row:
+class Row(Record):
     value: float
     source: str
 
 
-@dataclass(frozen=True, slots=True)
-class Parameter:
+class Parameter(Record):
     """A number that packs set, or a table of numbers by word; each row has its own source."""
 
     name: str
@@ -46,8 +44,7 @@ class Parameter:
         return min(rows, key=lambda row: row.value, default=self.rows[OTHER])
 
 
-@dataclass(frozen=True, slots=True)
-class Scene:
+class Scene(Record):
     """The facts and the subjects that the bound words stand for at the moment."""
 
     facts: Facts
@@ -57,8 +54,7 @@ class Scene:
         return Scene(self.facts, {**self.subjects, name: subject})
 
 
-@dataclass(frozen=True, slots=True)
-class Bound:
+class Bound(Record):
     """A checked expression: its form, its unit, and how to compute it."""
 
     form: Form
@@ -66,8 +62,7 @@ class Bound:
     unit: Unit = PLAIN
 
 
-@dataclass(frozen=True, slots=True)
-class Scope:
+class Scope(Record):
     """The kinds of the bound words, the parameters in force, and the flaws found so far."""
 
     kinds: Mapping[str, str]

@@ -1,12 +1,12 @@
 """A condition as a tree of plain records; `at` is the place of each in its text, from 0."""
 
 from collections.abc import Callable
-from dataclasses import dataclass, fields, replace
 from typing import Any
 
+from rulecheck.values.record import Record, replace
 
-@dataclass(frozen=True, slots=True)
-class Path:
+
+class Path(Record):
     """A name of a field, link, parameter or bound word: `device.kind`, `derate.blocking`."""
 
     at: int
@@ -17,48 +17,41 @@ class Path:
         return ".".join(self.words)
 
 
-@dataclass(frozen=True, slots=True)
-class QuantityOf:
+class QuantityOf(Record):
     at: int
     written: str
 
 
-@dataclass(frozen=True, slots=True)
-class Text:
+class Text(Record):
     at: int
     text: str
 
 
-@dataclass(frozen=True, slots=True)
-class Truth:
+class Truth(Record):
     at: int
     truth: bool
 
 
-@dataclass(frozen=True, slots=True)
-class Arithmetic:
+class Arithmetic(Record):
     at: int
     sign: str
     left: "Node"
     right: "Node"
 
 
-@dataclass(frozen=True, slots=True)
-class Opposite:
+class Opposite(Record):
     at: int
     operand: "Node"
 
 
-@dataclass(frozen=True, slots=True)
-class Compared:
+class Compared(Record):
     at: int
     sign: str
     left: "Node"
     right: "Node"
 
 
-@dataclass(frozen=True, slots=True)
-class Member:
+class Member(Record):
     """`kind in ["igbt", "mosfet"]` or `"IV" in needs`."""
 
     at: int
@@ -67,21 +60,18 @@ class Member:
     held: Path | None
 
 
-@dataclass(frozen=True, slots=True)
-class Matched:
+class Matched(Record):
     at: int
     item: "Node"
     pattern: str
 
 
-@dataclass(frozen=True, slots=True)
-class Negated:
+class Negated(Record):
     at: int
     operand: "Node"
 
 
-@dataclass(frozen=True, slots=True)
-class Joined:
+class Joined(Record):
     """`and`, `or`, `implies`."""
 
     at: int
@@ -90,8 +80,7 @@ class Joined:
     right: "Node"
 
 
-@dataclass(frozen=True, slots=True)
-class Quantified:
+class Quantified(Record):
     """`every` or `some` WORD among a link has a condition."""
 
     at: int
@@ -101,8 +90,7 @@ class Quantified:
     condition: "Node"
 
 
-@dataclass(frozen=True, slots=True)
-class Gathered:
+class Gathered(Record):
     """`count`, `sum`, `min`, `max` over a link; `count` gathers no value."""
 
     at: int
@@ -113,8 +101,7 @@ class Gathered:
     where: "Node | None"
 
 
-@dataclass(frozen=True, slots=True)
-class LookedUp:
+class LookedUp(Record):
     """The smallest entry of a parameter's table for the words of a field."""
 
     at: int
@@ -122,8 +109,7 @@ class LookedUp:
     words: Path
 
 
-@dataclass(frozen=True, slots=True)
-class SourceOf:
+class SourceOf(Record):
     """The source of a parameter's value, or of its row for the words of a field."""
 
     at: int
@@ -131,8 +117,7 @@ class SourceOf:
     words: Path | None = None
 
 
-@dataclass(frozen=True, slots=True)
-class Call:
+class Call(Record):
     at: int
     function: str
     arguments: "tuple[Node, ...]"
@@ -158,8 +143,7 @@ Node = (
 )
 
 
-@dataclass(frozen=True, slots=True)
-class Flaw:
+class Flaw(Record):
     """What is wrong with a condition, where in its text, and what to do."""
 
     at: int
@@ -170,8 +154,8 @@ class Flaw:
 def inner_nodes(node: Node) -> tuple[Node, ...]:
     """The nodes directly below."""
     found: list[Node] = []
-    for term in fields(node):
-        value = getattr(node, term.name)
+    for name in node.__struct_fields__:
+        value = getattr(node, name)
         items = value if isinstance(value, tuple) else (value,)
         found += [item for item in items if isinstance(item, Node)]
     return tuple(found)
@@ -180,10 +164,10 @@ def inner_nodes(node: Node) -> tuple[Node, ...]:
 def rewritten(node: Node, change: Callable[[Node], Node]) -> Node:
     """The tree with `change` applied to every node, from the leaves up."""
     changes: dict[str, Any] = {}
-    for term in fields(node):
-        value = getattr(node, term.name)
+    for name in node.__struct_fields__:
+        value = getattr(node, name)
         if isinstance(value, Node):
-            changes[term.name] = rewritten(value, change)
+            changes[name] = rewritten(value, change)
         elif isinstance(value, tuple) and any(isinstance(item, Node) for item in value):
-            changes[term.name] = tuple(rewritten(item, change) for item in value)
+            changes[name] = tuple(rewritten(item, change) for item in value)
     return change(replace(node, **changes) if changes else node)

@@ -1,13 +1,12 @@
 """Units of expressions: exponents of volt, ampere, second and degree, so that V/A is an ohm."""
 
-from dataclasses import dataclass
 from fractions import Fraction
 
 from rulecheck.values import Dimension
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Unit:
+class Unit(Record):
     volt: Fraction = Fraction(0)
     ampere: Fraction = Fraction(0)
     second: Fraction = Fraction(0)

@@ -1,16 +1,15 @@
 """The product of this step: every rule's answer on every subject that it applies to."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
 
 from rulecheck.rulebook.rulebook import SwitchedOff
 from rulecheck.values import Span, Unknown
+from rulecheck.values.record import Record, field
 
 HOLDS, BROKEN, UNDECIDED = "holds", "broken", "undecided"
 
 
-@dataclass(frozen=True, slots=True)
-class Excuse:
+class Excuse(Record):
     """A deviation that covers a broken rule: why, by whom, and until when (ISO date)."""
 
     reason: str
@@ -18,8 +17,7 @@ class Excuse:
     until: str
 
 
-@dataclass(frozen=True, slots=True)
-class Verdict:
+class Verdict(Record):
     """One rule's answer on one subject; the message is empty where the rule holds."""
 
     rule: str
@@ -40,8 +38,7 @@ class Verdict:
     fingerprint: str = ""
 
 
-@dataclass(frozen=True, slots=True)
-class Waiting:
+class Waiting(Record):
     """One missing datum and how many verdicts wait for it."""
 
     datum: Unknown
@@ -50,16 +47,14 @@ class Waiting:
     """Of these, the verdicts that this datum alone would decide."""
 
 
-@dataclass(frozen=True, slots=True)
-class Tally:
+class Tally(Record):
     holds: int
     broken: int
     undecided: int
     excused: int
 
 
-@dataclass(frozen=True, slots=True)
-class Verdicts:
+class Verdicts(Record):
     netlist: str
     verdicts: tuple[Verdict, ...]
     waiting: tuple[Waiting, ...]

@@ -2,7 +2,6 @@
 
 import difflib
 from collections.abc import Iterable, Iterator, Mapping
-from dataclasses import dataclass, replace
 
 from rulecheck.parts import Kind, Part, PartList
 from rulecheck.stage.branches import build_transformers, part_branches, port_branches
@@ -26,18 +25,17 @@ from rulecheck.stage.sheet import Override, Sheet
 from rulecheck.stage.stage import Branch, BranchKind, Port, Role, Stage, Switching, Transformer
 from rulecheck.stage.wiring import merge_wires
 from rulecheck.values import Interval, Problem, error, natural_key
+from rulecheck.values.record import Record, replace
 
 
-@dataclass(frozen=True, slots=True)
-class StageReading:
+class StageReading(Record):
     """The stage, and the mistakes that only show when sheet and circuit meet."""
 
     stage: Stage
     problems: tuple[Problem, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class _Sorted:
+class _Sorted(Record):
     """Who is who, before positions are formed."""
 
     layout: Layout

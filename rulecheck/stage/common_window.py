@@ -1,12 +1,12 @@
 """Several gates' commands over the time after which all of them repeat together."""
 
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
 from fractions import Fraction
 from itertools import pairwise
 
 from rulecheck.stage.gate_command import GateCommand, OnTimes, joined
 from rulecheck.values import Interval, Unknown
+from rulecheck.values.record import Record
 
 _MOST_PERIODS = 1000
 """A common multiple of more periods than this is not looked for."""
@@ -16,8 +16,7 @@ _SLIVER = 1e-9
 """Share of the window below which a set of commands is rounding."""
 
 
-@dataclass(frozen=True, slots=True)
-class Segment:
+class Segment(Record):
     """A time in which the same gates are on, seconds from the window's start."""
 
     start: float
@@ -29,8 +28,7 @@ class Segment:
         return self.end - self.start
 
 
-@dataclass(frozen=True, slots=True)
-class CommonWindow:
+class CommonWindow(Record):
     """On-times by gate over one window."""
 
     length: float

@@ -6,7 +6,6 @@ R99 PGND SG 1k         a resistor between them joins what is to be separate
 """
 
 from collections.abc import Iterable, Iterator, Mapping
-from dataclasses import dataclass
 
 import networkx as nx
 
@@ -14,13 +13,13 @@ from rulecheck.parts import Core, Kind, Part, PartList, is_barrier, joined_nets
 from rulecheck.stage.power_path import ISOLATION_CAPACITANCE
 from rulecheck.stage.stage import Barrier, Crossing
 from rulecheck.values import Unknown, natural_key
+from rulecheck.values.record import Record
 
 _Node = tuple[str, str]
 """(`net` or `part` or `domain`, name); a part with two sides has a node for each."""
 
 
-@dataclass(frozen=True, slots=True)
-class _Joints:
+class _Joints(Record):
     """Nets and the parts that join them, with what surely joins and what may."""
 
     sure: "nx.Graph[_Node]"

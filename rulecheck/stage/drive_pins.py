@@ -6,11 +6,11 @@ output-on     the pulling-up half of a split output; output-off the pulling-down
 """
 
 from collections.abc import Iterable
-from dataclasses import replace
 
 from rulecheck.parts import Kind, Part
 from rulecheck.stage.gate_drive import DrivenBy, DriveOutput
 from rulecheck.stage.layout import Layout
+from rulecheck.values.record import replace
 
 BY_KIND = {
     Kind.DRIVER: DrivenBy.DRIVER,

@@ -6,12 +6,12 @@ return on the power ground, source on the switching net           wrong
 """
 
 from collections.abc import Iterable
-from dataclasses import replace
 
 from rulecheck.parts import Kind, Part
 from rulecheck.stage.gate_drive import DrivenBy, GateDrive
 from rulecheck.stage.layout import Layout, Touch, main_nets
 from rulecheck.values import Unknown
+from rulecheck.values.record import replace
 
 _SENSE = 1.0
 """Ohm; a current sense resistor up to this between return and source counts as a joint."""

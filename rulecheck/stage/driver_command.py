@@ -6,12 +6,12 @@ input alone               output-high follows, output-low is its opposite, both 
 """
 
 from collections.abc import Callable
-from dataclasses import dataclass, replace
 
 from rulecheck.parts import Part
 from rulecheck.stage.common_window import common_window
 from rulecheck.stage.gate_command import GateCommand, OnTimes, both, joined, opposite
 from rulecheck.values import Interval, Unknown
+from rulecheck.values.record import Record, replace
 
 InputCommand = Callable[[str], GateCommand | None]
 """The command at a net, not inverted."""
@@ -20,8 +20,7 @@ _HALVES = frozenset({"on", "off", "up", "down", "source", "sink"})
 _TRUE = "true"
 
 
-@dataclass(frozen=True, slots=True)
-class DriverHabits:
+class DriverHabits(Record):
     """What the driver does by itself; seconds, None where nobody states it."""
 
     interlock: bool

@@ -1,16 +1,15 @@
 """When a gate is commanded on: on-times over a period, and what they rest on."""
 
 import math
-from dataclasses import dataclass
 
 from rulecheck.values import Interval
+from rulecheck.values.record import Record
 
 OnTimes = tuple[Interval, ...]
 """Seconds, sorted and apart from each other."""
 
 
-@dataclass(frozen=True, slots=True)
-class GateCommand:
+class GateCommand(Record):
     """The on-times of one gate, between 0 and `period`.
 
     One that runs past the end of the period goes on at its beginning. Of a source that describes

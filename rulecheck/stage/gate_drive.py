@@ -1,9 +1,9 @@
 """What drives a gate: the output, the resistances both ways, the return and the supply."""
 
-from dataclasses import dataclass
 from enum import StrEnum
 
 from rulecheck.values import Unknown
+from rulecheck.values.record import Record
 
 
 class DrivenBy(StrEnum):
@@ -27,8 +27,7 @@ class DrivenBy(StrEnum):
     NOTHING = ""
 
 
-@dataclass(frozen=True, slots=True)
-class DriveOutput:
+class DriveOutput(Record):
     """The pin that commands a gate, and the pins that go with it; merged nets, empty: no pin."""
 
     by: DrivenBy
@@ -55,8 +54,7 @@ class DriveOutput:
         return self.supply_role.startswith("bootstrap")
 
 
-@dataclass(frozen=True, slots=True)
-class GatePath:
+class GatePath(Record):
     """One direction of a gate's drive, between the gate and what pulls it."""
 
     resistance: float | Unknown
@@ -67,8 +65,7 @@ class GatePath:
     """The net that it ends at; empty where nothing pulls the gate that way."""
 
 
-@dataclass(frozen=True, slots=True)
-class GateClamp:
+class GateClamp(Record):
     """Zeners from a gate to its return; volts, gate over return."""
 
     parts: tuple[str, ...]
@@ -76,8 +73,7 @@ class GateClamp:
     lowest: float | Unknown
 
 
-@dataclass(frozen=True, slots=True)
-class GateDrive:
+class GateDrive(Record):
     """Everything found from one gate net back to what commands it."""
 
     gate: str

@@ -6,17 +6,16 @@ HO - 6.8 - K<D3<A - GH       turn-off: 22 and 6.8 ohm side by side, 5.19 ohm
 
 import math
 from collections.abc import Collection, Mapping
-from dataclasses import dataclass
 
 from rulecheck.values import Unknown
+from rulecheck.values.record import Record
 
 _FROM, _TO = "\0from", "\0to"
 _CONDUCTS = 1e-9
 """Of the whole voltage; a diode with less across it stays off."""
 
 
-@dataclass(frozen=True, slots=True)
-class Resistive:
+class Resistive(Record):
     """A resistor, or a bead of 0 ohm, between two nets."""
 
     name: str
@@ -24,8 +23,7 @@ class Resistive:
     ohms: float | Unknown
 
 
-@dataclass(frozen=True, slots=True)
-class OneWay:
+class OneWay(Record):
     """A diode, from anode to cathode."""
 
     name: str
@@ -33,8 +31,7 @@ class OneWay:
     cathode: str
 
 
-@dataclass(frozen=True, slots=True)
-class Network:
+class Network(Record):
     resistors: tuple[Resistive, ...]
     diodes: tuple[OneWay, ...]
 

@@ -8,7 +8,6 @@ fixed place in the stage: a port, ground, a supply, an inductor.
 """
 
 from collections import deque
-from dataclasses import dataclass
 
 from rulecheck.parts import Kind, Part
 from rulecheck.stage.layout import (
@@ -20,6 +19,7 @@ from rulecheck.stage.layout import (
     is_semiconductor,
     main_nets,
 )
+from rulecheck.values.record import Record
 
 _SUPPLY_ROLES = ("supply", "ground", "bootstrap", "return")
 _PASSED = frozenset({Kind.RESISTOR, Kind.CAPACITOR}) | DIODES
@@ -27,8 +27,7 @@ _BEAD = 1e-6
 """Henry; common practice: an inductor up to this at a gate is a bead or a gate choke."""
 
 
-@dataclass(frozen=True, slots=True)
-class GateRegion:
+class GateRegion(Record):
     nets: frozenset[str]
     parts: frozenset[str]
     """Names of passives, diodes and buffer transistors that drive some gate."""

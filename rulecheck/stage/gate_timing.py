@@ -5,7 +5,6 @@ V1 PWM 0 PULSE(0 5 ...)   XU1 input PWM, output HO   R1 HO GATE 4.7      Q1: as 
 """
 
 from collections.abc import Mapping
-from dataclasses import replace
 
 from rulecheck.parts import Kind, Part
 from rulecheck.stage.driver_command import command_of_output
@@ -14,6 +13,7 @@ from rulecheck.stage.gate_drive import DrivenBy, GateDrive
 from rulecheck.stage.layout import Layout, control_nets, main_nets
 from rulecheck.stage.waveform_command import command_of
 from rulecheck.values import Interval, Unknown
+from rulecheck.values.record import replace
 
 _LATCHING = frozenset({Kind.THYRISTOR, Kind.TRIAC})
 """Kinds that a gate turns on but not off."""

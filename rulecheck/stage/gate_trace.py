@@ -7,7 +7,6 @@ several outputs that reach a gate the most telling one counts.
 """
 
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, replace
 
 from rulecheck.parts import Conduction, Part
 from rulecheck.stage.drive_pins import pulls_down, pulls_up
@@ -19,6 +18,7 @@ from rulecheck.stage.gate_region import GateRegion
 from rulecheck.stage.gate_walk import Reached, Walk
 from rulecheck.stage.layout import Layout, control_nets, is_semiconductor, main_nets
 from rulecheck.values import Unknown, natural_key
+from rulecheck.values.record import Record, replace
 
 _RANK = {
     by: rank
@@ -63,8 +63,7 @@ def taken_for_drivers(drives: Mapping[str, GateDrive]) -> tuple[str, ...]:
     )
 
 
-@dataclass(frozen=True, slots=True)
-class _Command:
+class _Command(Record):
     """An output, and the drive transistors and the gate transformer between it and the gate."""
 
     output: DriveOutput

@@ -6,7 +6,6 @@ windings of gate transformers and drive transistors.
 
 from collections import deque
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, field
 
 from rulecheck.parts import Core, Kind, Part
 from rulecheck.stage.drive_pins import BY_KIND, drive_output, gives_out
@@ -22,6 +21,7 @@ from rulecheck.stage.layout import (
     main_nets,
 )
 from rulecheck.values import Unknown
+from rulecheck.values.record import Mutable, Record, field
 
 _FARTHEST = 100
 """Nets of one gate drive; a walk that meets more has left it."""
@@ -31,8 +31,7 @@ _DIODE_PINS = ("anode", "cathode")
 _PASSED = (Kind.RESISTOR, Kind.CAPACITOR, Kind.INDUCTOR, Kind.DIODE)
 
 
-@dataclass(frozen=True, slots=True)
-class Reached:
+class Reached(Record):
     """What a walk from some nets came to."""
 
     network: Network
@@ -47,8 +46,7 @@ class Reached:
     nets: frozenset[str]
 
 
-@dataclass(slots=True)
-class Walk:
+class Walk(Mutable):
     """A breadth-first walk over one gate's network; its state is what was met so far."""
 
     layout: Layout

@@ -8,24 +8,22 @@ piece with more than two joints is split again at its separation pairs.
 """
 
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
 from itertools import combinations
 
 import networkx as nx
 
 from rulecheck.values import natural_key
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Piece:
+class Piece(Record):
     """Devices between two nets; the nets in no particular direction."""
 
     terminals: tuple[str, str]
     parts: tuple[str, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class Grouping:
+class Grouping(Record):
     pieces: tuple[Piece, ...]
     dangling: tuple[str, ...]
     """Devices with fewer than two ends in the stage."""

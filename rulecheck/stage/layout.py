@@ -1,12 +1,12 @@
 """The circuit on merged nets: who touches which net, before anything is decided."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 
 from rulecheck.parts import Conduction, Kind, Part, PartList, through_nets
 from rulecheck.stage.sheet import Sheet
 from rulecheck.stage.wiring import Wiring
 from rulecheck.values import natural_key
+from rulecheck.values.record import Record
 
 _CONTROLS = ("gate", "base", "control-plus")
 DIODES = frozenset({Kind.DIODE, Kind.ZENER})
@@ -17,16 +17,14 @@ CIRCUITS = frozenset(
 """Kinds whose pins carry signals, or whose inside is not known."""
 
 
-@dataclass(frozen=True, slots=True)
-class Touch:
+class Touch(Record):
     """A part's pin on a net."""
 
     part: Part
     role: str
 
 
-@dataclass(frozen=True, slots=True)
-class Layout:
+class Layout(Record):
     parts: PartList
     sheet: Sheet
     merged: Mapping[str, str]

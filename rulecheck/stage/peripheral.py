@@ -9,7 +9,6 @@ a diode into a C that stands on a switching net and
 """
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 
 from rulecheck.parts import Kind, Part
 from rulecheck.stage.layout import (
@@ -21,6 +20,7 @@ from rulecheck.stage.layout import (
 )
 from rulecheck.stage.stage import Role
 from rulecheck.values import Unknown
+from rulecheck.values.record import Record
 
 SNUBBER_CAPACITANCE = 100e-9
 """Farad; common practice: a larger capacitor across one switch is no snubber."""
@@ -31,16 +31,14 @@ SHARING_RESISTANCE = 1e3
 """Ohm; a resistor across a device from here on shares voltage or bleeds."""
 
 
-@dataclass(frozen=True, slots=True)
-class Peripheral:
+class Peripheral(Record):
     roles: Mapping[str, Role]
     refers_to: Mapping[str, str]
     """Part name -> the device or the net that the network stands at."""
     assumed: tuple[str, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class _Found:
+class _Found(Record):
     part: Part
     role: Role
     at: str

@@ -2,7 +2,6 @@
 
 import difflib
 from collections.abc import Iterator, Mapping, Sequence
-from dataclasses import dataclass
 
 from rulecheck.parts import Kind, Part
 from rulecheck.stage.branches import source_range
@@ -10,10 +9,10 @@ from rulecheck.stage.layout import SOURCES, Layout, is_semiconductor, main_nets
 from rulecheck.stage.sheet import Sheet, SheetPort
 from rulecheck.stage.stage import Port, PortKind
 from rulecheck.values import Interval, Problem, Span, error
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Ports:
+class Ports(Record):
     ports: tuple[Port, ...]
     problems: tuple[Problem, ...]
 

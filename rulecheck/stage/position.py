@@ -1,13 +1,11 @@
 """Switch positions: two-terminal groups of power devices that act as one switch."""
 
-from dataclasses import dataclass
-
 from rulecheck.parts import Edge
 from rulecheck.values import Span
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Position:
+class Position(Record):
     """One switch position between the (merged) nets `start` and `end`.
 
     The off-state voltage is start over end, the on-state current flows from start to end.

@@ -5,7 +5,6 @@ of a diode); of a symmetric piece it is the net with the higher average potentia
 """
 
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import replace
 
 import networkx as nx
 
@@ -13,6 +12,7 @@ from rulecheck.parts import Conduction, Edge, Part
 from rulecheck.stage.grouping import Piece
 from rulecheck.stage.position import Position
 from rulecheck.values import natural_key
+from rulecheck.values.record import replace
 
 _CONDUCTING = frozenset({Conduction.FREE, Conduction.GATED})
 _FREE = frozenset({Conduction.FREE})

@@ -6,7 +6,6 @@
 
 import math
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass, field
 from itertools import combinations
 
 from rulecheck.reading import SourceText, read_yaml
@@ -20,6 +19,7 @@ from rulecheck.stage.sheet_file import (
 from rulecheck.stage.sheet_reader import Path, Reader, modulated, read_alternating
 from rulecheck.stage.stage import Barrier, PortKind, Role, Switching
 from rulecheck.values import Dimension, Interval, Problem, Span
+from rulecheck.values.record import Record, field
 
 ROLES = {role.value.replace(" ", "-"): role for role in Role} | {
     "bulk": Role.BULK_CAPACITOR,
@@ -27,8 +27,7 @@ ROLES = {role.value.replace(" ", "-"): role for role in Role} | {
 }
 
 
-@dataclass(frozen=True, slots=True)
-class SheetPort:
+class SheetPort(Record):
     """A port with quantities read and nets as written; None is what the sheet leaves open."""
 
     name: str
@@ -50,8 +49,7 @@ class SheetPort:
     withstands: tuple[str, ...] = ()
 
 
-@dataclass(frozen=True, slots=True)
-class Override:
+class Override(Record):
     name: str
     current: Interval | None
     voltage: Interval | None
@@ -61,23 +59,20 @@ class Override:
     balance: str = ""
 
 
-@dataclass(frozen=True, slots=True)
-class LegSheet:
+class LegSheet(Record):
     midpoint: str
     switching: Switching
     span: Span
 
 
-@dataclass(frozen=True, slots=True)
-class Domain:
+class Domain(Record):
     """Nets, as written, that belong together galvanically."""
 
     nets: tuple[str, ...]
     span: Span
 
 
-@dataclass(frozen=True, slots=True)
-class SupplySheet:
+class SupplySheet(Record):
     """What the sheet states of a gate supply: its voltage over the return that goes with it."""
 
     net: str
@@ -85,8 +80,7 @@ class SupplySheet:
     span: Span
 
 
-@dataclass(frozen=True, slots=True)
-class Sheet:
+class Sheet(Record):
     file: str = ""
     ports: tuple[SheetPort, ...] = ()
     switching: Switching = field(default_factory=Switching)
@@ -101,8 +95,7 @@ class Sheet:
     gate_supplies: tuple[SupplySheet, ...] = ()
 
 
-@dataclass(frozen=True, slots=True)
-class SheetReading:
+class SheetReading(Record):
     """The sheet as far as it could be read, and every mistake in it."""
 
     sheet: Sheet

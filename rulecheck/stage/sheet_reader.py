@@ -6,7 +6,6 @@
 import math
 import re
 from collections.abc import Sequence
-from dataclasses import dataclass, field
 from typing import TypeVar
 
 from rulecheck.reading import YamlReading
@@ -14,6 +13,7 @@ from rulecheck.reading.quantities import as_interval, as_number
 from rulecheck.stage.sheet_file import PortEntry, SheetFile
 from rulecheck.stage.stage import PortKind
 from rulecheck.values import Dimension, Interval, Problem, error
+from rulecheck.values.record import Mutable, field
 
 Path = tuple[str | int, ...]
 Kept = TypeVar("Kept", float, Interval)
@@ -23,8 +23,7 @@ MOST_MODULATION = 2.0 / math.sqrt(3.0)
 """Of a three-phase bridge, before it clips."""
 
 
-@dataclass(slots=True)
-class Reader:
+class Reader(Mutable):
     """Collects the problems of one file while its entries are converted."""
 
     marks: YamlReading[SheetFile]

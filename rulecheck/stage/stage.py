@@ -1,7 +1,6 @@
 """The product of this step: the power stage as ports, branches and positions on merged nets."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
 from enum import StrEnum
 
 from rulecheck.parts import PartList
@@ -9,6 +8,7 @@ from rulecheck.stage.gate_command import GateCommand
 from rulecheck.stage.gate_drive import GateDrive
 from rulecheck.stage.position import Position
 from rulecheck.values import Interval, Span, Unknown
+from rulecheck.values.record import Record, field
 
 
 class PortKind(StrEnum):
@@ -17,8 +17,7 @@ class PortKind(StrEnum):
     PHASES = "phases"
 
 
-@dataclass(frozen=True, slots=True)
-class Port:
+class Port(Record):
     """Where the stage meets the world, from the sheet or from a source of the netlist.
 
     `current` is the mean (DC) or plus and minus the amplitude (AC) out of the first net into
@@ -64,8 +63,7 @@ class BranchKind(StrEnum):
     RESISTOR = "resistor"
 
 
-@dataclass(frozen=True, slots=True)
-class Branch:
+class Branch(Record):
     """A two-terminal power branch that is no position, on merged nets.
 
     VOLTAGE: sources, voltage ports, bulk capacitors. CURRENT: inductors, current sources and
@@ -87,8 +85,7 @@ class Branch:
     """The voltage or current that sheet or source states."""
 
 
-@dataclass(frozen=True, slots=True)
-class Transformer:
+class Transformer(Record):
     """Ideal windings on one core; each is (start, end) with the dot at start."""
 
     name: str
@@ -122,8 +119,7 @@ class Role(StrEnum):
     IGNORED = "ignored"
 
 
-@dataclass(frozen=True, slots=True)
-class Switching:
+class Switching(Record):
     """Of one leg or of all; None where nobody states it. Hertz and seconds."""
 
     frequency: float | None = None
@@ -134,8 +130,7 @@ class Switching:
     """Of one leg: when it turns on, degrees of the switching period."""
 
 
-@dataclass(frozen=True, slots=True)
-class Barrier:
+class Barrier(Record):
     """Two domains of the sheet that are to be separate; volts, None where nobody states them."""
 
     domains: tuple[str, str]
@@ -145,8 +140,7 @@ class Barrier:
     span: Span
 
 
-@dataclass(frozen=True, slots=True)
-class Crossing:
+class Crossing(Record):
     """A part at which two domains meet."""
 
     name: str
@@ -158,8 +152,7 @@ class Crossing:
     """Where it joins the domains: all parts of the shortest way, in order."""
 
 
-@dataclass(frozen=True, slots=True)
-class Stage:
+class Stage(Record):
     netlist: str
     parts: PartList
     ports: tuple[Port, ...]

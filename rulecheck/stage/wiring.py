@@ -9,12 +9,12 @@ are wires here, unless the sheet gives the part another role. They stay parts fo
 import difflib
 from collections import Counter
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
 
 from rulecheck.parts import Kind, Part, PartList, through_nets
 from rulecheck.stage.sheet import Sheet
 from rulecheck.stage.stage import Role
 from rulecheck.values import Unknown, natural_key, write_quantity
+from rulecheck.values.record import Record
 
 WIRE_RESISTANCE = 0.1
 """Ohm; common practice: shunts, jumpers and beads are below it, loads above."""
@@ -27,8 +27,7 @@ _THROUGH_WORDS = {
 }
 
 
-@dataclass(frozen=True, slots=True)
-class Wiring:
+class Wiring(Record):
     """Net -> the net that stands for it, the parts that act as wires, and why."""
 
     merged: Mapping[str, str]

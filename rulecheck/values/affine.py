@@ -1,16 +1,15 @@
 """Affine forms: a constant plus multiples of named variables, so that a number keeps its reason."""
 
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
 
 from rulecheck.values.interval import Interval, point
+from rulecheck.values.record import Record
 from rulecheck.values.unknown import Unknown
 
 NEGLIGIBLE = 1e-9
 
 
-@dataclass(frozen=True, slots=True)
-class AffineForm:
+class AffineForm(Record):
     """`constant + sum(coefficient * variable)`, terms sorted by name, none negligible."""
 
     terms: tuple[tuple[str, float], ...] = ()

@@ -1,11 +1,11 @@
 """Closed ranges of real numbers; an infinite end means "no bound known, the sign is"."""
 
 import math
-from dataclasses import dataclass
+
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True, order=True)
-class Interval:
+class Interval(Record, order=True):
     low: float
     high: float
 

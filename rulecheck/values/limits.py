@@ -4,12 +4,12 @@ Every limit has a name, so that `--limit NAME=N` raises it, and a message that s
 """
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 from types import MappingProxyType
 
+from rulecheck.values.record import Record
 
-@dataclass(frozen=True, slots=True)
-class Bound:
+
+class Bound(Record):
     """A limit as it is without an option, the most that it may be raised to, and what it counts."""
 
     usual: int
@@ -34,8 +34,7 @@ BOUNDS: Mapping[str, Bound] = MappingProxyType(
 )
 
 
-@dataclass(frozen=True, slots=True)
-class Limits:
+class Limits(Record):
     """The limits in force: the usual ones but for those named in `changed`."""
 
     changed: tuple[tuple[str, int], ...] = ()

@@ -1,8 +1,8 @@
 """A mistake in the input, or a reading worth a remark, as a value."""
 
-from dataclasses import dataclass
 from enum import StrEnum
 
+from rulecheck.values.record import Record
 from rulecheck.values.span import Span
 
 
@@ -13,8 +13,7 @@ class Gravity(StrEnum):
     NOTE = "note"
 
 
-@dataclass(frozen=True, slots=True)
-class Problem:
+class Problem(Record):
     """One message about the input: where, what is wrong, and what to do about it."""
 
     span: Span

@@ -1,8 +1,9 @@
 """The four quadrants of the V-I plane: off-state voltage across, on-state current up."""
 
 from collections.abc import Iterable
-from dataclasses import dataclass
 from enum import IntEnum
+
+from rulecheck.values.record import Record
 
 
 class Quadrant(IntEnum):
@@ -38,8 +39,7 @@ _CLASSES = {
 }
 
 
-@dataclass(frozen=True, slots=True)
-class QuadrantSet:
+class QuadrantSet(Record):
     """A set of quadrants, kept sorted."""
 
     members: tuple[Quadrant, ...] = ()

@@ -4,8 +4,9 @@ Here a prefix is case-sensitive, as SI has it (`m` milli, `M` mega), unlike in a
 """
 
 import re
-from dataclasses import dataclass
 from enum import StrEnum
+
+from rulecheck.values.record import Record
 
 
 class Dimension(StrEnum):
@@ -52,16 +53,14 @@ _NUMBER = re.compile(r"\s*([+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?)\s*(.*?)\s*
 _PERCENT = 0.01
 
 
-@dataclass(frozen=True, slots=True)
-class Quantity:
+class Quantity(Record):
     """A value in SI base units; `dimension` is NUMBER where no unit was written."""
 
     value: float
     dimension: Dimension
 
 
-@dataclass(frozen=True, slots=True)
-class NotAQuantity:
+class NotAQuantity(Record):
     """Why a text is no quantity, in words for the user."""
 
     why: str

@@ -1,10 +1,9 @@
 """Where something stands in a file."""
 
-from dataclasses import dataclass
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True, order=True)
-class Span:
+class Span(Record, order=True):
     """A place in a file; line and column start at 1."""
 
     file: str

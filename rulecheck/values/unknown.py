@@ -1,10 +1,9 @@
 """A datum that nobody stated, as a value of its own."""
 
-from dataclasses import dataclass
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True, order=True)
-class Unknown:
+class Unknown(Record, order=True):
     """What is not known, and what the user would write, and where, to settle it.
 
     >>> Unknown("blocking rating of Q1", "ratings.blocking of part SW-N100 (in hut.parts.yaml)")

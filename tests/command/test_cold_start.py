@@ -8,7 +8,7 @@ import pytest
 
 from tests.command.running import clean_environment
 
-HEAVY = {"lark", "yaml", "networkx", "rich", "numpy", "msgspec"}
+HEAVY = {"lark", "yaml", "networkx", "rich", "numpy", "dataclasses"}
 PROBE = """
 import atexit, json, sys
 def tell():

@@ -6,7 +6,6 @@
 """
 
 from collections.abc import Iterable, Mapping
-from dataclasses import replace
 
 from rulecheck.capability import Capability, find_capabilities
 from rulecheck.netlist import Circuit, Element, Model, Subcircuit, read_circuit_text
@@ -24,6 +23,7 @@ from rulecheck.parts.edges import ROWS, find_edges
 from rulecheck.reading import SourceText
 from rulecheck.stage import Position
 from rulecheck.values import Dimension, Span, Unknown, errors_of
+from rulecheck.values.record import replace
 
 HERE = Span("hut.cir", 1)
 

@@ -1,9 +1,8 @@
 """Coupled inductors become cores."""
 
-from dataclasses import replace
-
 from rulecheck.netlist import Element
 from rulecheck.parts import PartList
+from rulecheck.values.record import replace
 from tests.kit.parts import card, identified
 
 WINDINGS = {"L1": 100e-6, "L2": 400e-6, "L3": 25e-6, "L4": 1e-6}

@@ -1,12 +1,11 @@
 """What must be true of every part list."""
 
-from dataclasses import replace
-
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from rulecheck.netlist import Element
 from rulecheck.parts import PartList
+from rulecheck.values.record import replace
 from tests.kit.parts import card, identified, model
 
 DATA = """\

@@ -1,7 +1,6 @@
 """What must be true of every position, whatever its devices."""
 
 from collections.abc import Mapping
-from dataclasses import replace
 from itertools import product
 
 from hypothesis import assume, given, settings
@@ -10,6 +9,7 @@ from hypothesis import strategies as st
 from rulecheck.capability import Capability, Direction
 from rulecheck.parts import Part
 from rulecheck.values import QuadrantSet, Unknown
+from rulecheck.values.record import replace
 from tests.kit.parts import capability, device
 
 KINDS = [

@@ -1,7 +1,5 @@
 """Taking a datum away never turns an answer into another decided one."""
 
-from dataclasses import replace
-
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
@@ -10,6 +8,7 @@ from rulecheck.rulebook.binding import bind
 from rulecheck.rulebook.parsing import parse_condition
 from rulecheck.rulebook.scope import OWN, Bound, Scene
 from rulecheck.values import Dimension, Interval, Unknown
+from rulecheck.values.record import replace
 from tests.rulebook.making import facts, subject
 
 TERM = VOCABULARY["position"]

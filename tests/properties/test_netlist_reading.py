@@ -1,7 +1,6 @@
 """What must hold for every netlist: nothing is lost, nothing raises, notation changes nothing."""
 
 import string
-from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
@@ -12,6 +11,7 @@ from hypothesis import strategies as st
 from rulecheck.netlist import Circuit, Element, circuit_text, read_circuit, read_circuit_text
 from rulecheck.reading import SourceText
 from rulecheck.values import errors_of
+from rulecheck.values.record import replace
 from tests.kit.netlists import circuit
 
 # The first parse of a process builds the parsers, so that no single run is held to a time.

@@ -1,12 +1,11 @@
 """Hand-made findings of every verdict."""
 
-import dataclasses
-
 from rulecheck.demand import Undetermined
 from rulecheck.report.lint_result import LintReport, LintRun, in_order
 from rulecheck.rulebook import Excuse, Rule, SwitchedOff, Tally, Verdict, Waiting
 from rulecheck.rulebook.tree import Truth
 from rulecheck.values import Span, Unknown, note
+from rulecheck.values.record import replace
 
 RATING = Unknown("blocking of Q2", "ratings.blocking of part SW-N100-7 (in hut.parts.yaml)")
 BROKEN = Verdict(
@@ -25,7 +24,7 @@ BROKEN = Verdict(
     None,
     "ab12",
 )
-UNDECIDED = dataclasses.replace(
+UNDECIDED = replace(
     BROKEN,
     rule="blocking-rating",
     verdict="undecided",
@@ -37,7 +36,7 @@ UNDECIDED = dataclasses.replace(
     related=(),
     fingerprint="cd34",
 )
-EXCUSED = dataclasses.replace(
+EXCUSED = replace(
     BROKEN,
     rule="unlike-devices",
     level="warning",

@@ -1,6 +1,5 @@
 """Findings in their six forms, from hand-made verdicts."""
 
-import dataclasses
 import importlib.util
 import json
 import pathlib
@@ -24,6 +23,7 @@ from rulecheck.report import (
 from rulecheck.report.lint_result import waiting_lines
 from rulecheck.rulebook import Waiting
 from rulecheck.values import Span, Unknown
+from rulecheck.values.record import replace
 from tests.report.examples import rendered
 from tests.report.lint_examples import BROKEN, EXCUSED, RATING, UNDECIDED, lint_run
 
@@ -66,7 +66,7 @@ def test_json_says_what_an_undecided_check_waits_for_and_who_excused_a_broken_on
 
 def test_several_netlists_make_a_list():
     run = lint_run()
-    two = dataclasses.replace(run, reports=run.reports * 2)
+    two = replace(run, reports=run.reports * 2)
     assert [d["netlist"] for d in json.loads(rendered(lint_json.render, two))] == ["hut.cir"] * 2
 
 
@@ -107,7 +107,7 @@ def test_quiet_keeps_what_is_broken_and_what_is_open(renderer):
 
 @pytest.mark.parametrize("width", [60, 80, 120])
 def test_the_table_wraps_its_messages(width):
-    long = dataclasses.replace(BROKEN, message="Q1 must carry current backwards. " * 12)
+    long = replace(BROKEN, message="Q1 must carry current backwards. " * 12)
     text = rendered(lint_table.render, lint_run(long), Look(width))
     body = [line for line in text.splitlines() if line.startswith("          ")]
     assert len(body) > 3
@@ -159,7 +159,7 @@ def test_every_sarif_rule_index_points_at_its_rule():
 
 
 def test_sarif_quotes_a_file_name_that_is_no_uri():
-    odd = dataclasses.replace(BROKEN, span=Span("hut netlists/a#1.cir", 2))
+    odd = replace(BROKEN, span=Span("hut netlists/a#1.cir", 2))
     log = json.loads(rendered(lint_sarif.render, lint_run(odd)))
     place = log["runs"][0]["results"][0]["locations"][0]["physicalLocation"]
     assert place["artifactLocation"]["uri"] == "hut%20netlists/a%231.cir"
@@ -182,7 +182,7 @@ def test_junit_counts_undecided_as_failures_where_they_fail_the_run():
 
 
 def test_junit_stays_well_formed_whatever_the_names_hold():
-    odd = dataclasses.replace(BROKEN, subject="Q\x00<&\x1b\ud800", message="a\x07]]>")
+    odd = replace(BROKEN, subject="Q\x00<&\x1b\ud800", message="a\x07]]>")
     assert ElementTree.fromstring(rendered(lint_junit.render, lint_run(odd))) is not None
 
 
@@ -190,9 +190,9 @@ def test_junit_stays_well_formed_whatever_the_names_hold():
     ("finding", "fail_at", "undecided_fails", "failed"),
     [
         (BROKEN, "error", False, True),
-        (dataclasses.replace(BROKEN, level="warning"), "error", False, False),
-        (dataclasses.replace(BROKEN, level="warning"), "warning", False, True),
-        (dataclasses.replace(BROKEN, level="note"), "note", False, True),
+        (replace(BROKEN, level="warning"), "error", False, False),
+        (replace(BROKEN, level="warning"), "warning", False, True),
+        (replace(BROKEN, level="note"), "note", False, True),
         (UNDECIDED, "note", False, False),
         (UNDECIDED, "error", True, True),
         (EXCUSED, "note", True, False),
@@ -225,7 +225,7 @@ def test_broken_findings_come_before_excused_and_undecided_ones():
 
 @pytest.mark.parametrize("renderer", [lint_table, lint_markdown])
 def test_an_undecided_check_that_cannot_say_why_is_still_shown(renderer):
-    text = rendered(renderer.render, lint_run(dataclasses.replace(UNDECIDED, missing=())))
+    text = rendered(renderer.render, lint_run(replace(UNDECIDED, missing=())))
     assert "blocking-rating on Q2: Q2 must block 58 V" in text
 
 
@@ -249,13 +249,13 @@ def test_the_same_datum_of_several_cards_is_one_line():
     "renderer", [lint_table, lint_lines, lint_markdown, lint_sarif, lint_junit]
 )
 def test_a_netlist_that_could_not_be_analysed_is_named(renderer):
-    run = dataclasses.replace(lint_run(), unusable=("pump.cir",))
+    run = replace(lint_run(), unusable=("pump.cir",))
     text = rendered(renderer.render, run, Look(200)).replace("\\", "")
     assert "pump.cir could not be analysed" in text
 
 
 def test_sarif_and_junit_say_that_the_run_was_not_whole():
-    run = dataclasses.replace(lint_run(), unusable=("pump.cir",))
+    run = replace(lint_run(), unusable=("pump.cir",))
     log = json.loads(rendered(lint_sarif.render, run))
     jsonschema.validate(log, sarif_schema())
     assert log["runs"][0]["invocations"][0]["executionSuccessful"] is False

@@ -1,7 +1,6 @@
 """Verdicts: three values, one message, what undecided ones wait for, deviations and records."""
 
 import datetime
-from dataclasses import replace
 
 import pytest
 
@@ -19,6 +18,7 @@ from rulecheck.rulebook import (
     unused_deviations,
 )
 from rulecheck.values import Interval, Problem, Span
+from rulecheck.values.record import replace
 from tests.rulebook.making import facts, missing, pack, subject
 
 AT_LEAST_100 = Bounds(Interval(100.0, float("inf")), (missing("rating"),))

@@ -1,13 +1,12 @@
 """Every shipped rule gives on its own examples what they say, and only as it stands."""
 
-from dataclasses import fields, replace
-
 import pytest
 
 from rulecheck.rulebook.examples import try_rule
 from rulecheck.rulebook.ready import make_ready
 from rulecheck.rulebook.rulebook import ReadyRule
 from rulecheck.rulebook.tree import Compared, Negated, Node
+from rulecheck.values.record import replace
 from tests.rules.shipped import analyse, rulebook
 
 READY = {rule.rule.id: rule for rule in rulebook().ready}
@@ -82,15 +81,15 @@ def _turned(node: Node) -> list[Node]:
     found: list[Node] = []
     if isinstance(node, Compared):
         found.append(replace(node, sign=OPPOSITE[node.sign]))
-    for field in fields(node):
-        value = getattr(node, field.name)
+    for name in node.__struct_fields__:
+        value = getattr(node, name)
         if isinstance(value, Node):
-            found += [replace(node, **{field.name: inner}) for inner in _turned(value)]
+            found += [replace(node, **{name: inner}) for inner in _turned(value)]
         elif isinstance(value, tuple):
             for place, item in enumerate(value):
                 if isinstance(item, Node):
                     found += [
-                        replace(node, **{field.name: (*value[:place], inner, *value[place + 1 :])})
+                        replace(node, **{name: (*value[:place], inner, *value[place + 1 :])})
                         for inner in _turned(item)
                     ]
     return found

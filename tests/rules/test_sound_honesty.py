@@ -5,7 +5,6 @@ A few data of each stage by default, spread over them all; EVERY_DATUM=1 takes e
 
 import os
 from collections.abc import Iterator, Sequence
-from dataclasses import replace
 from functools import cache
 from pathlib import Path
 from typing import Any
@@ -21,6 +20,7 @@ from rulecheck.pipeline import Analysis, Unusable, analyse, analyse_text
 from rulecheck.reading import SourceText, read_text
 from rulecheck.rulebook import judge
 from rulecheck.stage import Position, Stage
+from rulecheck.values.record import replace
 from tests.rules.shipped import rulebook
 
 SOUND = sorted((Path(__file__).resolve().parent.parent / "circuits" / "sound").glob("*.cir"))

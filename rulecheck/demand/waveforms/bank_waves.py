@@ -1,7 +1,6 @@
 """Rms current and ripple voltage of capacitors, bank by bank."""
 
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
 
 import numpy as np
 
@@ -30,12 +29,12 @@ from rulecheck.demand.waveforms.systems import System, build_system
 from rulecheck.demand.waveforms.windings import WindingShares, winding_shares
 from rulecheck.stage import Branch
 from rulecheck.values import Unknown, variable
+from rulecheck.values.record import Record
 
 _SHARED = "capacitors side by side share their current by capacitance; ports supply steady currents"
 
 
-@dataclass(frozen=True, slots=True)
-class _Around:
+class _Around(Record):
     """What is at a bank's nets."""
 
     positions: tuple[Feed, ...]

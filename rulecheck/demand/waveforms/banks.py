@@ -6,7 +6,6 @@ of none of them is known.
 """
 
 from collections.abc import Hashable, Iterable, Mapping, Sequence
-from dataclasses import dataclass
 
 import numpy as np
 
@@ -16,12 +15,12 @@ from rulecheck.demand.waveforms.scene import Pieces, Scene
 from rulecheck.demand.waveforms.windings import WindingShares
 from rulecheck.parts import Kind
 from rulecheck.stage import Branch, BranchKind, Stage
+from rulecheck.values.record import Record
 
 _SLACK = 1e-6
 
 
-@dataclass(frozen=True, slots=True)
-class Bundle:
+class Bundle(Record):
     """Capacitors between the same two nets, which carry their current as one."""
 
     start: str
@@ -37,8 +36,7 @@ class Bundle:
         return (branch.value or 0.0) / self.farad if self.farad else 1.0
 
 
-@dataclass(frozen=True, slots=True)
-class Bank:
+class Bank(Record):
     nets: tuple[str, ...]
     bundles: tuple[Bundle, ...]
 
@@ -47,8 +45,7 @@ class Bank:
         return tuple(branch for bundle in self.bundles for branch in bundle.members)
 
 
-@dataclass(frozen=True, slots=True)
-class Feed:
+class Feed(Record):
     """Something that drives a current out of one net and into another."""
 
     name: str

@@ -2,7 +2,6 @@
 
 import math
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import replace
 
 import numpy as np
 
@@ -17,6 +16,7 @@ from rulecheck.demand.waveforms.scene import Pieces, Scene
 from rulecheck.demand.waveforms.setting import Setting, build_setting, joined_groups
 from rulecheck.demand.waveforms.systems import System, build_system
 from rulecheck.values import Interval, Unknown, point
+from rulecheck.values.record import replace
 
 _POSITION = ("mean", "rms", "forward_mean", "forward_rms", "reverse_mean", "reverse_rms")
 _COIL = ("mean", "rms", "ripple", "peak")

@@ -12,7 +12,6 @@ by Gauss and Legendre, sector by sector, since the order of the edges changes at
 
 import math
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 
 import numpy as np
 
@@ -24,6 +23,7 @@ from rulecheck.demand.waveforms.pieces import Array
 from rulecheck.demand.waveforms.timing import Pair, Timeline
 from rulecheck.stage import Port, PortKind
 from rulecheck.values import AffineForm, Interval, Unknown
+from rulecheck.values.record import Record
 
 _SECTORS, _NODES = 12, 3
 LEVELS = {"modulation": 6, "power": 3}
@@ -55,8 +55,7 @@ def swing_over_a_cycle(current: Array) -> Array:
     return np.asarray(charge.max(axis=-1) - charge.min(axis=-1))
 
 
-@dataclass(frozen=True, slots=True)
-class Sines:
+class Sines(Record):
     """One AC port and the legs that make its waveform."""
 
     port: Port

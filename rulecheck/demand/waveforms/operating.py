@@ -5,7 +5,6 @@ boost, v(in) 12 ... 24 V, v(out) 48 V, out draws 0 ... 5 A
 """
 
 from collections.abc import Callable, Iterable, Mapping, Sequence
-from dataclasses import dataclass, field
 
 import numpy as np
 
@@ -14,6 +13,7 @@ from rulecheck.demand.waveforms.pieces import Array
 from rulecheck.demand.waveforms.records import Corner
 from rulecheck.stage import BranchKind, Port, PortKind, Stage
 from rulecheck.values import AffineForm, Interval, Unknown, natural_key
+from rulecheck.values.record import Record, field
 
 LEVELS = (1, 33, 13, 7, 5, 4, 3, 3, 2, 2, 2)
 """By the number of quantities that have a range: how many values of each are tried."""
@@ -25,8 +25,7 @@ _COARSE = np.array([-0.5, -0.2, 0.0, 0.2, 0.5])
 Values = Mapping[str, Array]
 
 
-@dataclass(frozen=True, slots=True)
-class Law:
+class Law(Record):
     """A port's current that follows from other quantities at every point."""
 
     name: str
@@ -34,8 +33,7 @@ class Law:
     value: Callable[[Values], Array]
 
 
-@dataclass(frozen=True, slots=True)
-class Space:
+class Space(Record):
     """The quantities that vary freely, and those that follow from them."""
 
     ranges: Mapping[str, Interval]

@@ -1,16 +1,15 @@
 """The product: mean, rms, peak and ripple of inductors, capacitors and positions."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
 
 from rulecheck.values import Interval, Unknown
+from rulecheck.values.record import Record, field
 
 Corner = tuple[tuple[str, float], ...]
 """Values of the stiff quantities at which an end is met."""
 
 
-@dataclass(frozen=True, slots=True)
-class Derived:
+class Derived(Record):
     """One derived quantity over all operating points, with the corners that gave its ends."""
 
     range: Interval | Unknown
@@ -20,8 +19,7 @@ class Derived:
     """Where something is: the true range lies within this one, and this would narrow it."""
 
 
-@dataclass(frozen=True, slots=True)
-class InductorWaves:
+class InductorWaves(Record):
     """Ampere; `ripple` is peak to peak, `peak` the largest magnitude."""
 
     mean: Derived
@@ -30,8 +28,7 @@ class InductorWaves:
     peak: Derived
 
 
-@dataclass(frozen=True, slots=True)
-class CapacitorWaves:
+class CapacitorWaves(Record):
     """`rms` in ampere, `ripple` in volt peak to peak, `share` of what its bank carries."""
 
     rms: Derived
@@ -39,8 +36,7 @@ class CapacitorWaves:
     share: float | Unknown
 
 
-@dataclass(frozen=True, slots=True)
-class PositionWaves:
+class PositionWaves(Record):
     """Ampere over the whole period: of the current, and of its two directions apart."""
 
     mean: Derived
@@ -51,8 +47,7 @@ class PositionWaves:
     reverse_rms: Derived
 
 
-@dataclass(frozen=True, slots=True)
-class Waveforms:
+class Waveforms(Record):
     """By part or position name."""
 
     inductors: Mapping[str, InductorWaves] = field(default_factory=dict)

@@ -1,7 +1,6 @@
 """All currents of some groups at some operating points, as straight pieces within a period."""
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 
 import numpy as np
 
@@ -10,13 +9,13 @@ from rulecheck.demand.waveforms.operating import Values, value_of
 from rulecheck.demand.waveforms.pieces import Array
 from rulecheck.demand.waveforms.timing import IDLE, Pair, Timeline, merged, voltage_in
 from rulecheck.values import AffineForm, Interval
+from rulecheck.values.record import Record
 
 Pieces = tuple[Array, Array]
 """A current at the first and the last instant of each interval."""
 
 
-@dataclass(frozen=True, slots=True)
-class Coil:
+class Coil(Record):
     """An inductor or magnetising branch with what fixes its mean."""
 
     carrier: Carrier
@@ -26,8 +25,7 @@ class Coil:
     """Its whole range, where nobody states the mean."""
 
 
-@dataclass(frozen=True, slots=True)
-class Scene:
+class Scene(Record):
     values: Values
     """Of one shape, or broadcast to it: operating point, angle."""
     shape: tuple[int, ...]

@@ -1,7 +1,6 @@
 """What all systems of a stage share: pairs of states, sines, routes, frequencies and delays."""
 
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass
 
 from rulecheck.demand.analysis import Worked
 from rulecheck.demand.routes import Carrier, Route
@@ -9,13 +8,13 @@ from rulecheck.demand.unions import Unions
 from rulecheck.demand.waveforms.modulation import Sines, find_sines
 from rulecheck.demand.waveforms.timing import Pair, pair_of
 from rulecheck.stage import PortKind
+from rulecheck.values.record import Record
 
 _SAME_PERIOD = 0.01
 """Share by which a command's period may differ from the switching period."""
 
 
-@dataclass(frozen=True, slots=True)
-class Setting:
+class Setting(Record):
     """What all systems of a stage share."""
 
     worked: Worked

@@ -6,7 +6,6 @@ inverter is one system, since its legs share a star point and a pattern.
 
 import math
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass, field
 
 import numpy as np
 
@@ -23,13 +22,13 @@ from rulecheck.demand.waveforms.scene import Coil, Scene, set_scene
 from rulecheck.demand.waveforms.setting import Setting, delay_line, frequency_of
 from rulecheck.demand.waveforms.timing import IDLE, Pair, Timeline, duty_of, voltage_in
 from rulecheck.values import AffineForm, Unknown
+from rulecheck.values.record import Record, field
 
 MOST_GROUPS = 8
 """More groups than this in one system are not worked out."""
 
 
-@dataclass(frozen=True, slots=True)
-class System:
+class System(Record):
     setting: Setting
     indices: tuple[int, ...]
     coils: tuple[Coil, ...]

@@ -8,7 +8,6 @@ Erickson and Maksimovic, Fundamentals of Power Electronics, chapters 2 and 5 (fr
 """
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 
 import numpy as np
 
@@ -21,14 +20,14 @@ from rulecheck.demand.topology import Cluster
 from rulecheck.demand.waveforms.operating import Values, value_of
 from rulecheck.demand.waveforms.pieces import Array
 from rulecheck.values import AffineForm
+from rulecheck.values.record import Record
 
 IDLE = -1
 _TOUCHES = 1e-9
 _MOST_STATES = 12
 
 
-@dataclass(frozen=True, slots=True)
-class Pair:
+class Pair(Record):
     """A group with two states: `first` has its upper, or only, gate on."""
 
     index: int
@@ -42,8 +41,7 @@ class Pair:
         return self.first, self.second
 
 
-@dataclass(frozen=True, slots=True)
-class Timeline:
+class Timeline(Record):
     """Segments of a period in order; arrays of one value an operating point (and angle)."""
 
     segments: Sequence[tuple[int, Array]]

@@ -1,7 +1,6 @@
 """Winding currents at every instant, from Kirchhoff's law where only they and switches meet."""
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 
 import numpy as np
 
@@ -9,10 +8,10 @@ from rulecheck.demand.topology import magnetising_name
 from rulecheck.demand.voltages import name_of
 from rulecheck.demand.waveforms.scene import Pieces, Scene
 from rulecheck.stage import BranchKind, Stage, Transformer
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class WindingShares:
+class WindingShares(Record):
     """Each winding's current as a linear function of switch and coil currents."""
 
     windings: tuple[tuple[str, str], ...]

@@ -5,10 +5,10 @@ between neighbouring columns. Ground is left out: everything stands on it.
 """
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 
 from rulecheck.report.review.drawing import BlockBox, BlockView, Label, Line, Mark, PlacedMark
 from rulecheck.values import natural_key
+from rulecheck.values.record import Record
 
 MOST = 40
 _WIDTH, _LINE_HEIGHT, _PAD = 148.0, 14.0, 8.0
@@ -16,8 +16,7 @@ _GAP, _BAR_STEP, _LETTER = 18.0, 18.0, 6.3
 _LONGEST = 22
 
 
-@dataclass(frozen=True, slots=True)
-class Block:
+class Block(Record):
     """A thing with nets: its name and further lines, and what was found on it."""
 
     name: str
@@ -32,8 +31,7 @@ class Block:
         return max(_LINE_HEIGHT * (len(self.lines) + 1), 14.0 * len(self.nets)) + 2 * _PAD
 
 
-@dataclass(frozen=True, slots=True)
-class _Grid:
+class _Grid(Record):
     """Columns of boxes and of nets in turn, boxes first, each in order from the top."""
 
     boxes: tuple[tuple[int, ...], ...]

@@ -1,18 +1,17 @@
 """What the derating factors in force leave of a position's ratings."""
 
 from collections.abc import Iterable
-from dataclasses import dataclass
 
 from rulecheck.capability import Capability
 from rulecheck.rulebook import Rulebook
 from rulecheck.stage import Stage
 from rulecheck.values import Unknown
+from rulecheck.values.record import Record
 
 _BLOCKING, _CURRENT = "derate.blocking", "derate.current"
 
 
-@dataclass(frozen=True, slots=True)
-class Limits:
+class Limits(Record):
     """Volts and amperes that may be used, by direction; None where a rating is not known."""
 
     forward_voltage: float | None
@@ -21,8 +20,7 @@ class Limits:
     reverse_current: float | None
 
 
-@dataclass(frozen=True, slots=True)
-class Factor:
+class Factor(Record):
     """A derating factor in force: for which parts, which share, and who says so."""
 
     name: str

@@ -1,10 +1,9 @@
 """The drawings of a review as data: shapes, symbols, lines, labels and marks in drawing units."""
 
-from dataclasses import dataclass
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class Mark:
+class Mark(Record):
     """A finding at the thing that it is about."""
 
     number: int
@@ -12,38 +11,33 @@ class Mark:
     level: str
 
 
-@dataclass(frozen=True, slots=True)
-class Shape:
+class Shape(Record):
     """An SVG path in drawing units; `fill` is `none`, `solid` or `hollow`."""
 
     path: str
     fill: str
 
 
-@dataclass(frozen=True, slots=True)
-class Symbol:
+class Symbol(Record):
     name: str
     shapes: tuple[Shape, ...]
     gate: tuple[float, float] | None
     """Where the gate is, in drawing units; None where the symbol has none."""
 
 
-@dataclass(frozen=True, slots=True)
-class Line:
+class Line(Record):
     path: str
     kind: str
     """`rail` or `wire`."""
 
 
-@dataclass(frozen=True, slots=True)
-class PlacedSymbol:
+class PlacedSymbol(Record):
     symbol: str
     transform: str
     standing: str
 
 
-@dataclass(frozen=True, slots=True)
-class Label:
+class Label(Record):
     x: float
     y: float
     text: str
@@ -53,15 +47,13 @@ class Label:
     """`name`, `model`, `net`, `gate`."""
 
 
-@dataclass(frozen=True, slots=True)
-class PlacedMark:
+class PlacedMark(Record):
     x: float
     y: float
     mark: Mark
 
 
-@dataclass(frozen=True, slots=True)
-class Schematic:
+class Schematic(Record):
     name: str
     title: str
     description: str
@@ -76,8 +68,7 @@ class Schematic:
     notes: tuple[str, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class BlockBox:
+class BlockBox(Record):
     kind: str
     x: float
     y: float
@@ -87,8 +78,7 @@ class BlockBox:
     marks: tuple[PlacedMark, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class BlockView:
+class BlockView(Record):
     width: float
     height: float
     boxes: tuple[BlockBox, ...]
@@ -98,8 +88,7 @@ class BlockView:
     description: str
 
 
-@dataclass(frozen=True, slots=True)
-class Schematics:
+class Schematics(Record):
     drawings: tuple[Schematic, ...]
     symbols: tuple[Symbol, ...]
     """Those that the drawings use, each once."""

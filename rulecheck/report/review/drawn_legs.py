@@ -1,7 +1,6 @@
 """Which schematics a stage needs: one a leg, and one for each knot of positions in no leg."""
 
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass
 
 from rulecheck.demand import Demands, Leg
 from rulecheck.parts import Kind, Part
@@ -13,14 +12,14 @@ from rulecheck.report.review.schematic import Device, Outlet, Subject, draw_sche
 from rulecheck.report.review.symbols import draw_symbol
 from rulecheck.stage import Branch, BranchKind, Role, Stage
 from rulecheck.values import natural_key
+from rulecheck.values.record import Record
 
 _GATES = ("gate", "base")
 _LINES = ("selector leg", "rectifier leg")
 _MOST_OUTLETS = 3
 
 
-@dataclass(frozen=True, slots=True)
-class Marks:
+class Marks(Record):
     """Findings by the part, and by the leg, that they are about."""
 
     parts: Mapping[str, tuple[Mark, ...]]

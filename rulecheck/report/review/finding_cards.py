@@ -1,7 +1,6 @@
 """Findings as cards: message, reason, remedy, source, the lines of the netlist, the derivation."""
 
 from collections.abc import Callable, Iterable, Mapping, Sequence
-from dataclasses import dataclass
 
 from rulecheck.report.explanation import Entry, Explanation
 from rulecheck.report.lint_result import LintReport, excuse_text
@@ -9,6 +8,7 @@ from rulecheck.report.review.drawing import Mark
 from rulecheck.report.review.review import Card, FindingCard, InputFile, UndecidedCheck
 from rulecheck.rulebook import Rule, Verdict
 from rulecheck.values import Span
+from rulecheck.values.record import Record
 
 WITH_PAGES = ("position", "part")
 """Kinds of subject whose numbers a position's page derives, where they are in one."""
@@ -16,8 +16,7 @@ _OF_LEGS = ("leg", "bridge")
 _MOST_CARDS = 12
 
 
-@dataclass(frozen=True, slots=True)
-class Derivations:
+class Derivations(Record):
     """Where the reason of a number stands: in a position's own page, or told here."""
 
     anchors: Mapping[str, str]

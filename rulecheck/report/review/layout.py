@@ -7,9 +7,9 @@ on below the one that ends at its net.
 """
 
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass
 
 from rulecheck.values import natural_key
+from rulecheck.values.record import Record
 
 _ROUNDS = 400
 _ALIKE = 0.06
@@ -18,8 +18,7 @@ _HANGING = 0.45
 """Height of a net that only one part leads to: a little below the middle."""
 
 
-@dataclass(frozen=True, slots=True)
-class TwoTerminal:
+class TwoTerminal(Record):
     """A part to be placed; current of its first edge enters at `start`."""
 
     name: str
@@ -27,8 +26,7 @@ class TwoTerminal:
     end: str
 
 
-@dataclass(frozen=True, slots=True)
-class Place:
+class Place(Record):
     """Column, first and last row; `turned` where the part's start is its lower end."""
 
     column: int
@@ -37,8 +35,7 @@ class Place:
     turned: bool
 
 
-@dataclass(frozen=True, slots=True)
-class Layout:
+class Layout(Record):
     rows: Mapping[str, int]
     """By net, from the top."""
     places: Mapping[str, Place]

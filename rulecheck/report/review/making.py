@@ -1,7 +1,6 @@
 """Put the review together from what the steps found; everything in it is words and figures."""
 
 from collections.abc import Iterable
-from dataclasses import dataclass
 
 from rulecheck.capability import Capabilities
 from rulecheck.demand import Demands
@@ -31,12 +30,12 @@ from rulecheck.report.review.timing import stated_timing, timing_diagrams
 from rulecheck.rulebook import Deviation, Rulebook, Verdict
 from rulecheck.stage import Port, Stage
 from rulecheck.values import Gravity, Interval, Problem
+from rulecheck.values.record import Record
 
 _NO_PROFILE = "none; each pack's own factors hold"
 
 
-@dataclass(frozen=True, slots=True)
-class Studied:
+class Studied(Record):
     """What the steps found of one netlist."""
 
     stage: Stage
@@ -45,8 +44,7 @@ class Studied:
     problems: tuple[Problem, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class Findings:
+class Findings(Record):
     """What the rules said of the stage, and by which rules and deviations."""
 
     report: LintReport

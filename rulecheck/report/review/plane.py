@@ -6,11 +6,11 @@ the largest known number of the position.
 """
 
 import math
-from dataclasses import dataclass
 
 from rulecheck.report.quadrant_result import PositionResult
 from rulecheck.report.review.derating import Limits
 from rulecheck.values import Interval, Quadrant, QuadrantSet, Unknown
+from rulecheck.values.record import Record
 
 HALF = 100.0
 _FULL = 88.0
@@ -26,8 +26,7 @@ _SIGNS = {
 }
 
 
-@dataclass(frozen=True, slots=True)
-class Box:
+class Box(Record):
     """A rectangle in drawing units, y downwards."""
 
     x: float
@@ -36,16 +35,14 @@ class Box:
     height: float
 
 
-@dataclass(frozen=True, slots=True)
-class Tick:
+class Tick(Record):
     """A number on an axis, at its place in drawing units from the origin."""
 
     at: float
     value: float
 
 
-@dataclass(frozen=True, slots=True)
-class Plane:
+class Plane(Record):
     """Boxes to draw; a side whose number nobody knows ends at the edge and is not outlined."""
 
     covered: tuple[Box, ...]
@@ -59,8 +56,7 @@ class Plane:
     ampere_ticks: tuple[Tick, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class _Sides:
+class _Sides(Record):
     """How far the plane reaches in each direction, in volts and amperes; None: not known."""
 
     right: float | None

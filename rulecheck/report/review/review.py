@@ -1,17 +1,15 @@
 """The review document as data: what a template shows, already in words and figures."""
 
-from dataclasses import dataclass
-
 from rulecheck.report.changes import Changes
 from rulecheck.report.explanation import Entry
 from rulecheck.report.review.derating import Factor
 from rulecheck.report.review.drawing import BlockView, Mark, Schematics
 from rulecheck.report.review.plane import Plane
 from rulecheck.rulebook import PackInForce, Tally
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class InputFile:
+class InputFile(Record):
     """A file that was read, as it was then."""
 
     file: str
@@ -22,8 +20,7 @@ class InputFile:
     lines: tuple[str, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class Occasion:
+class Occasion(Record):
     """When and with what the review was made."""
 
     date: str
@@ -32,8 +29,7 @@ class Occasion:
     version: str
 
 
-@dataclass(frozen=True, slots=True)
-class Card:
+class Card(Record):
     """A place in an input file and the line that stands there."""
 
     file: str
@@ -41,8 +37,7 @@ class Card:
     text: str
 
 
-@dataclass(frozen=True, slots=True)
-class FindingCard:
+class FindingCard(Record):
     number: int
     anchor: str
     level: str
@@ -65,16 +60,14 @@ class FindingCard:
     """Who accepted it, why and until when; empty where nobody did."""
 
 
-@dataclass(frozen=True, slots=True)
-class UndecidedCheck:
+class UndecidedCheck(Record):
     rule: str
     subject: str
     message: str
     settle: tuple[str, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class Extreme:
+class Extreme(Record):
     """One end of a demand, the state that leads to it and what it is made of."""
 
     what: str
@@ -84,8 +77,7 @@ class Extreme:
     corner: str
 
 
-@dataclass(frozen=True, slots=True)
-class PositionPage:
+class PositionPage(Record):
     anchor: str
     name: str
     ends: str
@@ -105,8 +97,7 @@ class PositionPage:
     marks: tuple[Mark, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class OpenList:
+class OpenList(Record):
     """One sort of what was not checked or taken on trust."""
 
     heading: str
@@ -114,22 +105,19 @@ class OpenList:
     lines: tuple[str, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class Row:
+class Row(Record):
     """A line of a plain table."""
 
     cells: tuple[str, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class Table:
+class Table(Record):
     caption: str
     heads: tuple[str, ...]
     rows: tuple[Row, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class Trace:
+class Trace(Record):
     """A gate's command over the window, as an SVG path of height 18, and in words."""
 
     name: str
@@ -137,16 +125,14 @@ class Trace:
     told: str
 
 
-@dataclass(frozen=True, slots=True)
-class Timing:
+class Timing(Record):
     leg: str
     window: str
     traces: tuple[Trace, ...]
     width: float
 
 
-@dataclass(frozen=True, slots=True)
-class Review:
+class Review(Record):
     netlist: str
     sheet: str
     occasion: Occasion

@@ -1,7 +1,6 @@
 """The schematic of a leg, or of positions that stand alone, as lines, symbols and labels."""
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 
 from rulecheck.report.review.drawing import (
     Label,
@@ -14,6 +13,7 @@ from rulecheck.report.review.drawing import (
 )
 from rulecheck.report.review.layout import Layout, Place, TwoTerminal, lay_out
 from rulecheck.report.review.symbols import LENGTH
+from rulecheck.values.record import Record
 
 _ROW = 84.0
 _LEFT, _TOP, _RIGHT = 78.0, 26.0, 12.0
@@ -27,8 +27,7 @@ _STACK = 30.0
 _MARK_STEP = 30.0
 
 
-@dataclass(frozen=True, slots=True)
-class Device:
+class Device(Record):
     """A part between two nets: its symbol, its words, its gate's net and what was found on it."""
 
     part: TwoTerminal
@@ -39,8 +38,7 @@ class Device:
     marks: tuple[Mark, ...] = ()
 
 
-@dataclass(frozen=True, slots=True)
-class Outlet:
+class Outlet(Record):
     """What carries current away from a midpoint: an inductor, a winding, a port."""
 
     at: str
@@ -51,8 +49,7 @@ class Outlet:
     marks: tuple[Mark, ...] = ()
 
 
-@dataclass(frozen=True, slots=True)
-class Subject:
+class Subject(Record):
     """What one schematic shows."""
 
     name: str
@@ -98,8 +95,7 @@ def draw_schematic(subject: Subject, symbols: Mapping[str, Symbol]) -> Schematic
     )
 
 
-@dataclass(frozen=True, slots=True)
-class _Drawn:
+class _Drawn(Record):
     lines: tuple[Line, ...] = ()
     dots: tuple[tuple[float, float], ...] = ()
     symbols: tuple[PlacedSymbol, ...] = ()
@@ -107,8 +103,7 @@ class _Drawn:
     marks: tuple[PlacedMark, ...] = ()
 
 
-@dataclass(frozen=True, slots=True)
-class _Sheet:
+class _Sheet(Record):
     """Columns and rows in drawing units."""
 
     layout: Layout

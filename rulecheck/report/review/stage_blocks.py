@@ -1,7 +1,6 @@
 """Which blocks a stage has: its ports, its filters and transformers, its legs and bridges."""
 
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
 
 from rulecheck.demand import Bridge, Demands, Leg
 from rulecheck.parts import Kind
@@ -12,10 +11,10 @@ from rulecheck.report.review.drawing import BlockView, Mark
 from rulecheck.report.review.drawn_legs import Marks
 from rulecheck.stage import BranchKind, Port, PortKind, Stage
 from rulecheck.values import natural_key
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class _Members:
+class _Members(Record):
     """A leg or bridge: its legs and all their positions."""
 
     name: str
