@@ -14,7 +14,6 @@ import pytest
 
 from tests.command.running import run
 
-sync_api = pytest.importorskip("playwright.sync_api", reason="no browser driver is installed")
 CHROMIUM = shutil.which("chromium") or shutil.which("chromium-browser")
 QUIET = (
     "--no-sandbox",
@@ -59,6 +58,7 @@ class Reader:
 
 @pytest.fixture(scope="session")
 def reader() -> Iterator[Reader]:
+    sync_api = pytest.importorskip("playwright.sync_api", reason="no browser driver is installed")
     if CHROMIUM is None:
         pytest.skip("no Chromium is installed")
     with sync_api.sync_playwright() as driver:
