@@ -3,9 +3,11 @@
 import sys
 from collections.abc import Iterable
 
-from rulecheck.values import USUAL, Gravity, Limits, Problem
+from rulecheck.values import USUAL, Gravity, Limits, Problem, harmless
 
 UNUSABLE = 2
+LONGEST = 2000
+"""Characters of a line; a longer one quotes what nobody wrote by hand."""
 
 
 def complain(problems: Iterable[Problem], limits: Limits = USUAL) -> int:
@@ -35,8 +37,8 @@ def refuse(what: str, remedy: str) -> int:
 
 def printable(line: str) -> str:
     """One line without control signs, in what standard error can write."""
-    clean = "".join(
-        sign if sign.isprintable() else f"\\x{ord(sign):02x}" for sign in " ".join(line.split())
-    )
+    clean = harmless(" ".join(line.split()), colored=False)
+    if len(clean) > LONGEST:
+        clean = f"{clean[: LONGEST // 2]} ... {clean[-LONGEST // 2 :]}"
     encoding = sys.stderr.encoding or "ascii"
     return clean.encode(encoding, "backslashreplace").decode(encoding)

@@ -11,7 +11,6 @@ from rulecheck.cli.arguments import read_arguments
 from rulecheck.cli.request import Request
 
 UNUSABLE = 2
-INTERRUPTED = 130
 TRACE_VARIABLE = "RULECHECK_TRACEBACK"
 
 # named, not imported: a command loads what it needs when it is called
@@ -41,7 +40,11 @@ def main(argv: Sequence[str] | None = None) -> int:
         os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
         return 0
     except KeyboardInterrupt:
-        return INTERRUPTED
+        print("rulecheck: error: interrupted; nothing was decided", file=sys.stderr)
+        return UNUSABLE
+    except OSError as failure:
+        # standard output is full or gone; what can be said about a file is said where it is used
+        return _own_fault(failure) if failure.filename else _no_output(failure)
     except Exception as failure:
         return _own_fault(failure)
     return status
@@ -64,6 +67,12 @@ def _run(request: Request) -> int:
         return watch(request, command.answer)
     run: Callable[[Request], int] = command.run
     return run(request)
+
+
+def _no_output(failure: OSError) -> int:
+    print(f"rulecheck: error: standard output: {failure.strerror}; free some room", file=sys.stderr)
+    os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+    return UNUSABLE
 
 
 def _own_fault(failure: Exception) -> int:

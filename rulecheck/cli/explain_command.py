@@ -39,7 +39,7 @@ def run(request: Request) -> int:
     if unknown:
         return complain((*analysis.problems, *unknown), request.limits)
     documents = [
-        Document(text, output.file)
+        Document(text, output.file, request.step is None)
         for text, output in zip(texts, request.outputs, strict=True)
         if isinstance(text, str)
     ]

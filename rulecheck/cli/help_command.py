@@ -35,7 +35,7 @@ def run(request: Request) -> int:
         return refuse(f"no page is called '{word}'", _guess(word, entries))
     return _finish(
         [
-            Document(rendered(pages, render, look_at(request, output.file)), output.file)
+            Document(rendered(pages, render, look_at(request, output.file)), output.file, True)
             for output in request.outputs
         ]
     )

@@ -64,7 +64,7 @@ def answer(request: Request) -> Answer:
         return Answer(complain(basis, request.limits))
     progress = progress_for(request, len(basis.tasks))
     answers = check_all(basis.tasks, basis.rulebook, basis.packs, request.jobs, progress)
-    today = datetime.date.today()
+    today = datetime.datetime.now(datetime.UTC).date()
     judged = [_excused(answer, basis.deviations, today) for answer in answers]
     result = _lint_run(request, basis, judged, today)
     default = "table" if sys.stdout.isatty() else "lines"

@@ -12,6 +12,7 @@ from rulecheck.cli.output import Document
 from rulecheck.cli.request import Output, Request
 from rulecheck.cli.terminal import look_for
 from rulecheck.report import Look
+from rulecheck.values import harmless
 
 Result = TypeVar("Result")
 Shown = TypeVar("Shown", contravariant=True)
@@ -32,7 +33,7 @@ def documents(
         module = modules[_format(output, modules, default)]
         renderer: Renderer[Result] = importlib.import_module(module).render
         reports.append(
-            Document(rendered(result, renderer, look_at(request, output.file)), output.file)
+            Document(rendered(result, renderer, look_at(request, output.file)), output.file, True)
         )
     return reports
 
@@ -41,7 +42,7 @@ def rendered(result: Result, renderer: Renderer[Result], look: Look) -> str:
     """The report as text."""
     stream = io.StringIO()
     renderer(result, stream, look)
-    return stream.getvalue()
+    return harmless(stream.getvalue(), look.color)
 
 
 def look_at(request: Request, file: str | None) -> Look:

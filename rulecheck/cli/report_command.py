@@ -43,7 +43,7 @@ def run(request: Request) -> int:
         return complain(analysis.problems, request.limits)
     review, past = _review(analysis, basis, earlier_task(request, basis.project))
     documents = [
-        Document(rendered(review, render, look_at(request, output.file)), output.file)
+        Document(rendered(review, render, look_at(request, output.file)), output.file, True)
         for output in request.outputs
     ]
     inputs = (*analysis.inputs, *past.inputs, basis.project.file)
@@ -67,7 +67,7 @@ def _prepare(request: Request) -> _Basis | tuple[Problem, ...]:
 def _review(analysis: Analysis, basis: _Basis, earlier: Task | None) -> tuple[Review, Past]:
     moment = basis.asked or moment_of(Path(analysis.netlist))
     # a deviation ends on its day, whatever the date of the netlist's file
-    today = basis.asked.day if basis.asked else datetime.date.today()
+    today = basis.asked.day if basis.asked else datetime.datetime.now(datetime.UTC).date()
     judged = judge(basis.rulebook, analysis.facts)
     past = compared(earlier, basis.rulebook, version_of(analysis, judged))
     verdicts = apply_deviations(judged, basis.deviations, today)

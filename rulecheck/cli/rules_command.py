@@ -50,7 +50,7 @@ def _shown(request: Request, rulebook: Rulebook) -> list[Document] | int:
         return _no_such_rule(wanted, rulebook)
     page = rule_page(rule, rulebook)
     return [
-        Document(rendered((page,), render, look_at(request, output.file)), output.file)
+        Document(rendered((page,), render, look_at(request, output.file)), output.file, True)
         for output in request.outputs
     ]
 

@@ -9,6 +9,7 @@ from xml.etree import ElementTree
 from rulecheck.report.lint_lines import finding_line
 from rulecheck.report.lint_result import LintReport, LintRun, unusable_line
 from rulecheck.report.look import PLAIN, Look
+from rulecheck.report.one_line import visible
 from rulecheck.rulebook import Verdict
 
 
@@ -72,7 +73,7 @@ def _named_case(report: LintReport, name: str) -> ElementTree.Element:
 
 def _legal(text: str) -> str:
     """XML 1.0 has no place for most control signs, not even escaped."""
-    return "".join(sign if _allowed(ord(sign)) else "\ufffd" for sign in text)
+    return "".join(sign if _allowed(ord(sign)) else "\ufffd" for sign in visible(text, PLAIN))
 
 
 def _allowed(code: int) -> bool:

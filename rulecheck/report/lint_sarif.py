@@ -23,6 +23,7 @@ from rulecheck.report.lint_result import (
     unusable_line,
 )
 from rulecheck.report.look import PLAIN, Look
+from rulecheck.report.one_line import one_line
 from rulecheck.report.open_points import merged
 from rulecheck.rulebook import Rule, Verdict
 from rulecheck.values import Span
@@ -84,7 +85,7 @@ def _result(report: LintReport, finding: Verdict, places: dict[str, int]) -> dic
         "ruleIndex": places.get(finding.rule, -1),
         "kind": "open" if undecided else "fail",
         "level": "none" if undecided else finding.level,
-        "message": {"text": sentence(finding)},
+        "message": {"text": one_line(sentence(finding), PLAIN)},
         "locations": [_location(finding)],
         "properties": _properties(finding),
     }
@@ -142,7 +143,7 @@ def _notifications(run: LintRun) -> list[dict[str, object]]:
 
 
 def _notification(level: str, text: str) -> dict[str, object]:
-    return {"level": level, "message": {"text": text}}
+    return {"level": level, "message": {"text": one_line(text, PLAIN)}}
 
 
 def _open_lines(report: LintReport) -> list[str]:

@@ -2,12 +2,15 @@
 
 import re
 
+from rulecheck.report.look import PLAIN
+from rulecheck.report.one_line import one_line
+
 _SPECIAL = re.compile(r"([\\`*_\[\]<>|~&]|^[#+-])")
 
 
 def escaped(text: str) -> str:
     """Every sign that Markdown could read as markup, with a backslash before it; one line."""
-    return _SPECIAL.sub(r"\\\1", " ".join(text.split()))
+    return _SPECIAL.sub(r"\\\1", one_line(text, PLAIN))
 
 
 def row(*cells: str) -> str:

@@ -1,6 +1,7 @@
 """Small frozen types that every step shares; knows nothing of netlists or electronics."""
 
 from rulecheck.values.affine import AffineForm, total_of, variable
+from rulecheck.values.harmless import harmless, shown
 from rulecheck.values.interval import Interval, point
 from rulecheck.values.limits import BOUNDS, USUAL, Limits, raise_limit
 from rulecheck.values.natural import natural_key
@@ -33,11 +34,13 @@ __all__ = [
     "Unknown",
     "error",
     "errors_of",
+    "harmless",
     "natural_key",
     "note",
     "point",
     "raise_limit",
     "read_quantity",
+    "shown",
     "total_of",
     "variable",
     "write_quantity",

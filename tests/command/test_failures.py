@@ -45,7 +45,7 @@ def test_a_card_that_cannot_be_read_is_an_error_and_the_rest_is_still_analysed(h
     text = netlist.read_text(encoding="utf-8")
     netlist.write_text(text.replace("R2 SW SN2 4.7", "R2 SW"), encoding="utf-8")
     done = run("quadrants", "battery-bus.cir", folder=hut)
-    assert "battery-bus.cir:25:" in errors(done)[0]
+    assert "battery-bus.cir:26:" in errors(done)[0]
     assert "R2 is missing from the analysis" in " ".join(done.stdout.split())
 
 
