@@ -11,6 +11,7 @@ from rulecheck.cli.inputs_read import inputs_read
 from rulecheck.cli.moment import Moment, asked_moment, moment_of
 from rulecheck.cli.output import Document
 from rulecheck.cli.packs import load_rulebook
+from rulecheck.cli.progress import progress_for
 from rulecheck.cli.project import Project, find_project
 from rulecheck.cli.renderers import look_at, rendered
 from rulecheck.cli.request import Request
@@ -38,7 +39,8 @@ def run(request: Request) -> int:
     if not isinstance(basis, _Basis):
         return complain(basis, request.limits)
     netlist = Path(request.names[0])
-    analysis = analyse(netlist, sources_for(netlist, request, basis.project))
+    with progress_for(request, 1) as progress:
+        analysis = analyse(netlist, sources_for(netlist, request, basis.project), progress.step)
     if isinstance(analysis, Unusable):
         return complain(analysis.problems, request.limits)
     review, past = _review(analysis, basis, earlier_task(request, basis.project))
