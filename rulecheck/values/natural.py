@@ -1,10 +1,14 @@
 """Natural order of names: Q2 before Q10, letters without regard to case."""
 
 import re
+from functools import lru_cache
 
+_MOST_NAMES = 1 << 16
+"""Each step sorts the same names again; beyond so many, memory counts for more."""
 _RUN = re.compile(r"\d+|\D+")
 
 
+@lru_cache(_MOST_NAMES)
 def natural_key(name: str) -> tuple[tuple[int, int, str, str], ...]:
     """A sort key under which digits compare as numbers, by their count and then one by one."""
     return tuple(
