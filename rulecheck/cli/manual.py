@@ -4,7 +4,7 @@ from collections.abc import Iterator, Sequence
 
 from rulecheck.cli.file_shapes import FILE_SHAPES
 from rulecheck.facts import VOCABULARY
-from rulecheck.reading.keys import EACH, Key, keys_of
+from rulecheck.reading.keys import EACH, NO_WORD, Key, keys_of
 from rulecheck.report.fact_page import field_page, link_page, subject_page
 from rulecheck.report.key_page import key_page
 from rulecheck.report.manual_page import ManualPage
@@ -45,7 +45,9 @@ def _keys() -> Iterator[Entry]:
         keys = {key.place: key for key in keys_of(file.shape)}
         alike: dict[tuple[str, str], list[Key]] = {}
         for key in keys.values():
-            alike.setdefault((key.name, file.words[key.place].sentence), []).append(key)
+            alike.setdefault((key.name, file.words.get(key.place, NO_WORD).sentence), []).append(
+                key
+            )
         for same in alike.values():
             page = key_page(same, keys, file.words, file.called)
             yield f"keys of {file.called}", tuple(_names(same)), page

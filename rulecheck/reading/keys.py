@@ -33,6 +33,7 @@ class Word(Record):
 
 Words = Mapping[str, Word]
 """By place, such as `ports.*.between`."""
+NO_WORD = Word("No words on this key yet.")
 
 
 class Key(Record):

@@ -2,7 +2,7 @@
 
 from collections.abc import Mapping, Sequence
 
-from rulecheck.reading.keys import EACH, Key, Words
+from rulecheck.reading.keys import EACH, NO_WORD, Key, Words
 from rulecheck.report.manual_page import Block, ManualPage
 
 _EXAMPLE_VALUE = "..."
@@ -14,7 +14,7 @@ def key_page(same: Sequence[Key], keys: Mapping[str, Key], words: Words, file: s
     `file` is what the file is called: `a stage sheet`; `keys` are all of it by place.
     """
     key = same[0]
-    word = words[key.place]
+    word = words.get(key.place, NO_WORD)
     inner = tuple(k.name for k in keys.values() if _is_below(k.path, key.path))
     rows = (
         ("", word.sentence),
@@ -49,7 +49,7 @@ def example_lines(key: Key, keys: Mapping[str, Key], words: Words) -> list[str]:
 
 
 def _value(key: Key, keys: Mapping[str, Key], words: Words) -> str:
-    word = words[key.place]
+    word = words.get(key.place, NO_WORD)
     if word.example:
         return word.example
     inner = [k for k in keys.values() if _is_below(k.path, key.path)]

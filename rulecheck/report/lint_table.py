@@ -53,7 +53,7 @@ def _print_report(console: Console, run: LintRun, report: LintReport, look: Look
 
 
 def _print_finding(console: Console, finding: Verdict, word: str, advice: str, look: Look) -> None:
-    head = Text(f"{word:<{_LEVEL_WIDTH}} ", style=f"finding.{word}")
+    head = Text().append(f"{word:<{_LEVEL_WIDTH}} ", style=f"finding.{word}")
     head.append(visible(f"{finding.subject}  {finding.rule}", look), style="heading")
     place = visible(str(finding.span), look)
     room = look.width - head.cell_len - len(place)

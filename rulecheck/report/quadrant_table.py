@@ -1,5 +1,6 @@
 """The quadrant table on a terminal: needed and available side by side, one row a position."""
 
+from collections.abc import Sequence
 from typing import TextIO
 
 from rich import box
@@ -21,6 +22,8 @@ from rulecheck.values import QuadrantSet, Unknown
 
 _WIDE = 110
 _ALL = 4
+_BETWEEN = 2
+"""Columns that a border and its blank take."""
 _FIGURES = ("must block", "must carry")
 _UNBROKEN = (*_FIGURES, "result")
 _WIDE_HEADER = ("position", "from", "to", "needs", "has", *_FIGURES, "result")
@@ -58,14 +61,30 @@ def _bridges(result: QuadrantResult) -> tuple[str, ...]:
 def _table(result: QuadrantResult, look: Look) -> Table:
     """On a wide terminal one line a position; on a narrow one two, so that no figure is broken."""
     wide = look.width >= _WIDE
+    header = _WIDE_HEADER if wide else _HEADER
     rows = [_cells(row, look, wide) for row in result.positions]
-    table = Table(box=box.ASCII if look.ascii else box.SIMPLE_HEAD, padding=(0, 1, 0, 0))
-    for number, name in enumerate(_WIDE_HEADER if wide else _HEADER):
-        least = max(_least_width(cells[number], name in _FIGURES) for cells in rows)
-        table.add_column(name, overflow="fold", min_width=least if name in _UNBROKEN else None)
+    least = _least_widths(header, rows)
+    # where even whole figures do not fit, a broken figure is better than a cut one
+    fits = sum(least.values()) + _BETWEEN * len(header) <= look.width
+    table = Table(
+        box=box.ASCII2 if look.ascii else box.SIMPLE_HEAD,
+        show_edge=not look.ascii,
+        padding=(0, 1, 0, 0),
+    )
+    for name in header:
+        kept = fits and name in _UNBROKEN
+        table.add_column(name, overflow="fold", min_width=least[name] if kept else None)
     for cells in rows:
         table.add_row(*cells)
     return table
+
+
+def _least_widths(header: Sequence[str], rows: list[list[Text]]) -> dict[str, int]:
+    """By column: what its figures or its longest words take."""
+    return {
+        name: max(len(name.split()[0]), *(_least_width(c[n], name in _FIGURES) for c in rows))
+        for n, name in enumerate(header)
+    }
 
 
 def _cells(row: PositionResult, look: Look, wide: bool) -> list[Text]:

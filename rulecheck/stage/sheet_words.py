@@ -10,6 +10,10 @@ _SWITCHING = {
     "edge": Word("How long the midpoint takes from one rail to the other.", "15 ns"),
     "shortest-pulse": Word("The shortest time that a switch is commanded on or off.", "500 ns"),
 }
+_LEG = {
+    **_SWITCHING,
+    "phase": Word("When the leg turns on, in degrees of the switching period.", "180"),
+}
 _LEGS = Word("What holds for one leg alone, by the net of its midpoint.", called="SW")
 
 
@@ -37,6 +41,17 @@ SHEET_WORDS = {
     ),
     "ports.*.power": Word("The power that it draws, in place of a current.", "[0 W, 2 kW]"),
     "ports.*.frequency": Word("The frequency of what alternates at it.", "[0 Hz, 60 Hz]"),
+    "ports.*.modulation": Word(
+        "How the bridge at it makes its sine: `unipolar`, each leg by itself, or `bipolar`, both"
+        " legs at once.",
+        "unipolar",
+    ),
+    "ports.*.modulation-index": Word(
+        "The amplitude of the modulating sine over that of its carrier.", "[0, 1]"
+    ),
+    "ports.*.power-factor": Word(
+        "The cosine of the angle between its voltage and its current.", "[0.8, 1]"
+    ),
     "ports.*.source": Word("What stands behind it.", "battery"),
     "ports.*.fuse": Word(
         "Where the fuse or breaker of its wires is drawn; `elsewhere` is another drawing.",
@@ -46,9 +61,9 @@ SHEET_WORDS = {
     "switching": Word("How the legs are switched; it holds for all of them."),
     **{f"switching.{name}": word for name, word in _SWITCHING.items()},
     "switching.legs": _LEGS,
-    **{f"switching.legs.*.{name}": word for name, word in _SWITCHING.items()},
+    **{f"switching.legs.*.{name}": word for name, word in _LEG.items()},
     "legs": _LEGS,
-    **{f"legs.*.{name}": word for name, word in _SWITCHING.items()},
+    **{f"legs.*.{name}": word for name, word in _LEG.items()},
     "efficiency": Word(
         "The share of the power drawn that comes out, for the balance of power; 1 where it is not"
         " given.",
