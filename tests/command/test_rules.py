@@ -91,9 +91,9 @@ def test_a_record_makes_the_known_findings_pass_and_new_ones_fail(hut):
     assert "in the record: Q1" in same.stdout
     netlist = hut / twin
     text = netlist.read_text(encoding="utf-8")
-    netlist.write_text("* one line more\n" + text.replace("Q3 SW G3 PGND SW-N200-9",
-                       "Q3 SW G3 PGND IG-600-100").replace("Q4 SW G4 PGND SW-N200-9",
-                       "Q4 SW G4 PGND IG-600-100"), encoding="utf-8")  # fmt: skip
+    netlist.write_text("* one line more\n" + text.replace("Q3 SW G3 LEGRET SW-N200-9",
+                       "Q3 SW G3 LEGRET IG-600-100").replace("Q4 SW G4 LEGRET SW-N200-9",
+                       "Q4 SW G4 LEGRET IG-600-100"), encoding="utf-8")  # fmt: skip
     worse = run("lint", twin, "--since", "known.json", folder=hut)
     assert worse.returncode == 1
     assert "error: Q3" in worse.stdout
