@@ -83,6 +83,10 @@ SHEET_WORDS = {
     "set.*.balance": Word(
         "Of a winding: what keeps the mean voltage of its core at zero.", "measured"
     ),
+    "gate-supplies": Word(
+        "The voltage of a gate supply that the netlist does not state, by its net.",
+        "{VCC: [11.4 V, 12.6 V]}",
+    ),
     "domains": Word(
         "Nets that belong together galvanically, by a name of your choice; any two domains are to"
         " be separate.",

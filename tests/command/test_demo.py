@@ -16,9 +16,12 @@ FAULTS = {
         ("interrupted-current", "pump W -> star of pump"),
     },
     "pump-npc-faulty.cir": {("blocking-rating", "D4")},
-    "transfer-switch-faulty.cir": {("reverse-blocking", "Q3")},
+    # the turned transistor's source is no longer where its driver returns
+    "transfer-switch-faulty.cir": {("reverse-blocking", "Q3"), ("gate-return", "G4")},
 }
 """What a faulty twin has to be told, at error or warning, and nothing else."""
+UNSETTLED = {"transfer-switch.cir": {"driver-insulation"}}
+"""What waits for the voltage of a net inside a position, which no sheet can state."""
 
 
 @pytest.fixture(scope="module")
@@ -46,7 +49,9 @@ def test_the_demo_is_what_is_listed_here(written_demo):
 
 @pytest.mark.parametrize("netlist", SOUND)
 def test_a_sound_stage_has_no_finding_and_nothing_undecided(netlist, answers):
-    assert [f["message"] for f in answers[netlist]["findings"]] == []
+    findings = answers[netlist]["findings"]
+    assert {f["rule"] for f in findings} <= UNSETTLED.get(netlist, set())
+    assert [f["message"] for f in findings if f["verdict"] != "undecided"] == []
 
 
 @pytest.mark.parametrize("netlist", FAULTS)
