@@ -9,7 +9,7 @@ from rulecheck.facts.inputs import Inputs, stated_number, stated_range
 from rulecheck.facts.potential import Steps, known_steps, largest_difference
 from rulecheck.facts.terms import SubjectTerm, count, link, number, span_of, text, texts, yes_no
 from rulecheck.parts import Kind, Part
-from rulecheck.stage import GateCommand, GateDrive
+from rulecheck.stage import DrivenBy, GateCommand, GateDrive
 from rulecheck.values import Dimension, Interval, Unknown, natural_key
 
 V, S = Dimension.VOLTAGE, Dimension.TIME
@@ -74,16 +74,17 @@ def _subject(
     steps: Steps,
 ) -> Subject:
     output = drives[0].output
+    returned = _supply_return(drives[0])
     drivers = tuple(dict.fromkeys(drive.output.part for drive in drives))
     parts = [inputs.part_by_name[name] for name in drivers]
     positions = _positions(inputs, drives)
-    capacitors = _capacitors(inputs, net, output.return_net)
+    capacitors = _capacitors(inputs, net, returned)
     power = total(drive_power(inputs, drive, _positions(inputs, [drive])) for drive in drives)
     feeding = _feeding(inputs, net)
     permitted = _permitted(parts)
-    returns = tuple(dict.fromkeys(drive.output.return_net for drive in drives))
+    returns = tuple(dict.fromkeys(_supply_return(drive) for drive in drives))
     values: dict[str, Value] = {
-        "return": output.return_net,
+        "return": returned,
         "returns": returns,
         "return-nets": float(len(returns)),
         "drivers": drivers,
@@ -92,7 +93,7 @@ def _subject(
         "fed": _fed(inputs, net),
         "decoupled": bool(capacitors),
         "capacitance": total(part.value for part in capacitors),
-        "voltage": supply_range(inputs, net, output.return_net),
+        "voltage": supply_range(inputs, net, returned),
         "permitted": permitted,
         "lockout": _highest([stated_range(part, "driver.lockout") for part in parts]),
         "power": power,
@@ -110,8 +111,14 @@ def _subject(
     }
     named = (*drivers, *(part.name for part in capacitors))
     span, related = inputs.span_of_parts(named), inputs.related_spans(named)
-    nets = tuple(n for n in (net, output.return_net) if n)
+    nets = tuple(n for n in (net, returned) if n)
     return Subject("gate-supply", net, values, links, named, nets, span, related)
+
+
+def _supply_return(drive: GateDrive) -> str:
+    """What the supply of the output is measured against; before a gate transformer, its ground."""
+    output = drive.output
+    return output.input_ground if output.by is DrivenBy.TRANSFORMER else output.return_net
 
 
 def _positions(inputs: Inputs, drives: Iterable[GateDrive]) -> tuple[str, ...]:

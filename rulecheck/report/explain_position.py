@@ -2,6 +2,7 @@
 
 from rulecheck.capability import Capabilities, Direction
 from rulecheck.demand import Demands, PositionDemand, Witness
+from rulecheck.report.explain_gate import explain_gates
 from rulecheck.report.explain_variable import variable_entries
 from rulecheck.report.explanation import Entry, Explanation
 from rulecheck.report.figures import figure, range_figure, share
@@ -42,6 +43,7 @@ def explain_row(
             Entry("has", _quadrants(row.capability.quadrants, look)),
             *_capability_entries(row),
             Entry("result", ", ".join(standing(row))),
+            *explain_gates(position, stage),
             *_surroundings(position.name, demands),
             *(Entry("not covered", line) for line in row.demand.not_covered),
         ),
