@@ -16,6 +16,7 @@ from rulecheck.demand.demands import (
     Witness,
 )
 from rulecheck.demand.evaluate import polarities_of
+from rulecheck.demand.likeness import Likeness, compare_legs
 from rulecheck.demand.text import demands_text
 from rulecheck.demand.waveforms.records import (
     CapacitorWaves,
@@ -36,6 +37,7 @@ __all__ = [
     "InductorWaves",
     "InterruptedCurrent",
     "Leg",
+    "Likeness",
     "PositionDemand",
     "PositionWaves",
     "State",
@@ -43,6 +45,7 @@ __all__ = [
     "Variable",
     "Waveforms",
     "Witness",
+    "compare_legs",
     "demands_text",
     "find_demands",
     "polarities_of",

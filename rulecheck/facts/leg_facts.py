@@ -1,11 +1,13 @@
 """Facts of legs and bridges, which the switching states name."""
 
 from collections.abc import Iterable
+from dataclasses import replace
 
-from rulecheck.demand import Bridge, Leg
+from rulecheck.demand import Bridge, Leg, Likeness
 from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.feeding import Wires, find_wires
 from rulecheck.facts.inputs import Inputs
+from rulecheck.facts.likeness_facts import LEG_LIKENESS, leg_likeness, likeness_of_legs
 from rulecheck.facts.short_path import is_short_sensed
 from rulecheck.facts.terms import SubjectTerm, count, link, number, text, texts, yes_no
 from rulecheck.stage import Role
@@ -33,6 +35,7 @@ LEG = SubjectTerm(
         texts("low-models", "Models of the gated devices below the midpoint."),
         number("frequency", Dimension.FREQUENCY, "Its switching frequency."),
         number("dead-time", Dimension.TIME, "Its dead time."),
+        *LEG_LIKENESS,
     ),
     (
         link("positions", "position", "All its positions."),
@@ -66,8 +69,16 @@ _AIDS = frozenset(
 def collect(inputs: Inputs) -> tuple[Subject, ...]:
     """Legs and then bridges."""
     wires = find_wires(inputs)
-    legs = tuple(_leg(inputs, wires, leg) for leg in inputs.demands.legs)
+    likeness = {id(item.leg): item for item in likeness_of_legs(inputs)}
+    legs = tuple(
+        _with_likeness(_leg(inputs, wires, leg), likeness.get(id(leg)))
+        for leg in inputs.demands.legs
+    )
     return (*legs, *(_bridge(inputs, bridge) for bridge in inputs.demands.bridges))
+
+
+def _with_likeness(subject: Subject, found: Likeness | None) -> Subject:
+    return replace(subject, values={**subject.values, **leg_likeness(found)})
 
 
 def _leg(inputs: Inputs, wires: Wires, leg: Leg) -> Subject:

@@ -5,6 +5,7 @@ import math
 from rulecheck.demand import Variable
 from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.inputs import Inputs, stated_number
+from rulecheck.facts.likeness_facts import CAPACITOR_LIKENESS, ratings_beside
 from rulecheck.facts.terms import SubjectTerm, link, number, span_of, text, yes_no
 from rulecheck.facts.waveform_facts import (
     CAPACITOR_TERMS,
@@ -48,6 +49,7 @@ CAPACITOR = SubjectTerm(
         number("ripple-rating", A, "Its rated ripple current."),
         text("dielectric", "`ceramic`, `film`, `electrolytic` or `tantalum`."),
         yes_no("bulk", "It holds a voltage of the power stage."),
+        *CAPACITOR_LIKENESS,
         *CAPACITOR_TERMS,
     ),
     (_OWN_PART,),
@@ -148,6 +150,7 @@ def _capacitor(inputs: Inputs, part: Part, variables: dict[str, Variable]) -> Su
         "ripple-rating": stated_number(part, "ratings.ripple-current"),
         "dielectric": dielectric or part.missing("ratings.dielectric"),
         "bulk": part.name in inputs.branch_parts,
+        **ratings_beside(inputs, part),
         **capacitor_values(inputs, part.name),
     }
     return _subject(inputs, part, values, {})
