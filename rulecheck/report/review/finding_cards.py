@@ -112,12 +112,13 @@ def legs_marked(card: FindingCard) -> tuple[str, ...]:
 
 
 def undecided_checks(report: LintReport) -> tuple[UndecidedCheck, ...]:
-    return tuple(
-        UndecidedCheck(
-            finding.rule,
-            finding.subject,
-            finding.message,
-            tuple(dict.fromkeys(item.settle for item in finding.missing)),
+    """Undecided verdicts; those of one rule that wait for the same data are one, with all names."""
+    subjects: dict[tuple[str, tuple[str, ...]], list[str]] = {}
+    for finding in report.undecided:
+        settle = tuple(dict.fromkeys(item.settle for item in finding.missing))
+        subjects.setdefault((finding.rule, settle or (finding.message,)), []).append(
+            finding.subject
         )
-        for finding in report.undecided
+    return tuple(
+        UndecidedCheck(rule, tuple(names), settle) for (rule, settle), names in subjects.items()
     )

@@ -24,6 +24,7 @@ CONTENTS = (
     ("basis", "Basis"),
 )
 
+_LONGEST_WORD = 16
 _TEMPLATES = PackageLoader("rulecheck.report.review")
 
 
@@ -31,7 +32,16 @@ def render(review: Review, stream: TextIO, look: Look = PLAIN) -> None:
     """Write the whole document; the same review gives the same bytes."""
     del look
     template = _environment().get_template("page.html.j2")
-    stream.write(template.render(review=review, contents=CONTENTS, plain_number=plain_number))
+    stream.write(
+        template.render(
+            review=review, contents=CONTENTS, plain_number=plain_number, has_long_word=has_long_word
+        )
+    )
+
+
+def has_long_word(text: str) -> bool:
+    """Whether a cell must be broken within words, lest it make its table too wide for paper."""
+    return any(len(word) > _LONGEST_WORD for word in text.split())
 
 
 def _environment() -> Environment:

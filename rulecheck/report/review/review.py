@@ -62,9 +62,9 @@ class FindingCard(Record):
 
 class UndecidedCheck(Record):
     rule: str
-    subject: str
-    message: str
+    subjects: tuple[str, ...]
     settle: tuple[str, ...]
+    """What would decide it, or why it cannot be said."""
 
 
 class Extreme(Record):
