@@ -18,7 +18,9 @@ from rulecheck.facts import (
     port_facts,
     position_facts,
     shunt_facts,
+    snubber_facts,
     state_facts,
+    winding_clamp_facts,
 )
 from rulecheck.facts.facts import Facts, Subject
 from rulecheck.facts.inputs import Inputs, gather
@@ -41,6 +43,8 @@ _COLLECTORS: tuple[Callable[[Inputs], tuple[Subject, ...]], ...] = (
     line_facts.collect,
     shunt_facts.collect,
     clamp_facts.collect,
+    snubber_facts.collect,
+    winding_clamp_facts.collect,
     isolation_facts.collect,
     free_path_facts.collect,
 )

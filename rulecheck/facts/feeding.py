@@ -10,6 +10,7 @@ there, the part carries its current. Capacitors carry no mean current and are pa
 import math
 from collections.abc import Iterator, Mapping
 
+from rulecheck.demand import Derived
 from rulecheck.facts.inputs import Inputs
 from rulecheck.parts import Part, through_nets
 from rulecheck.stage import BranchKind, Port, PortKind, Position, Role
@@ -145,7 +146,16 @@ def _of_position(inputs: Inputs, position: Position) -> Heating | Unknown:
     peak = span.magnitude
     if _makes_a_sine(inputs, position):
         return Heating(peak, peak / 2.0, peak / 2.0)
-    return Heating(peak, 0.0, peak)
+    waves = inputs.demands.waveforms.positions.get(position.name)
+    return _with_rms(peak, waves.rms if waves else None)
+
+
+def _with_rms(peak: float, derived: Derived | None) -> Heating:
+    """The worst rms over all operating points, as far as it is known."""
+    if derived is None or isinstance(derived.range, Unknown) or not derived.range.bounded:
+        return Heating(peak, 0.0, peak)
+    high = derived.range.high
+    return Heating(peak, derived.range.low if derived.missing else high, high)
 
 
 def _makes_a_sine(inputs: Inputs, position: Position) -> bool:

@@ -9,7 +9,13 @@ from collections.abc import Mapping, Sequence
 from rulecheck.facts.facts import Bounds, Value
 from rulecheck.facts.inputs import Inputs
 from rulecheck.parts import Conduction, Kind, Part
+from rulecheck.stage import Position, Role
 from rulecheck.values import Interval, Unknown
+
+_CATCHING = frozenset(
+    {Role.SNUBBER, Role.CLAMP, Role.SWITCH, Role.BULK_CAPACITOR, Role.SOURCE, Role.LOAD}
+)
+"""Roles of what gives the current of a leakage inductance somewhere to go."""
 
 
 def main_ends(inputs: Inputs, part: Part) -> frozenset[str]:
@@ -73,6 +79,22 @@ def peak_current(devices: Sequence[Part]) -> Value:
     if not missing:
         return total
     return Bounds(Interval(total if len(ends) <= 1 else 0.0, float("inf")), missing)
+
+
+def leakage_unguarded(inputs: Inputs, position: Position) -> bool:
+    """A gated position at a net with a winding and nothing else that could take its leakage."""
+    return position.gated and any(
+        _winding_alone(inputs, position, net) for net in (position.start, position.end)
+    )
+
+
+def _winding_alone(inputs: Inputs, position: Position, net: str) -> bool:
+    wound = {name for t in inputs.stage.transformers for name in t.parts}
+    here = set(inputs.parts_at_net.get(net, ())) - set(position.parts)
+    if not here & wound or net in inputs.ports_at_net:
+        return False
+    roles = {inputs.stage.roles.get(name) for name in here - wound}
+    return not roles & _CATCHING
 
 
 def series_diode(path: Sequence[str], parts: Mapping[str, Part]) -> bool:

@@ -12,6 +12,7 @@ from rulecheck.facts.gate_pair import command_count, takes_turns
 from rulecheck.facts.inputs import Inputs, at_least, group_name
 from rulecheck.facts.position_build import (
     free_path_doubled,
+    leakage_unguarded,
     parallel_alike,
     parallel_devices,
     peak_current,
@@ -58,6 +59,7 @@ def _subject(
             "across-voltage": (position.start, position.end) in inputs.voltage_between,
             "turned": _turned(demand.quadrants, capability.quadrants),
             **position_values(inputs, position.name),
+            "leakage-unguarded": leakage_unguarded(inputs, position),
             "tied": position.name not in inputs.group_of_position,
             "commands": command_count(inputs, position),
             "takes-turns": takes_turns(inputs, position),

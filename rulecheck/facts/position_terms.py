@@ -58,6 +58,7 @@ POSITION = SubjectTerm(
         ),
         yes_no("across-voltage", "A stiff voltage stands straight across it."),
         yes_no("turned", "As drawn it does not fit its demand; drawn the other way up it would."),
+        yes_no("leakage-unguarded", "It interrupts a winding, and nothing catches the leakage."),
         yes_no("all-turned", "So it is with every such position of the stage, of two or more."),
         *POSITION_TERMS,
         count("commands", "How many separate outputs command its gates."),

@@ -15,8 +15,10 @@ from rulecheck.facts.passive_facts import CAPACITOR, INDUCTOR, RESISTOR
 from rulecheck.facts.port_facts import PORT
 from rulecheck.facts.position_terms import POSITION
 from rulecheck.facts.shunt_facts import SHUNT
+from rulecheck.facts.snubber_facts import SNUBBER
 from rulecheck.facts.state_facts import GROUP, SWITCH_STATE
 from rulecheck.facts.terms import SubjectTerm
+from rulecheck.facts.winding_clamp_facts import WINDING_CLAMP
 from rulecheck.parts import Kind
 from rulecheck.stage import Role
 
@@ -40,6 +42,8 @@ VOCABULARY: Mapping[str, SubjectTerm] = {
         LINE_ELEMENT,
         SHUNT,
         CLAMP,
+        SNUBBER,
+        WINDING_CLAMP,
         CROSSING,
         GROUND_PAIR,
         FREE_PATH,
