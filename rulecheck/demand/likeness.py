@@ -44,17 +44,41 @@ def compare_legs(
 ) -> tuple[Likeness, ...]:
     """One record for each leg that has siblings."""
     around = survey(stage, legs)
-    found: list[Likeness] = []
-    for siblings in find_sibling_sets(stage, legs, bridges):
-        found += _compared(siblings.legs, neighbourhoods(stage, around, siblings))
-    return tuple(found)
+    sets = find_sibling_sets(stage, legs, bridges)
+    compared = [_signed(neighbourhoods(stage, around, siblings)) for siblings in sets]
+    seen = Counter(signed.main for group in compared for signed in group)
+    return tuple(
+        likeness
+        for siblings, group in zip(sets, compared, strict=True)
+        for likeness in _compared(siblings.legs, group, seen)
+    )
 
 
-def _compared(legs: Sequence[Leg], around: Sequence[Neighbourhood]) -> list[Likeness]:
-    mains, wholes = [a.main for a in around], [a.whole for a in around]
-    kinds, whole_kinds = _classes(mains), _classes(wholes)
-    typical = _typical(legs, kinds)
-    measured = _typical(legs, whole_kinds)
+@dataclass(frozen=True, slots=True)
+class _Signed:
+    """A neighbourhood with the signatures of its graphs."""
+
+    around: Neighbourhood
+    main: str
+    whole: str
+
+
+def _signed(found: Sequence[Neighbourhood]) -> list[_Signed]:
+    return [_Signed(a, _signature(a.main), _signature(a.whole)) for a in found]
+
+
+def _signature(graph: "nx.Graph[Node]") -> str:
+    """Equal for graphs that are isomorphic with all labels (Weisfeiler and Leman)."""
+    return str(nx.weisfeiler_lehman_graph_hash(graph, node_attr="label", iterations=_ROUNDS))
+
+
+def _compared(legs: Sequence[Leg], signed: Sequence[_Signed], seen: Counter[str]) -> list[Likeness]:
+    mains, wholes = [a.around.main for a in signed], [a.around.whole for a in signed]
+    kinds = _classes(mains, [a.main for a in signed])
+    whole_kinds = _classes(wholes, [a.whole for a in signed])
+    elsewhere = [seen[a.main] for a in signed]
+    typical = _typical(legs, kinds, elsewhere)
+    measured = _typical(legs, whole_kinds, elsewhere)
     found = []
     for index, leg in enumerate(legs):
         others = tuple(other.name for k, other in enumerate(legs) if k != index)
@@ -66,19 +90,19 @@ def _compared(legs: Sequence[Leg], around: Sequence[Neighbourhood]) -> list[Like
     return found
 
 
-def _typical(legs: Sequence[Leg], kinds: Sequence[int]) -> int:
-    """Of equally many the class of the first leg in natural order is the measure."""
+def _typical(legs: Sequence[Leg], kinds: Sequence[int], elsewhere: Sequence[int]) -> int:
+    """Most of the set decide; of equally many what is built so elsewhere in the stage, too; and
+    where nothing tells which of two is meant, the first leg in natural order is the measure."""
     counts = Counter(kinds)
-    order = sorted(range(len(legs)), key=lambda i: (-counts[kinds[i]], natural_key(legs[i].name)))
-    return order[0]
+
+    def rank(index: int) -> tuple[object, ...]:
+        return -counts[kinds[index]], -elsewhere[index], natural_key(legs[index].name)
+
+    return min(range(len(legs)), key=rank)
 
 
-def _classes(graphs: "Sequence[nx.Graph[Node]]") -> list[int]:
+def _classes(graphs: "Sequence[nx.Graph[Node]]", signatures: Sequence[str]) -> list[int]:
     """The same number for graphs that are isomorphic with all labels."""
-    signatures = [
-        nx.weisfeiler_lehman_graph_hash(graph, node_attr="label", iterations=_ROUNDS)
-        for graph in graphs
-    ]
     classes: list[int] = []
     for index, graph in enumerate(graphs):
         same = (
