@@ -6,6 +6,7 @@ from rulecheck.capability import Capabilities
 from rulecheck.demand import Demands
 from rulecheck.facts import (
     clamp_facts,
+    core_facts,
     free_path_facts,
     gate_drive_facts,
     gate_supply_facts,
@@ -20,6 +21,7 @@ from rulecheck.facts import (
     shunt_facts,
     snubber_facts,
     state_facts,
+    transformer_facts,
     winding_clamp_facts,
 )
 from rulecheck.facts.facts import Facts, Subject
@@ -45,6 +47,8 @@ _COLLECTORS: tuple[Callable[[Inputs], tuple[Subject, ...]], ...] = (
     clamp_facts.collect,
     snubber_facts.collect,
     winding_clamp_facts.collect,
+    core_facts.collect,
+    transformer_facts.collect,
     isolation_facts.collect,
     free_path_facts.collect,
 )

@@ -3,6 +3,7 @@
 from collections.abc import Mapping
 
 from rulecheck.facts.clamp_facts import CLAMP
+from rulecheck.facts.core_facts import CORE
 from rulecheck.facts.free_path_facts import FREE_PATH
 from rulecheck.facts.gate_drive_terms import GATE_DRIVE
 from rulecheck.facts.gate_supply_facts import GATE_SUPPLY
@@ -18,6 +19,7 @@ from rulecheck.facts.shunt_facts import SHUNT
 from rulecheck.facts.snubber_facts import SNUBBER
 from rulecheck.facts.state_facts import GROUP, SWITCH_STATE
 from rulecheck.facts.terms import SubjectTerm
+from rulecheck.facts.transformer_facts import LINE_MAGNETIC
 from rulecheck.facts.winding_clamp_facts import WINDING_CLAMP
 from rulecheck.parts import Kind
 from rulecheck.stage import Role
@@ -44,6 +46,8 @@ VOCABULARY: Mapping[str, SubjectTerm] = {
         CLAMP,
         SNUBBER,
         WINDING_CLAMP,
+        CORE,
+        LINE_MAGNETIC,
         CROSSING,
         GROUND_PAIR,
         FREE_PATH,

@@ -5,7 +5,7 @@ from rulecheck.reading import SourceText, packaged
 SUFFIX = ".rules.yaml"
 IN_FORCE = (
     *("netlist", "position", "leg", "rating", "free-path", "gate-drive"),
-    *("protection", "isolation", "consistency", "snubber"),
+    *("protection", "isolation", "consistency", "snubber", "magnetics"),
 )
 """Packs in force where a project names none, in order."""
 PROFILES = (
