@@ -5,7 +5,6 @@ U: R31 10, C30 680p      V: R39 10, C33 680p      W: R47 22, C36 680p      W dif
 
 from collections import Counter
 from collections.abc import Sequence
-from dataclasses import dataclass
 
 import networkx as nx
 
@@ -14,6 +13,7 @@ from rulecheck.demand.neighbourhood import Neighbourhood, Node, neighbourhoods, 
 from rulecheck.demand.siblings import find_sibling_sets
 from rulecheck.stage import Stage
 from rulecheck.values import natural_key
+from rulecheck.values.record import Record
 
 _ROUNDS = 6
 _CERTAIN = 400
@@ -21,8 +21,7 @@ _CERTAIN = 400
 this rich do not share one by chance."""
 
 
-@dataclass(frozen=True, slots=True)
-class Likeness:
+class Likeness(Record):
     """How a leg compares with its siblings."""
 
     leg: Leg
@@ -54,8 +53,7 @@ def compare_legs(
     )
 
 
-@dataclass(frozen=True, slots=True)
-class _Signed:
+class _Signed(Record):
     """A neighbourhood with the signatures of its graphs."""
 
     around: Neighbourhood

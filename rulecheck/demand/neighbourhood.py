@@ -7,7 +7,6 @@ graph of parts, pins and nets, in which shared nets keep their names and own one
 
 import re
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass
 
 import networkx as nx
 
@@ -16,6 +15,7 @@ from rulecheck.demand.siblings import SHARED_KINDS, SiblingSet
 from rulecheck.parts import Kind, Part
 from rulecheck.stage import Role, Stage
 from rulecheck.values import Interval, Unknown
+from rulecheck.values.record import Record
 
 _CROWDED = 12
 """Pins from which a net is taken to serve all: a supply or a ground."""
@@ -30,8 +30,7 @@ _CHANNEL = re.compile(r"(?:\d+|-[a-d])$")
 Node = tuple[str, str]
 
 
-@dataclass(frozen=True, slots=True)
-class Surroundings:
+class Surroundings(Record):
     """Indexes of the whole circuit that every search uses."""
 
     parts: Mapping[str, Part]
@@ -63,8 +62,7 @@ def survey(stage: Stage, legs: Sequence[Leg]) -> Surroundings:
     return Surroundings(parts, named, frozenset(hubs), midpoints)
 
 
-@dataclass(frozen=True, slots=True)
-class Neighbourhood:
+class Neighbourhood(Record):
     """What belongs to one leg: its power and drive parts, and all with what measures as well."""
 
     main: "nx.Graph[Node]"

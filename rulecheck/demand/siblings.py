@@ -6,7 +6,6 @@ a chain of cells, one's midpoint on the next one's rail          all its cells a
 """
 
 from collections.abc import Iterator, Mapping, Sequence
-from dataclasses import dataclass
 from itertools import combinations
 
 import networkx as nx
@@ -14,10 +13,10 @@ import networkx as nx
 from rulecheck.demand.demands import Bridge, Leg
 from rulecheck.parts import Kind
 from rulecheck.stage import BranchKind, Stage
+from rulecheck.values.record import Record
 
 
-@dataclass(frozen=True, slots=True)
-class SiblingSet:
+class SiblingSet(Record):
     """Legs that should be built alike; `onward` says whether what follows their midpoints should.
 
     The two legs of an H-bridge and the cells of a chain are alike in themselves, but what is

@@ -5,7 +5,6 @@ keeps its mean voltage at zero. A capacitor in series does, and so does control 
 """
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
 
 from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.inputs import Inputs
@@ -14,6 +13,7 @@ from rulecheck.facts.terms import SubjectTerm, count, link, texts, yes_no
 from rulecheck.parts import Kind, through_nets
 from rulecheck.stage import BranchKind, Position, Transformer
 from rulecheck.values import Unknown
+from rulecheck.values.record import Record
 
 CORE = SubjectTerm(
     "core",
@@ -32,8 +32,7 @@ CORE = SubjectTerm(
 _Pair = tuple[str, str]
 
 
-@dataclass(frozen=True, slots=True)
-class _Drive:
+class _Drive(Record):
     """A winding between two rails while switches are on; `sign` is that of start over end."""
 
     winding: int

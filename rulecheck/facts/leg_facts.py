@@ -1,7 +1,6 @@
 """Facts of legs and bridges, which the switching states name."""
 
 from collections.abc import Iterable
-from dataclasses import replace
 
 from rulecheck.demand import Bridge, Leg, Likeness
 from rulecheck.facts.facts import Subject, Value
@@ -12,6 +11,7 @@ from rulecheck.facts.short_path import is_short_sensed
 from rulecheck.facts.terms import SubjectTerm, count, link, number, text, texts, yes_no
 from rulecheck.stage import Role
 from rulecheck.values import Dimension, Unknown, natural_key
+from rulecheck.values.record import replace
 
 LEG = SubjectTerm(
     "leg",

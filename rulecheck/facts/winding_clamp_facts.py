@@ -6,7 +6,6 @@ conduct from SWN into CLN; the capacitor settles where the resistor takes what t
 
 import math
 from collections.abc import Iterator
-from dataclasses import dataclass
 
 from rulecheck.facts.facts import Bounds, Subject, Value
 from rulecheck.facts.inputs import Inputs, at_least, stated_number
@@ -15,6 +14,7 @@ from rulecheck.facts.terms import SubjectTerm, link, number, text, yes_no
 from rulecheck.parts import Kind, Part
 from rulecheck.stage import Position, Role
 from rulecheck.values import Dimension, Interval, Unknown
+from rulecheck.values.record import Record
 
 V = Dimension.VOLTAGE
 
@@ -34,8 +34,7 @@ WINDING_CLAMP = SubjectTerm(
 )
 
 
-@dataclass(frozen=True, slots=True)
-class _Network:
+class _Network(Record):
     diode: Part
     capacitor: Part
     resistor: Part
