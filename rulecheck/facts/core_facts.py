@@ -151,24 +151,28 @@ def _odd_diodes(
     charging: list[str] = []
     starved: list[str] = []
     for drive in drives:
-        span = inputs.voltage_between[drive.rails]
-        if isinstance(span, Unknown) or not span.bounded or span.low < 0.0 < span.high:
-            continue
-        positive = (span.middle > 0.0) == (core.turns[drive.winding] > 0.0)
-        for index, ends in enumerate(core.windings):
-            if index == drive.winding:
-                continue
-            rises = positive == (core.turns[index] > 0.0)
-            for net, other in (ends, ends[::-1]):
-                high = rises == (net == ends[0])
-                for diode, far, out in _diodes(inputs, net):
-                    onward = [n for n in behind.get(far, ()) if n != net]
-                    stiff = (far, other) in inputs.voltage_between
-                    if out == high and stiff and not onward:
-                        charging.append(diode)
-                    if out != high and onward and not stiff:
-                        starved.append(diode)
+        for net, other, high in _ends_while_driven(inputs, core, drive):
+            for diode, far, out in _diodes(inputs, net):
+                onward = any(n != net for n in behind.get(far, ()))
+                stiff = (far, other) in inputs.voltage_between
+                charging += [diode] if out == high and stiff and not onward else []
+                starved += [diode] if out != high and onward and not stiff else []
     return tuple(dict.fromkeys(charging)), tuple(dict.fromkeys(starved))
+
+
+def _ends_while_driven(
+    inputs: Inputs, core: Transformer, drive: _Drive
+) -> Iterator[tuple[str, str, bool]]:
+    """(net, other end, whether it is the higher one) of the other windings while it is driven."""
+    span = inputs.voltage_between[drive.rails]
+    if isinstance(span, Unknown) or not span.bounded or span.low < 0.0 < span.high:
+        return
+    positive = (span.middle > 0.0) == (core.turns[drive.winding] > 0.0)
+    for index, (start, end) in enumerate(core.windings):
+        if index != drive.winding:
+            rises = positive == (core.turns[index] > 0.0)
+            yield start, end, rises
+            yield end, start, not rises
 
 
 def _diodes(inputs: Inputs, net: str) -> Iterator[tuple[str, str, bool]]:

@@ -28,7 +28,7 @@ SNUBBER = SubjectTerm(
         number("capacitor-rating", V, "The capacitor's rated voltage."),
         number("power", W, "C V^2 f: what the resistor turns into heat, both edges together."),
         number("rated-power", W, "The resistor's rated power."),
-        number("time-constant", S, "R C."),
+        number("time-constant", S, "Its resistance times its capacitance."),
         number("period", S, "The switching period of the position."),
         number("shortest-time", S, "The shortest time that the position is on or off."),
     ),
