@@ -14,6 +14,7 @@ FAULTS = {
     "pump-inverter-faulty.cir": {
         ("reverse-blocking", "Q6"),
         ("interrupted-current", "pump W -> star of pump"),
+        ("odd-leg-out", "W"),
     },
     "pump-npc-faulty.cir": {("blocking-rating", "D4")},
     # the turned transistor's source is no longer where its driver returns
