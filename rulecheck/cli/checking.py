@@ -70,7 +70,7 @@ def check_one(task: Task, rulebook: Rulebook, progress: Progress) -> Checked:
     if isinstance(analysis, Unusable):
         return Checked(None, None, analysis.problems)
     progress.step("rules")
-    verdicts = judge(rulebook, analysis.facts)
+    verdicts = judge(rulebook, analysis.facts, task.sources.access.limits)
     past = compared(task.against, rulebook, version_of(analysis, verdicts))
     return Checked(
         verdicts,
@@ -96,7 +96,9 @@ def compared(against: Task | None, rulebook: Rulebook, new: Version) -> Past:
     old = analyse(against.netlist, against.sources)
     if isinstance(old, Unusable):
         return Past(problems=old.problems)
-    changes = find_changes(version_of(old, judge(rulebook, old.facts)), new)
+    changes = find_changes(
+        version_of(old, judge(rulebook, old.facts, against.sources.access.limits)), new
+    )
     return Past(changes, old.problems, old.inputs)
 
 

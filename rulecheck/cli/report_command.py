@@ -20,7 +20,7 @@ from rulecheck.report.lint_result import lint_report, open_points
 from rulecheck.report.review import Findings, Occasion, Review, Studied, make_review
 from rulecheck.report.review.page import render
 from rulecheck.rulebook import Deviation, Rulebook, apply_deviations, judge, read_deviations
-from rulecheck.values import Problem, errors_of
+from rulecheck.values import Limits, Problem, errors_of
 from rulecheck.values.record import Record, replace
 
 
@@ -31,6 +31,7 @@ class _Basis(Record):
     rulebook: Rulebook
     deviations: tuple[Deviation, ...]
     asked: Moment | None
+    limits: Limits
 
 
 def run(request: Request) -> int:
@@ -63,14 +64,14 @@ def _prepare(request: Request) -> _Basis | tuple[Problem, ...]:
     asked = asked_moment()
     if reading.problems or isinstance(asked, Problem):
         return (*reading.problems, *((asked,) if isinstance(asked, Problem) else ()))
-    return _Basis(project, rulebook, reading.deviations, asked)
+    return _Basis(project, rulebook, reading.deviations, asked, request.limits)
 
 
 def _review(analysis: Analysis, basis: _Basis, earlier: Task | None) -> tuple[Review, Past]:
     moment = basis.asked or moment_of(Path(analysis.netlist))
     # a deviation ends on its day, whatever the date of the netlist's file
     today = basis.asked.day if basis.asked else datetime.datetime.now(datetime.UTC).date()
-    judged = judge(basis.rulebook, analysis.facts)
+    judged = judge(basis.rulebook, analysis.facts, basis.limits)
     past = compared(earlier, basis.rulebook, version_of(analysis, judged))
     verdicts = apply_deviations(judged, basis.deviations, today)
     points = open_points(analysis.stage, analysis.demands, analysis.problems)

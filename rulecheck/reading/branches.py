@@ -126,12 +126,16 @@ def _unprintable(source: SourceText) -> Problem | None:
 
 
 def _too_deep(source: SourceText) -> Problem | None:
-    depth = 0
+    depth = nodes = 0
     for event in yaml.parse(source.text, Loader=_PlainLoader):
         if isinstance(event, yaml.CollectionStartEvent):
             depth += 1
         elif isinstance(event, yaml.CollectionEndEvent):
             depth -= 1
+        nodes += isinstance(event, yaml.NodeEvent)
+        if nodes > LARGEST:
+            what = f"more than {LARGEST} entries"
+            return error(_mark(source.file, event), what, "split the file in two")
         if depth > DEEPEST:
             return error(
                 _mark(source.file, event),

@@ -11,20 +11,21 @@ from rulecheck.rulebook.fingerprint import fingerprint_of
 from rulecheck.rulebook.kleene import YES, Answer
 from rulecheck.rulebook.message import plain_value, write_message
 from rulecheck.rulebook.rulebook import ReadyRule, Rulebook
-from rulecheck.rulebook.scope import OWN, Scene
+from rulecheck.rulebook.scope import OWN, Scene, Steps, TooManyStepsError
 from rulecheck.rulebook.verdicts import BROKEN, HOLDS, UNDECIDED, Verdict, Verdicts
 from rulecheck.rulebook.waiting import tally_of, waiting_for
-from rulecheck.values import Unknown
+from rulecheck.values import USUAL, Limits, Unknown, raise_limit
 from rulecheck.values.record import replace
 
 
-def judge(rulebook: Rulebook, facts: Facts) -> Verdicts:
+def judge(rulebook: Rulebook, facts: Facts, limits: Limits = USUAL) -> Verdicts:
     """Every rule in force on every subject of its kind, in the order of rules and of names."""
+    most = limits["condition-steps"]
     verdicts = tuple(
         verdict
-        for rule in rulebook.ready
+        for rule, steps in ((rule, Steps(most)) for rule in rulebook.ready)
         for subject in facts.of_kind(rule.rule.subject)
-        for verdict in judge_one(rule, subject, facts)
+        for verdict in judge_one(rule, subject, facts, steps)
     )
     return Verdicts(
         facts.netlist,
@@ -35,9 +36,33 @@ def judge(rulebook: Rulebook, facts: Facts) -> Verdicts:
     )
 
 
-def judge_one(rule: ReadyRule, subject: Subject, facts: Facts) -> Iterator[Verdict]:
-    """The one verdict of a rule on a subject; none where the rule is silent."""
-    scene = Scene(facts, {OWN: subject})
+def judge_one(
+    rule: ReadyRule, subject: Subject, facts: Facts, steps: Steps | None = None
+) -> Iterator[Verdict]:
+    """The one verdict of a rule on a subject; none where the rule is silent.
+
+    A rule that takes too many steps is undecided from there on.
+    """
+    steps = steps or Steps(USUAL["condition-steps"])
+    try:
+        yield from tuple(_judged(rule, subject, Scene(facts, {OWN: subject}, steps)))
+    except TooManyStepsError:
+        yield _not_finished(rule, subject)
+
+
+def _not_finished(rule: ReadyRule, subject: Subject) -> Verdict:
+    settle = raise_limit("condition-steps")
+    missing = Unknown(f"what {rule.rule.id} says of {subject.name}, in too many steps", settle)
+    return replace(
+        _held(rule, subject),
+        verdict=UNDECIDED,
+        message=f"not known: {missing.what}",
+        missing=(missing,),
+        fingerprint=fingerprint_of(rule.rule.id, subject.kind, subject.name),
+    )
+
+
+def _judged(rule: ReadyRule, subject: Subject, scene: Scene) -> Iterator[Verdict]:
     applies = rule.applies.run(scene) if rule.applies else YES
     if applies.truth is False:
         return

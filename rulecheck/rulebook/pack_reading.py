@@ -1,6 +1,7 @@
 """Read one pack: the file's entries become rules with parsed conditions, every flaw located."""
 
 import difflib
+import math
 from collections.abc import Mapping
 
 from rulecheck.facts import TABLE_WORDS, VOCABULARY
@@ -140,7 +141,10 @@ def _parameter(
 
 def _quantity(reader: PackReader, path: Path, raw: str | int | float) -> Quantity | None:
     if isinstance(raw, int | float):
-        return Quantity(float(raw), Dimension.NUMBER)
+        if math.isfinite(raw):
+            return Quantity(float(raw), Dimension.NUMBER)
+        reader.fail(path, "the value is beyond what a number can hold", "write what is meant")
+        return None
     quantity = read_quantity(raw)
     if isinstance(quantity, NotAQuantity):
         reader.fail(path, quantity.why, "write a number with its unit, such as 0.8 or 60 V")

@@ -7,7 +7,7 @@ from rulecheck.facts import VOCABULARY, Facts, FieldTerm, Form, LinkTerm, Subjec
 from rulecheck.rulebook.tree import Flaw
 from rulecheck.rulebook.units import OF_DIMENSION, PLAIN, Unit
 from rulecheck.values import Dimension, Span
-from rulecheck.values.record import Record, field, replace
+from rulecheck.values.record import Mutable, Record, field, replace
 
 NAME_FIELD = FieldTerm("name", Form.TEXT, "Its name.")
 OWN = ""
@@ -44,14 +44,32 @@ class Parameter(Record):
         return min(rows, key=lambda row: row.value, default=self.rows[OTHER])
 
 
+class TooManyStepsError(Exception):
+    """Raised where a rule has bound more subjects to its words than it may on one netlist."""
+
+
+class Steps(Mutable):
+    """How many subjects one rule may still bind: quantifiers within each other multiply."""
+
+    left: int
+
+    def take(self) -> None:
+        self.left -= 1
+        if self.left < 0:
+            raise TooManyStepsError
+
+
 class Scene(Record):
     """The facts and the subjects that the bound words stand for at the moment."""
 
     facts: Facts
     subjects: Mapping[str, Subject]
+    steps: Steps | None = None
 
     def with_subject(self, name: str, subject: Subject) -> "Scene":
-        return Scene(self.facts, {**self.subjects, name: subject})
+        if self.steps is not None:
+            self.steps.take()
+        return Scene(self.facts, {**self.subjects, name: subject}, self.steps)
 
 
 class Bound(Record):

@@ -3,6 +3,7 @@
 Here a prefix is case-sensitive, as SI has it (`m` milli, `M` mega), unlike in a netlist.
 """
 
+import math
 import re
 from enum import StrEnum
 
@@ -51,6 +52,8 @@ _PREFIXES = {
 }  # fmt: skip
 _NUMBER = re.compile(r"\s*([+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?)\s*(.*?)\s*\Z")
 _PERCENT = 0.01
+_LONGEST = 100
+"""Characters; the patterns' time grows with the square of the length."""
 
 
 class Quantity(Record):
@@ -72,10 +75,14 @@ def read_quantity(text: str) -> Quantity | NotAQuantity:
     >>> read_quantity("400 ns")
     Quantity(value=4e-07, dimension=<Dimension.TIME: 's'>)
     """
+    if len(text) > _LONGEST:
+        return NotAQuantity(f"'{text[:_LONGEST]}...' is too long for a quantity")
     match = _NUMBER.match(text)
     if not match:
         return NotAQuantity(f"'{text}' does not start with a number")
     number, tail = float(match[1]), match[2]
+    if not math.isfinite(number):
+        return NotAQuantity(f"'{match[1]}' is beyond what a number can hold")
     if tail == "%":
         return Quantity(number * _PERCENT, Dimension.NUMBER)
     scaled = _scale_and_unit(tail)

@@ -41,7 +41,11 @@ def test_a_quantity_is_read_in_its_base_unit(
         (True, Dimension.VOLTAGE, "true is no quantity; a voltage is wanted"),
         (None, Dimension.VOLTAGE, "nothing is no quantity; a voltage is wanted"),
         ({"x": 1}, Dimension.VOLTAGE, "a mapping is no quantity; a voltage is wanted"),
-        ("1e999 V", Dimension.VOLTAGE, "1e999 V is no finite number; a voltage is wanted"),
+        (
+            "1e999 V",
+            Dimension.VOLTAGE,
+            "'1e999' is beyond what a number can hold; a voltage is wanted",
+        ),
         (float("nan"), Dimension.VOLTAGE, "nan is no finite number; a voltage is wanted"),
     ],
 )

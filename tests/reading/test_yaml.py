@@ -199,3 +199,8 @@ def test_the_schema_carries_units_and_forbids_other_keys() -> None:
     assert store["additionalProperties"] is False
     assert store["required"] == ["rated-voltage"]
     assert store["properties"]["rated-voltage"]["x-unit"] == "V"
+
+
+def test_too_many_entries_are_refused_before_they_are_built() -> None:
+    (line,) = lines("rooms: [" + "1," * 200_001 + "]")
+    assert line.endswith("error: more than 200000 entries; split the file in two")

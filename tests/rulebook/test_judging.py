@@ -17,7 +17,7 @@ from rulecheck.rulebook import (
     record_text,
     unused_deviations,
 )
-from rulecheck.values import Interval, Problem, Span
+from rulecheck.values import Interval, Limits, Problem, Span
 from rulecheck.values.record import replace
 from tests.rulebook.making import facts, missing, pack, subject
 
@@ -221,3 +221,45 @@ def test_fingerprints_tell_rule_kind_and_subject_apart():
     assert len({v.fingerprint for v in broken}) == 2
     again = verdicts(q("q1", asked=120.0)).verdicts[0]
     assert again.fingerprint == broken[0].fingerprint
+
+
+def test_a_rule_that_takes_too_many_steps_is_undecided_and_names_the_limit():
+    parts = [subject("part", f"D{number}") for number in range(30)]
+    names = tuple(part.name for part in parts)
+    own = subject("position", "Q1", {"devices": names})
+    condition = (
+        "every a among devices has every b among devices has every c among devices has"
+        ' (a.name = "D1" or a.name != "D1")'
+    )
+    book = load_packs([SourceText("p.rules.yaml", PACK_OF_ONE.format(condition=condition))])
+    assert [verdict.verdict for verdict in judge(book, facts(own, *parts)).verdicts] == ["holds"]
+    few = Limits((("condition-steps", 20_000),))
+    (verdict,) = judge(book, facts(own, *parts), few).verdicts
+    assert verdict.verdict == "undecided"
+    assert "--limit condition-steps=N" in verdict.missing[0].settle
+
+
+PACK_OF_ONE = """pack: p
+rules:
+  - id: r
+    subject: position
+    level: error
+    requires: '{condition}'
+    message: m
+    why: w
+    remedy: r
+    source: s
+    examples:
+      - {{expect: holds, netlist: "* t"}}
+      - {{expect: broken, netlist: "* t"}}
+"""
+
+
+@pytest.mark.parametrize("written", ["1e999", "1e999 V", "-1e999 V", ".5e400 %"])
+def test_a_number_beyond_all_bounds_is_an_error_in_a_pack(written):
+    condition = PACK_OF_ONE.format(condition=f"highest(off-voltage) / 1 V < {written}")
+    value = PACK_OF_ONE.format(condition="yes")
+    value += f"parameters: {{k: {{value: {written}, source: s}}}}"
+    for text in (condition, value):
+        problems = load_packs([SourceText("p.rules.yaml", text)]).problems
+        assert any("what a number can hold" in problem.what for problem in problems)
