@@ -10,6 +10,8 @@ from pathlib import Path
 
 from rulecheck.reading import SourceText, read_text
 from rulecheck.rulebook import (
+    BY_NAME,
+    DISCHARGE_LIMITS,
     IN_FORCE,
     PROFILES,
     SUFFIX,
@@ -46,6 +48,6 @@ def find_pack(name: str, limits: Limits = USUAL) -> SourceText | Problem:
         return shipped
     if Path(name).suffix or os.path.lexists(name):
         return read_text(Path(name), limits)
-    close = difflib.get_close_matches(name, [*IN_FORCE, *PROFILES], 1)
+    close = difflib.get_close_matches(name, [*IN_FORCE, *BY_NAME, *PROFILES, *DISCHARGE_LIMITS], 1)
     remedy = f"did you mean '{close[0]}'?" if close else "name a file, or one of the shipped packs"
     return error(Span(name, 1), f"no pack is called '{name}'", remedy)

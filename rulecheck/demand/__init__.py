@@ -1,5 +1,6 @@
 """What the circuit asks of each position, from its legal switching states."""
 
+from rulecheck.demand.bank_records import BankFindings, CapacitorBank, Discharge
 from rulecheck.demand.build import find_demands
 from rulecheck.demand.demands import (
     Bridge,
@@ -27,10 +28,13 @@ from rulecheck.demand.waveforms.records import (
 )
 
 __all__ = [
+    "BankFindings",
     "Bridge",
+    "CapacitorBank",
     "CapacitorWaves",
     "Demands",
     "Derived",
+    "Discharge",
     "FreeShort",
     "Group",
     "HardCommutation",

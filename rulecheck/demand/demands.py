@@ -2,6 +2,7 @@
 
 from collections.abc import Mapping
 
+from rulecheck.demand.bank_records import BankFindings
 from rulecheck.demand.waveforms.records import Waveforms
 from rulecheck.values import AffineForm, Interval, QuadrantSet, Unknown
 from rulecheck.values.record import Record, field
@@ -142,3 +143,4 @@ class Demands(Record):
     assumed: tuple[str, ...]
     not_covered: tuple[str, ...]
     waveforms: Waveforms = field(default_factory=Waveforms)
+    banks: BankFindings = field(default_factory=BankFindings)

@@ -5,8 +5,10 @@ from collections.abc import Callable, Iterable, Mapping
 from rulecheck.capability import Capabilities
 from rulecheck.demand import Demands
 from rulecheck.facts import (
+    bank_facts,
     clamp_facts,
     core_facts,
+    filter_facts,
     free_path_facts,
     gate_drive_facts,
     gate_supply_facts,
@@ -41,6 +43,8 @@ _COLLECTORS: tuple[Callable[[Inputs], tuple[Subject, ...]], ...] = (
     gate_drive_facts.collect,
     gate_supply_facts.collect,
     passive_facts.collect,
+    bank_facts.collect,
+    filter_facts.collect,
     port_facts.collect,
     line_facts.collect,
     shunt_facts.collect,

@@ -7,6 +7,7 @@ from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.feeding import Wires, find_wires
 from rulecheck.facts.inputs import Inputs
 from rulecheck.facts.likeness_facts import LEG_LIKENESS, leg_likeness, likeness_of_legs
+from rulecheck.facts.loop_facts import LOOP_TERMS, loop_values
 from rulecheck.facts.short_path import is_short_sensed
 from rulecheck.facts.terms import SubjectTerm, count, link, number, text, texts, yes_no
 from rulecheck.stage import Role
@@ -36,6 +37,7 @@ LEG = SubjectTerm(
         number("frequency", Dimension.FREQUENCY, "Its switching frequency."),
         number("dead-time", Dimension.TIME, "Its dead time."),
         *LEG_LIKENESS,
+        *LOOP_TERMS,
     ),
     (
         link("positions", "position", "All its positions."),
@@ -103,6 +105,7 @@ def _leg(inputs: Inputs, wires: Wires, leg: Leg) -> Subject:
         "high-models": _models(inputs, leg.high),
         "low-models": _models(inputs, leg.low),
         **_switching(inputs, leg.midpoint),
+        **loop_values(inputs, leg),
     }
     links = {
         "positions": positions,

@@ -32,6 +32,7 @@ INDUCTOR = SubjectTerm(
         number("saturation-current", A, "Its rated saturation current."),
         number("rms-rating", A, "Its rated rms current."),
         yes_no("power", "Power current flows through it."),
+        yes_no("polarised-core", "A magnet in its core asks for current from first net to second."),
         *INDUCTOR_TERMS,
     ),
     (_OWN_PART, link("interruptions", "free-path", "Its currents that all gates off interrupt.")),
@@ -65,6 +66,7 @@ RESISTOR = SubjectTerm(
         number("rated-voltage", V, "Its rated voltage."),
         number("largest-voltage", V, "The largest voltage across it, where it is known."),
         number("power", W, "Its dissipation at the largest voltage, where that is known."),
+        yes_no("bleeder", "It lies between the nets of a charged bank and discharges it."),
     ),
     (_OWN_PART,),
 )
@@ -119,6 +121,7 @@ def _inductor(inputs: Inputs, part: Part, variables: dict[str, Variable]) -> Sub
         "saturation-current": stated_number(part, "ratings.current"),
         "rms-rating": stated_number(part, "ratings.rms-current"),
         "power": part.name in inputs.branch_parts,
+        "polarised-core": part.facts.get("ratings.core") == "polarised",
         **inductor_values(inputs, part.name),
     }
     interrupted = tuple(
@@ -159,8 +162,11 @@ def _capacitor(inputs: Inputs, part: Part, variables: dict[str, Variable]) -> Su
 def _resistor(inputs: Inputs, part: Part, variables: dict[str, Variable]) -> Subject:
     del variables
     span = _known_across(inputs, part)
+    bleeds = inputs.demands.banks.bleeders.get(part.name)
     settle = f"set: {{{part.name}: {{voltage: [LOW, HIGH]}}}}"
     volts: Value = Unknown(f"voltage of {part.name}", settle) if span is None else _magnitude(span)
+    if span is None and bleeds is not None:
+        volts = bleeds
     power: Value = volts if isinstance(volts, Unknown) else part.value
     if isinstance(volts, float) and isinstance(part.value, float) and part.value > 0.0:
         power = volts * volts / part.value
@@ -170,6 +176,7 @@ def _resistor(inputs: Inputs, part: Part, variables: dict[str, Variable]) -> Sub
         "rated-voltage": stated_number(part, "ratings.voltage"),
         "largest-voltage": volts,
         "power": power,
+        "bleeder": bool(bleeds),
     }
     return _subject(inputs, part, values, {})
 

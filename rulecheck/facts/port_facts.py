@@ -4,7 +4,7 @@ from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.feeding import Wires, find_wires
 from rulecheck.facts.inputs import Inputs
 from rulecheck.facts.port_guards import is_fused, is_reverse_protected, is_surge_clamped
-from rulecheck.facts.terms import SubjectTerm, link, span_of, text, texts, yes_no
+from rulecheck.facts.terms import SubjectTerm, link, number, span_of, text, texts, yes_no
 from rulecheck.stage import Port
 from rulecheck.values import Dimension, Interval, Unknown
 
@@ -27,8 +27,13 @@ PORT = SubjectTerm(
         texts("withstands", "What the sheet says it is to survive from outside."),
         yes_no("reverse-protected", "Turned round it drives no current, or blows its fuse."),
         yes_no("surge-clamped", "A clamp stands between its lines."),
+        yes_no("ripple-limited", "The sheet says how much ripple its voltage may have."),
+        number("ripple-limit", Dimension.VOLTAGE, "That ripple, peak to peak."),
     ),
-    (link("nets", "net", "Its nets."),),
+    (
+        link("nets", "net", "Its nets."),
+        link("banks", "bank", "Capacitors across it."),
+    ),
 )
 
 
@@ -57,9 +62,15 @@ def _port(inputs: Inputs, wires: Wires, port: Port) -> Subject:
         "withstands": port.withstands,
         "reverse-protected": is_reverse_protected(inputs, wires, port),
         "surge-clamped": is_surge_clamped(inputs, port),
+        "ripple-limited": port.ripple is not None,
+        "ripple-limit": port.ripple or _stated(port, "ripple", None),
     }
     nets = tuple(dict.fromkeys(net for net in (*port.nets, port.neutral) if net))
-    return Subject("port", port.name, values, {"nets": nets}, (), nets, port.span)
+    banks = tuple(
+        bank.name for bank in inputs.demands.banks.banks if {bank.start, bank.end} <= set(port.nets)
+    )
+    links = {"nets": nets, "banks": banks}
+    return Subject("port", port.name, values, links, (), nets, port.span)
 
 
 def _or_derived(

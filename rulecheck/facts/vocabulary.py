@@ -2,8 +2,10 @@
 
 from collections.abc import Mapping
 
+from rulecheck.facts.bank_facts import BANK
 from rulecheck.facts.clamp_facts import CLAMP
 from rulecheck.facts.core_facts import CORE
+from rulecheck.facts.filter_facts import FILTER
 from rulecheck.facts.free_path_facts import FREE_PATH
 from rulecheck.facts.gate_drive_terms import GATE_DRIVE
 from rulecheck.facts.gate_supply_facts import GATE_SUPPLY
@@ -40,6 +42,8 @@ VOCABULARY: Mapping[str, SubjectTerm] = {
         INDUCTOR,
         CAPACITOR,
         RESISTOR,
+        BANK,
+        FILTER,
         PORT,
         LINE_ELEMENT,
         SHUNT,

@@ -34,7 +34,7 @@ def inductor_values(inputs: Inputs, name: str) -> dict[str, Value]:
     waves = inputs.demands.waveforms.inductors.get(name) or _no_inductor(name)
     return {
         "mean-current": _span(waves.mean),
-        "rms-current": _worst(waves.rms),
+        "rms-current": _rms(inputs, name, waves.rms),
         "peak-to-peak": _worst(waves.ripple),
     }
 
@@ -42,7 +42,7 @@ def inductor_values(inputs: Inputs, name: str) -> dict[str, Value]:
 def capacitor_values(inputs: Inputs, name: str) -> dict[str, Value]:
     waves = inputs.demands.waveforms.capacitors.get(name) or _no_capacitor(name)
     return {
-        "rms-current": _worst(waves.rms),
+        "rms-current": _rms(inputs, name, waves.rms),
         "ripple-voltage": _worst(waves.ripple),
         "share": waves.share,
     }
@@ -52,10 +52,19 @@ def position_values(inputs: Inputs, name: str) -> dict[str, Value]:
     waves = inputs.demands.waveforms.positions.get(name) or _no_position(name)
     return {
         "mean-current": _span(waves.mean),
-        "rms-current": _worst(waves.rms),
+        "rms-current": _rms(inputs, name, waves.rms),
         "forward-mean-current": _worst(waves.forward_mean),
         "reverse-mean-current": _worst(waves.reverse_mean),
     }
+
+
+def _rms(inputs: Inputs, name: str, derived: Derived) -> Value:
+    """What the sheet states, else what was worked out."""
+    found = inputs.stage.rms_currents.get(name, _worst(derived))
+    if isinstance(found, Unknown):
+        settle = f"{found.settle}; or set: {{{name}: {{rms-current: ...}}}}"
+        return Unknown(found.what, settle)
+    return found
 
 
 def _worst(derived: Derived) -> Value:

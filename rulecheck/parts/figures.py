@@ -47,6 +47,7 @@ FIGURES: tuple[Figure, ...] = (
     Figure("ratings", "isolation", _V),
     Figure("ratings", "gate", _V, ranged=True),
     Figure("ratings", "power", Dimension.POWER, scales=True),
+    Figure("ratings", "energy", Dimension.ENERGY, scales=True),
     Figure("ratings", "junction-temperature", Dimension.TEMPERATURE),
     Figure(
         "ratings",
@@ -54,6 +55,7 @@ FIGURES: tuple[Figure, ...] = (
         Dimension.NUMBER,
         words=("ceramic", "film", "electrolytic", "tantalum"),
     ),
+    Figure("ratings", "core", Dimension.NUMBER, words=("polarised",)),
     Figure("gate", "charge", _C, scales=True),
     Figure("gate", "threshold", _V, ranged=True),
     Figure("gate", "miller-capacitance", _F, scales=True),
@@ -104,12 +106,15 @@ APPLICABLE: Mapping[Kind, Words] = {
     Kind.IGBT_WITH_DIODE: _TRANSISTOR,
     Kind.REVERSE_BLOCKING_IGBT: _TRANSISTOR,
     Kind.IDEAL_SWITCH: _TRANSISTOR,
-    Kind.RESISTOR: ("ratings.power", "ratings.voltage", "ratings.current"),
+    Kind.RESISTOR: ("ratings.power", "ratings.energy", "ratings.voltage", "ratings.current"),
     Kind.CAPACITOR: (
         *("ratings.voltage", "ratings.ripple-current", "ratings.dielectric"),
         "ratings.isolation",
     ),
-    Kind.INDUCTOR: ("ratings.current", "ratings.rms-current", "ratings.isolation"),
+    Kind.INDUCTOR: (
+        *("ratings.current", "ratings.rms-current", "ratings.isolation"),
+        "ratings.core",
+    ),
     Kind.WINDING_SET: (
         *("ratings.current", "ratings.rms-current", "ratings.voltage"),
         "ratings.isolation",
@@ -118,7 +123,7 @@ APPLICABLE: Mapping[Kind, Words] = {
     Kind.CIRCUIT_BREAKER: _LINE,
     Kind.CONNECTOR: _LINE,
     Kind.RELAY: (*_LINE, "ratings.isolation"),
-    Kind.NTC: ("ratings.current", "ratings.power"),
+    Kind.NTC: ("ratings.current", "ratings.power", "ratings.energy"),
     Kind.VARISTOR: ("ratings.voltage", "ratings.dc-voltage", "ratings.clamp", "ratings.power"),
     Kind.COMMON_MODE_CHOKE: (*_LINE, "ratings.isolation"),
     Kind.CURRENT_TRANSFORMER: (*_LINE, "ratings.isolation"),

@@ -13,6 +13,7 @@ from rulecheck.reading.quantities import (
     Capacitance,
     Charge,
     Current,
+    Energy,
     Inductance,
     Plain,
     Power,
@@ -54,8 +55,11 @@ class RatingsEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rena
     isolation: Voltage | None = None
     gate: VoltageRange | None = None
     power: Power | None = None
+    energy: Energy | None = None
     junction_temperature: Temperature | None = None
     dielectric: Literal["ceramic", "film", "electrolytic", "tantalum"] | None = None
+    core: Literal["polarised"] | None = None
+    """Of an inductor with a magnet in its core: biased from its first net to its second."""
 
 
 class GateEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename="kebab"):

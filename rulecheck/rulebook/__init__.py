@@ -15,6 +15,8 @@ from rulecheck.rulebook.record import new_since, read_record, record_text
 from rulecheck.rulebook.rulebook import PackInForce, Rule, Rulebook, SwitchedOff
 from rulecheck.rulebook.rules_text import rules_text
 from rulecheck.rulebook.shipped import (
+    BY_NAME,
+    DISCHARGE_LIMITS,
     IN_FORCE,
     PROFILES,
     SUFFIX,
@@ -24,6 +26,8 @@ from rulecheck.rulebook.shipped import (
 from rulecheck.rulebook.verdicts import Excuse, Tally, Verdict, Verdicts, Waiting
 
 __all__ = [
+    "BY_NAME",
+    "DISCHARGE_LIMITS",
     "IN_FORCE",
     "PROFILES",
     "SUFFIX",

@@ -17,10 +17,22 @@ PROFILES = (
 )
 """Packs of factors; each comes into force after the others, where it is named."""
 
+BY_NAME = ("bus",)
+"""Packs in force where a project or an argument names them."""
+DISCHARGE_LIMITS = (
+    "discharge/iec-60204-1",
+    "discharge/iec-61010-1",
+    "discharge/iec-61800-5-1",
+    "discharge/nfpa-79",
+    "discharge/un-r94",
+    "discharge/vehicle-active",
+)
+"""Packs of times and of charges let pass, each in force where it is named after `bus`."""
+
 
 def shipped_pack(name: str) -> SourceText | None:
     """The pack of that name; None where the program has none."""
-    if name not in (*IN_FORCE, *PROFILES):
+    if name not in (*IN_FORCE, *BY_NAME, *PROFILES, *DISCHARGE_LIMITS):
         return None
     place = packaged("rules")
     for step in (name + SUFFIX).split("/"):

@@ -82,6 +82,7 @@ def read_stage(parts: PartList, sheet: Sheet) -> StageReading:
         {n: o.current for n, o in _overrides(parts, sheet) if o.current is not None},
         {n: o.voltage for n, o in _overrides(parts, sheet) if o.voltage is not None},
         {n: o.leakage for n, o in _overrides(parts, sheet) if o.leakage is not None},
+        {n: o.rms_current for n, o in _overrides(parts, sheet) if o.rms_current is not None},
         {n: o.balance for n, o in _overrides(parts, sheet) if o.balance},
         sheet.efficiency,
         sheet.file,

@@ -76,6 +76,7 @@ def _port(entry: SheetPort, nets: tuple[str, ...], neutral: str) -> Port:
         entry.modulation,
         entry.modulation_index,
         entry.power_factor,
+        entry.ripple,
     )
 
 

@@ -15,6 +15,7 @@ from rulecheck.stage.layout import SOURCES, Layout, is_semiconductor, main_nets
 from rulecheck.stage.sheet import SheetPort
 from rulecheck.values import Unknown
 
+_STRING = frozenset({Kind.CAPACITOR, Kind.RESISTOR})
 LOAD_RESISTANCE = 10e3
 """Ohm; from here on a resistor senses or bleeds (common practice)."""
 ISOLATION_CAPACITANCE = 22e-9
@@ -44,7 +45,25 @@ def find_live_nets(layout: Layout, aside: frozenset[str]) -> frozenset[str]:
     graph.remove_nodes_from(layout.grounds)
     seeds = [net for net in _seeds(layout, aside) if net in graph]
     reached = set().union(*(nx.node_connected_component(graph, net) for net in seeds), set())
-    return frozenset(net for net in reached if isinstance(net, str)) | layout.grounds
+    live = frozenset(net for net in reached if isinstance(net, str)) | layout.grounds
+    return live | _between_capacitors(layout, aside, live)
+
+
+def _between_capacitors(
+    layout: Layout, aside: frozenset[str], live: frozenset[str]
+) -> frozenset[str]:
+    """Nets inside strings of capacitors in series: nothing else but resistors touches them."""
+    inside: dict[str, set[str]] = {}
+    for net, touches in layout.touches.items():
+        parts = [touch.part for touch in touches]
+        kinds = [part.kind for part in parts]
+        strung = kinds.count(Kind.CAPACITOR) >= 2 and set(kinds) <= _STRING
+        if net not in live and strung and not {part.name for part in parts} & aside:
+            caps = [part for part in parts if part.kind is Kind.CAPACITOR]
+            inside[net] = {other for part in caps for other in layout.others(part, net)}
+    while any(not ends <= live | inside.keys() for ends in inside.values()):
+        inside = {net: ends for net, ends in inside.items() if ends <= live | inside.keys()}
+    return frozenset(inside)
 
 
 def _feeding_ends(layout: Layout, part: Part, aside: frozenset[str]) -> tuple[str, ...]:

@@ -47,6 +47,7 @@ class SheetPort(Record):
     source: str = ""
     fused_elsewhere: bool = False
     withstands: tuple[str, ...] = ()
+    ripple: float | None = None
 
 
 class Override(Record):
@@ -56,6 +57,7 @@ class Override(Record):
     role: Role | None
     span: Span
     leakage: float | None = None
+    rms_current: float | None = None
     balance: str = ""
 
 
@@ -185,6 +187,7 @@ def _switching(entry: SwitchingEntry | LegSwitchingEntry, path: Path, reader: Re
         reader.number(entry.dead_time, Dimension.TIME, (*path, "dead-time")),
         reader.number(entry.edge, Dimension.TIME, (*path, "edge")),
         reader.number(entry.shortest_pulse, Dimension.TIME, (*path, "shortest-pulse")),
+        reader.number(entry.stray_inductance, Dimension.INDUCTANCE, (*path, "stray-inductance")),
         phase,
     )
 
@@ -201,7 +204,8 @@ def _override(name: str, entry: OverrideEntry, reader: Reader) -> Override:
             reader.fail((*path, "role"), f"role '{entry.role}' is not known", f"use one of {known}")
     leakage = reader.number(entry.leakage, Dimension.INDUCTANCE, (*path, "leakage"))
     span = reader.marks.span(path)
-    return Override(name, current, voltage, role, span, leakage, entry.balance or "")
+    rms = reader.number(entry.rms_current, Dimension.CURRENT, (*path, "rms-current"))
+    return Override(name, current, voltage, role, span, leakage, rms, entry.balance or "")
 
 
 def _port(name: str, entry: PortEntry, reader: Reader) -> SheetPort:
@@ -240,6 +244,7 @@ def _port(name: str, entry: PortEntry, reader: Reader) -> SheetPort:
         entry.source or "",
         entry.fuse == "elsewhere",
         tuple(entry.withstands),
+        reader.number(entry.ripple, Dimension.VOLTAGE, (*path, "ripple")),
     )
 
 

@@ -11,6 +11,7 @@ import msgspec
 from msgspec import Meta
 
 from rulecheck.reading.quantities import (
+    Current,
     Frequency,
     FrequencyRange,
     Inductance,
@@ -36,7 +37,9 @@ class PortEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename=
     """A port: two nets (`between`) or a symmetrical set (`phases`), and what is known of it.
 
     `source` says what stands behind it, `fuse: elsewhere` that its fuse or breaker is on another
-    drawing, `withstands` what it is to survive from outside.
+    drawing, `withstands` what it is to survive from outside, `ripple` the most it
+    may have, peak to peak. Of a sine: `modulation-index` is the amplitude over half the bus (over
+    the bus between two legs), `power-factor` cos phi.
     """
 
     between: list[NetName] | None = None
@@ -51,9 +54,10 @@ class PortEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename=
     source: Literal["battery", "mains", "panel", "generator", "supply", "load"] | None = None
     fuse: Literal["here", "elsewhere"] | None = None
     withstands: list[Literal["reverse-polarity", "surge"]] = []
-    modulation: str | None = None
+    modulation: Literal["unipolar", "bipolar"] | None = None
     modulation_index: PlainRange | None = None
     power_factor: PlainRange | None = None
+    ripple: Voltage | None = None
 
 
 class LegSwitchingEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename="kebab"):
@@ -63,25 +67,29 @@ class LegSwitchingEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True,
     dead_time: Time | None = None
     edge: Time | None = None
     shortest_pulse: Time | None = None
+    stray_inductance: Inductance | None = None
     phase: Plain | None = None
 
 
 class SwitchingEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename="kebab"):
     """For all legs; `legs` states it for one, by the net of its midpoint.
 
-    `shortest-pulse` is the shortest time that a switch is commanded on or off.
+    `shortest-pulse` is the shortest time that a switch is commanded on or off,
+    `stray-inductance` that of the loop through a leg and its nearest capacitor.
     """
 
     frequency: Frequency | None = None
     dead_time: Time | None = None
     edge: Time | None = None
     shortest_pulse: Time | None = None
+    stray_inductance: Inductance | None = None
     legs: dict[str, LegSwitchingEntry] = {}
 
 
 class OverrideEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, rename="kebab"):
     """What the sheet states of one element, over everything derived.
 
+    `rms-current` stands for what a simulation or a measurement gave as the largest.
     Of a winding: `leakage` seen from it, and what keeps the mean voltage of its core at zero.
     """
 
@@ -89,6 +97,7 @@ class OverrideEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, ren
     voltage: AlternatingRange | None = None
     role: str | None = None
     leakage: Inductance | None = None
+    rms_current: Current | None = None
     balance: Literal["current-control", "gap", "measured"] | None = None
 
 

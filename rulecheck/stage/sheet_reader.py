@@ -18,7 +18,6 @@ from rulecheck.values.record import Mutable, field
 Path = tuple[str | int, ...]
 Kept = TypeVar("Kept", float, Interval)
 _ALTERNATING = re.compile(r"\s*(.*?)\s+(peak|rms)\s*\Z", re.IGNORECASE)
-MODULATIONS = ("unipolar", "bipolar")
 MOST_MODULATION = 2.0 / math.sqrt(3.0)
 """Of a three-phase bridge, before it clips."""
 
@@ -75,10 +74,6 @@ def modulated(
     entry: PortEntry, kind: PortKind, path: Path, reader: Reader
 ) -> tuple[str, Interval | None, Interval | None]:
     """How a sine is made at an AC port, and what the port does with it."""
-    pattern = entry.modulation or ""
-    if pattern and pattern not in MODULATIONS:
-        where, known = (*path, "modulation"), " or ".join(MODULATIONS)
-        reader.fail(where, f"modulation '{pattern}' is not known", f"write {known}")
     found = []
     for key, raw, most in (
         ("modulation-index", entry.modulation_index, MOST_MODULATION),
@@ -91,4 +86,4 @@ def modulated(
             reader.fail((*path, key), f"{key} is not within 0 and {most:.4g}", "write 0.8")
             span = None
         found.append(span)
-    return pattern, found[0], found[1]
+    return entry.modulation or "", found[0], found[1]

@@ -55,6 +55,8 @@ class Port(Record):
     modulation_index: Interval | None = None
     power_factor: Interval | None = None
     """cos phi of an AC port's fundamental, positive whatever way the power goes."""
+    ripple: float | None = None
+    """The most that its voltage may have, volts peak to peak."""
 
 
 class BranchKind(StrEnum):
@@ -126,6 +128,8 @@ class Switching(Record):
     dead_time: float | None = None
     edge: float | None = None
     shortest_pulse: float | None = None
+    stray_inductance: float | None = None
+    """Of the loop through a leg and its capacitor, henry."""
     phase: float | None = None
     """Of one leg: when it turns on, degrees of the switching period."""
 
@@ -186,6 +190,8 @@ class Stage(Record):
     """By part: what the sheet says stands across it."""
     leakage: Mapping[str, float] = field(default_factory=dict)
     """By winding: the leakage inductance seen from it, henry."""
+    rms_currents: Mapping[str, float] = field(default_factory=dict)
+    """By part: its largest rms current, where the sheet states it."""
     balance: Mapping[str, str] = field(default_factory=dict)
     """By winding: what keeps its mean voltage at zero, as the sheet says."""
     efficiency: float = 1.0
