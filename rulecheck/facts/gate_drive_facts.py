@@ -3,6 +3,7 @@
 from collections import Counter
 from collections.abc import Iterable, Mapping, Sequence
 
+from rulecheck.facts.drawn import open_where_none
 from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.gate_drive_terms import GATE_DRIVE
 from rulecheck.facts.gate_electrics import (
@@ -46,7 +47,9 @@ def collect(inputs: Inputs) -> tuple[Subject, ...]:
         for drive in drives.values()
     )
     steps = known_steps(inputs)
-    return tuple(_subject(inputs, gate, drives.get(gate), drawn, steps) for gate in gates)
+    found = tuple(_subject(inputs, gate, drives.get(gate), drawn, steps) for gate in gates)
+    commands = Unknown("what commands the drivers", "the controller in the netlist")
+    return open_where_none(found, "commanded", commands)
 
 
 def _subject(
@@ -255,7 +258,7 @@ def _edge_voltage(inputs: Inputs, positions: Sequence[str]) -> Value:
 def _commanded(inputs: Inputs, drive: GateDrive) -> bool | Unknown:
     """Whether each input net that belongs to the output leads to something else."""
     if drive.output.by not in (DrivenBy.DRIVER, DrivenBy.ISOLATOR) or not drive.output.input_nets:
-        return True if drive.output.part else _NOT_DRAWN
+        return Unknown(f"the input behind gate {drive.gate}", f"a driver at {drive.gate}")
     own = {drive.output.part}
     return all(set(inputs.parts_at_net.get(net, ())) - own for net in drive.output.input_nets)
 

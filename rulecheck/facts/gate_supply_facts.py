@@ -2,6 +2,7 @@
 
 from collections.abc import Iterable, Sequence
 
+from rulecheck.facts.drawn import open_where_none
 from rulecheck.facts.facts import Bounds, Subject, Value
 from rulecheck.facts.gate_electrics import drive_power, frequency_of, gate_charge, total
 from rulecheck.facts.gate_levels import bootstrap_diodes, bootstrap_feed, supply_range
@@ -24,7 +25,7 @@ GATE_SUPPLY = SubjectTerm(
         texts("drivers", "The drivers that it feeds."),
         count("gates", "How many gate nets its outputs drive."),
         yes_no("bootstrap", "It is a floating supply that a diode charges in each period."),
-        yes_no("fed", "Something other than drivers, capacitors and gate parts is at it."),
+        yes_no("fed", "Something but drivers and capacitors is at it, or the sheet states it."),
         yes_no("decoupled", "A capacitor stands between it and its return."),
         number("capacitance", Dimension.CAPACITANCE, "All capacitors from it to its return."),
         span_of("voltage", V, "Its voltage over its return."),
@@ -62,9 +63,12 @@ def collect(inputs: Inputs) -> tuple[Subject, ...]:
         if known and any(inputs.positions_of_part.get(name) for name in drive.devices):
             by_net.setdefault(known, []).append(drive)
     steps = known_steps(inputs)
-    return tuple(
+    found = tuple(
         _subject(inputs, net, by_net[net], steps) for net in sorted(by_net, key=natural_key)
     )
+    feeds = Unknown("what feeds the gate supplies", "the supplies of the drivers in the netlist")
+    aids = Unknown("the capacitors of the gate supplies", "the drivers' capacitors in the netlist")
+    return open_where_none(open_where_none(found, "fed", feeds), "decoupled", aids)
 
 
 def _subject(
@@ -143,7 +147,8 @@ _QUIET = frozenset({Kind.CAPACITOR, Kind.DRIVER})
 
 def _fed(inputs: Inputs, net: str) -> bool:
     kinds = {inputs.part_by_name[name].kind for name in inputs.parts_at_net.get(net, ())}
-    return bool(kinds - _QUIET) or net in inputs.ports_at_net
+    stated = net in inputs.ports_at_net or net in inputs.stage.gate_supplies
+    return bool(kinds - _QUIET) or stated
 
 
 def _feeding(inputs: Inputs, net: str) -> list[Part]:
