@@ -22,12 +22,19 @@ from rulecheck.facts.gate_levels import (
     swing,
     unclamped_level,
 )
+from rulecheck.facts.gate_limits import (
+    clamp_values,
+    edge_time,
+    edge_voltage_at,
+    highest_threshold,
+    lowest_threshold,
+)
 from rulecheck.facts.gate_resistor import hottest_resistor, resistor_power
-from rulecheck.facts.inputs import Inputs, stated_number, stated_range
+from rulecheck.facts.inputs import Inputs, stated_number
 from rulecheck.facts.potential import Steps, known_steps, largest_difference
 from rulecheck.parts import Kind, Part
 from rulecheck.stage import DrivenBy, GateDrive
-from rulecheck.values import Interval, Unknown, natural_key
+from rulecheck.values import Unknown, natural_key
 
 _RETURNS = ("source", "emitter", "cathode")
 _INSULATED = frozenset(
@@ -67,8 +74,8 @@ def _subject(
         "on-own-return": any(_on_own_return(inputs, part) for part in parts),
         "side-by-side": float(_side_by_side(inputs, devices)),
         "upside": all(part.kind is Kind.P_MOSFET for part in parts),
-        "threshold": _lowest_threshold(parts),
-        "full-on": _highest_threshold(parts),
+        "threshold": lowest_threshold(parts),
+        "full-on": highest_threshold(parts),
         **(_undriven(gate) if drive is None else _drive_values(inputs, drive, positions, steps)),
     }
     if drive is not None and not drawn:
@@ -111,7 +118,7 @@ def _drive_values(
 ) -> dict[str, Value]:
     output = drive.output
     driver = inputs.part_by_name.get(output.part)
-    edge_voltage = _edge_voltage(inputs, positions)
+    edge_voltage, edge = edge_voltage_at(inputs, positions), edge_time(inputs, positions)
     return {
         "driven-by": output.by.value,
         "driver": output.part,
@@ -134,7 +141,7 @@ def _drive_values(
         "held": bool(drive.hold_resistors) or bool(drive.transformer),
         "hold-resistor": _least_hold(inputs, drive),
         "clamped": bool(drive.clamps),
-        **_clamp_values(inputs, drive),
+        **clamp_values(inputs, drive),
         "charge": gate_charge(inputs, drive),
         "frequency": frequency_of(inputs, positions),
         **_power_values(inputs, drive, positions),
@@ -142,7 +149,7 @@ def _drive_values(
         "output-peak-current": _of_whole_output(inputs, drive),
         "output-current": _of_driver(driver, "driver.output-current", drive),
         "edge-voltage": edge_voltage,
-        "induced-voltage": induced_voltage(inputs, drive, edge_voltage, _edge(inputs, positions)),
+        "induced-voltage": induced_voltage(inputs, drive, edge_voltage, edge),
         "return-potential": largest_difference(steps, output.input_ground, output.return_net)
         if output.input_ground and output.return_net
         else Unknown(f"the grounds of {output.part}", f"part data of {output.part}"),
@@ -193,66 +200,6 @@ def _least_hold(inputs: Inputs, drive: GateDrive) -> Value:
     if known:
         return min(known)
     return Unknown(f"gate-source resistor of {drive.gate}", "a resistor from gate to source")
-
-
-def _clamp_values(inputs: Inputs, drive: GateDrive) -> dict[str, Value]:
-    """In the direction that turns the devices on, and in the other."""
-    highest = [clamp.highest for clamp in drive.clamps]
-    lowest = [_turned(clamp.lowest) for clamp in drive.clamps]
-    if all(inputs.part_by_name[name].kind is Kind.P_MOSFET for name in drive.devices):
-        highest, lowest = lowest, highest
-    return {
-        "clamp-high": _nearest(highest, drive.gate),
-        "clamp-low": _turned(_nearest(lowest, drive.gate)),
-    }
-
-
-def _turned(level: float | Unknown) -> float | Unknown:
-    return level if isinstance(level, Unknown) else -level
-
-
-def _nearest(levels: Sequence[float | Unknown], gate: str) -> float | Unknown:
-    unknown = next((level for level in levels if isinstance(level, Unknown)), None)
-    missing = Unknown(f"clamp of gate {gate}", f"a zener from {gate} to its source")
-    known = [level for level in levels if isinstance(level, float)]
-    return unknown or (min(known) if known else missing)
-
-
-def _lowest_threshold(parts: Sequence[Part]) -> Value:
-    return _threshold(parts, upper=False)
-
-
-def _highest_threshold(parts: Sequence[Part]) -> Value:
-    return _threshold(parts, upper=True)
-
-
-def _threshold(parts: Sequence[Part], upper: bool) -> Value:
-    found: list[float] = []
-    for part in parts:
-        value = stated_range(part, "gate.threshold")
-        if not isinstance(value, Interval):
-            return value
-        size = sorted((abs(value.low), abs(value.high)))
-        found.append(size[1] if upper else size[0])
-    return max(found) if upper else min(found)
-
-
-def _edge(inputs: Inputs, positions: Sequence[str]) -> Value:
-    """Seconds that the voltage of the legs takes to change over."""
-    legs = [leg for name in positions for leg in inputs.legs_of_position.get(name, ())]
-    own = [inputs.stage.leg_switching[leg] for leg in legs if leg in inputs.stage.leg_switching]
-    stated = [s.edge for s in (*own, inputs.stage.switching) if s.edge is not None]
-    return stated[0] if stated else Unknown("edge time of the leg", "switching: {edge: ...}")
-
-
-def _edge_voltage(inputs: Inputs, positions: Sequence[str]) -> Value:
-    """Volts: the largest forward off voltage of the positions."""
-    spans = [inputs.demands.positions[name].off_voltage for name in positions]
-    unknown = [span for span in spans if isinstance(span, Unknown) or not span.bounded]
-    if unknown or not spans:
-        open_one = next((span for span in unknown if isinstance(span, Unknown)), None)
-        return open_one or Unknown("off voltage of the switch", "the voltages of the ports")
-    return max(max(span.magnitude, 0.0) for span in spans if isinstance(span, Interval))
 
 
 def _commanded(inputs: Inputs, drive: GateDrive) -> bool | Unknown:
