@@ -2,6 +2,7 @@
 
 from rulecheck.demand.bank_records import BankFindings, CapacitorBank, Discharge
 from rulecheck.demand.build import find_demands
+from rulecheck.demand.commands import ClosedLoop, CommandedGroup, CommandedState, Takeover
 from rulecheck.demand.demands import (
     Bridge,
     Demands,
@@ -32,6 +33,9 @@ __all__ = [
     "Bridge",
     "CapacitorBank",
     "CapacitorWaves",
+    "ClosedLoop",
+    "CommandedGroup",
+    "CommandedState",
     "Demands",
     "Derived",
     "Discharge",
@@ -45,6 +49,7 @@ __all__ = [
     "PositionDemand",
     "PositionWaves",
     "State",
+    "Takeover",
     "Undetermined",
     "Variable",
     "Waveforms",

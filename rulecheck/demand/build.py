@@ -10,6 +10,7 @@ from rulecheck.demand.alternating import alternating_parts
 from rulecheck.demand.analysis import Worked
 from rulecheck.demand.attempts import first_that_works
 from rulecheck.demand.banks import find_capacitor_banks
+from rulecheck.demand.commanded import find_commanded
 from rulecheck.demand.connecting import connecting_demand, shorting_groups
 from rulecheck.demand.demands import (
     Demands,
@@ -62,6 +63,7 @@ def find_demands(stage: Stage) -> Demands:
         (*_not_covered(worked, positions), *noted),
         waveforms,
         find_capacitor_banks(worked),
+        find_commanded(worked),
     )
 
 

@@ -3,6 +3,7 @@
 from collections.abc import Mapping
 
 from rulecheck.demand.bank_records import BankFindings
+from rulecheck.demand.commands import CommandedGroup
 from rulecheck.demand.waveforms.records import Waveforms
 from rulecheck.values import AffineForm, Interval, QuadrantSet, Unknown
 from rulecheck.values.record import Record, field
@@ -144,3 +145,5 @@ class Demands(Record):
     not_covered: tuple[str, ...]
     waveforms: Waveforms = field(default_factory=Waveforms)
     banks: BankFindings = field(default_factory=BankFindings)
+    commanded: tuple[CommandedGroup, ...] = ()
+    """What the gates' commands do to each group that has gates."""

@@ -7,6 +7,7 @@ from rulecheck.demand import Demands
 from rulecheck.facts import (
     bank_facts,
     clamp_facts,
+    commanded_facts,
     core_facts,
     filter_facts,
     free_path_facts,
@@ -40,6 +41,7 @@ _COLLECTORS: tuple[Callable[[Inputs], tuple[Subject, ...]], ...] = (
     position_facts.collect,
     leg_facts.collect,
     state_facts.collect,
+    commanded_facts.collect,
     gate_drive_facts.collect,
     gate_supply_facts.collect,
     passive_facts.collect,

@@ -5,9 +5,19 @@ from collections.abc import Iterable, Mapping
 from rulecheck.demand import Demands, FreeShort, HardCommutation, InterruptedCurrent
 from rulecheck.facts.facts import Bounds, Subject, Value
 from rulecheck.facts.inputs import Inputs, stated_number
-from rulecheck.facts.terms import SubjectTerm, link, number, span_of, text
+from rulecheck.facts.recovery import (
+    current_slope,
+    peak_recovery_current,
+    recovering_diodes,
+    recovery_charge,
+    recovery_time,
+)
+from rulecheck.facts.terms import SubjectTerm, link, number, span_of, text, texts, yes_no
 from rulecheck.parts import Kind
+from rulecheck.stage import Position
 from rulecheck.values import Dimension, Interval, Unknown
+
+V, A = Dimension.VOLTAGE, Dimension.CURRENT
 
 FREE_PATH = SubjectTerm(
     "free-path",
@@ -20,19 +30,34 @@ FREE_PATH = SubjectTerm(
         text("across", "Of `short`: the voltage that is shorted."),
         span_of("voltage", Dimension.VOLTAGE, "Of `short`: the range of that voltage."),
         text("by", "Of `recovery`: the position whose turning on ends the free conduction."),
-        number("recovery-current", Dimension.CURRENT, "Of `recovery`: the current turned off."),
-        number("recovery-voltage", Dimension.VOLTAGE, "Of `recovery`: the voltage that follows."),
+        number("recovery-current", A, "Of `recovery`: the current turned off."),
+        number("recovery-voltage", V, "Of `recovery`: the voltage that follows."),
         number("recovery-time", Dimension.TIME, "Of `recovery`: longest of the diodes' times."),
+        number("recovery-charge", Dimension.CHARGE, "Of `recovery`: charge of its diodes."),
+        number("recovery-peak", A, "Of `recovery`: peak of the abrupt recovery current itself."),
         number("period", Dimension.TIME, "Of `recovery`: the switching period of its leg."),
+        text(
+            "diode-sort",
+            "Of `recovery`: `body`, `co-packed`, `discrete`, `channel`, or `beside` where an "
+            "external diode lies beside one that nothing keeps out of conduction.",
+        ),
+        texts("diodes", "Of `recovery`: the devices whose free paths carry the current."),
+        texts("shielded", "Of `recovery`: transistors whose own diode a series diode keeps out."),
+        yes_no("has-shield", "Of `recovery`: there are such transistors."),
+        number("series-blocking", V, "Of `recovery`: least blocking voltage of those diodes."),
     ),
     (
         link("positions", "position", "The positions that it runs, or should run, through."),
         link("inductors", "inductor", "Of `interrupted`: the inductor, where it is one."),
+        link("turned-off-by", "position", "Of `recovery`: the position of `by`."),
     ),
 )
 
 _NOT_OF_THIS_SORT: dict[str, Value] = {
-    **dict.fromkeys(("carrier", "direction", "across", "by"), ""),
+    **dict.fromkeys(("carrier", "direction", "across", "by", "diode-sort"), ""),
+    **dict.fromkeys(("diodes", "shielded"), ()),
+    "has-shield": False,
+    **dict.fromkeys(("recovery-charge", "recovery-peak", "series-blocking"), 0.0),
     **dict.fromkeys(("current", "voltage"), Interval(0.0, 0.0)),
     **dict.fromkeys(("recovery-current", "recovery-voltage", "recovery-time", "period"), 0.0),
 }
@@ -110,24 +135,43 @@ def _recovery(inputs: Inputs, item: HardCommutation) -> Subject:
         "by": item.by,
         "recovery-current": item.current,
         "recovery-voltage": item.voltage,
-        "recovery-time": _recovery_time(inputs, item.position),
         "period": _period(inputs, item.position),
+        **_diode_values(inputs, item, position),
     }
-    links = {"positions": (item.position,), "inductors": ()}
+    links = {"positions": (item.position,), "inductors": (), "turned-off-by": (item.by,)}
     nets = (position.start, position.end)
     return _subject(inputs, recovery_name(item), values, links, position.parts, nets)
 
 
-def _recovery_time(inputs: Inputs, position: str) -> Value:
-    """The longest of its devices' diodes; those that state none leave it open upwards."""
-    capability = inputs.capabilities.positions[position]
-    forward, reverse = capability.forward, capability.reverse
-    names = forward.carried_by if forward.freewheels else reverse.carried_by
-    stated = [stated_number(inputs.part_by_name[name], "diode.recovery-time") for name in names]
-    known = [value for value in stated if isinstance(value, float)]
-    missing = tuple(value for value in stated if isinstance(value, Unknown))
-    longest = max(known, default=0.0)
-    return Bounds(Interval(longest, float("inf")), missing) if missing else longest
+def _diode_values(inputs: Inputs, item: HardCommutation, position: Position) -> dict[str, Value]:
+    forward = inputs.capabilities.positions[item.position].forward.freewheels
+    found = recovering_diodes(inputs, position, forward)
+    charge = recovery_charge(inputs, position, found.devices)
+    series = [stated_number(inputs.part_by_name[n], "ratings.blocking") for n in found.series]
+    known = [value for value in series if isinstance(value, float)]
+    return {
+        "recovery-time": recovery_time(inputs, found.devices),
+        "recovery-charge": charge,
+        "recovery-peak": _peak(inputs, item, charge),
+        "diode-sort": found.sort,
+        "diodes": found.devices,
+        "shielded": found.shielded,
+        "has-shield": bool(found.shielded),
+        "series-blocking": next((v for v in series if v not in known), min(known, default=0.0)),
+    }
+
+
+def _peak(inputs: Inputs, item: HardCommutation, charge: Value) -> Value:
+    """Of an abrupt diode, whose peak is the largest; open upwards where the charge is."""
+    devices = inputs.parts_of_positions((item.by,))
+    gated = [name for name in devices if inputs.part_by_name[name].gated]
+    slope = current_slope(inputs, item.current, gated)
+    if not isinstance(slope, float):
+        return slope
+    if isinstance(charge, Bounds):
+        least = peak_recovery_current(charge.range.low, slope)
+        return Bounds(Interval(least, float("inf")), charge.missing)
+    return peak_recovery_current(charge, slope) if isinstance(charge, float) else charge
 
 
 def _period(inputs: Inputs, position: str) -> Value:

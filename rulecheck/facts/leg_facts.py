@@ -6,6 +6,7 @@ from rulecheck.demand import Bridge, Leg, Likeness
 from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.feeding import Wires, find_wires
 from rulecheck.facts.inputs import Inputs
+from rulecheck.facts.leg_timing_facts import TIMING_FIELDS, timing_values
 from rulecheck.facts.likeness_facts import LEG_LIKENESS, leg_likeness, likeness_of_legs
 from rulecheck.facts.loop_facts import LOOP_TERMS, loop_values
 from rulecheck.facts.short_path import is_short_sensed
@@ -35,9 +36,9 @@ LEG = SubjectTerm(
         texts("high-models", "Models of the gated devices above the midpoint."),
         texts("low-models", "Models of the gated devices below the midpoint."),
         number("frequency", Dimension.FREQUENCY, "Its switching frequency."),
-        number("dead-time", Dimension.TIME, "Its dead time."),
         *LEG_LIKENESS,
         *LOOP_TERMS,
+        *TIMING_FIELDS,
     ),
     (
         link("positions", "position", "All its positions."),
@@ -104,8 +105,9 @@ def _leg(inputs: Inputs, wires: Wires, leg: Leg) -> Subject:
         "low-kinds": _kinds(inputs, leg.low),
         "high-models": _models(inputs, leg.high),
         "low-models": _models(inputs, leg.low),
-        **_switching(inputs, leg.midpoint),
         **loop_values(inputs, leg),
+        "frequency": _frequency(inputs, leg.midpoint),
+        **timing_values(inputs, leg),
     }
     links = {
         "positions": positions,
@@ -163,18 +165,11 @@ def _models(inputs: Inputs, positions: Iterable[str]) -> tuple[str, ...]:
     return tuple(sorted(models, key=natural_key))
 
 
-def _switching(inputs: Inputs, midpoint: str) -> dict[str, Value]:
-    stage = inputs.stage
-    own = stage.leg_switching.get(midpoint)
-    frequency = (own.frequency if own else None) or stage.switching.frequency
-    dead_time = own.dead_time if own and own.dead_time is not None else stage.switching.dead_time
-    return {
-        "frequency": frequency
-        or Unknown(f"switching frequency of leg {midpoint}", "switching: {frequency: ...}"),
-        "dead-time": dead_time
-        if dead_time is not None
-        else Unknown(f"dead time of leg {midpoint}", "switching: {dead-time: ...}"),
-    }
+def _frequency(inputs: Inputs, midpoint: str) -> Value:
+    own = inputs.stage.leg_switching.get(midpoint)
+    frequency = (own.frequency if own else None) or inputs.stage.switching.frequency
+    settle = "switching: {frequency: ...}"
+    return frequency or Unknown(f"switching frequency of leg {midpoint}", settle)
 
 
 def _bridge(inputs: Inputs, bridge: Bridge) -> Subject:

@@ -1,6 +1,7 @@
 """Facts of groups of positions and of their legal switching states."""
 
 from rulecheck.demand import Group, State
+from rulecheck.facts.commanded_facts import GROUP_FIELDS, group_values, state_names
 from rulecheck.facts.facts import Subject, Value
 from rulecheck.facts.inputs import Inputs, group_name
 from rulecheck.facts.terms import SubjectTerm, count, link, text, texts, yes_no
@@ -15,10 +16,12 @@ GROUP = SubjectTerm(
         count("legal-states", "How many states neither short a voltage nor break a current."),
         count("forbidden-states", "Needed states that a drawn device's own free path forbids."),
         texts("forbidding", "The positions whose free paths forbid them."),
+        *GROUP_FIELDS,
     ),
     (
         link("positions", "position", "Its positions."),
         link("states", "switch-state", "Its legal states."),
+        link("commanded", "commanded-state", "What the gate sources command, state by state."),
     ),
 )
 
@@ -57,10 +60,12 @@ def _group(inputs: Inputs, group: Group) -> Subject:
         "legal-states": float(len(group.states)) if known is None else known,
         "forbidden-states": float(len(group.forbidden_states)) if known is None else known,
         "forbidding": group.forbidding if known is None else known,
+        **group_values(inputs, group),
     }
-    links = {
+    links: dict[str, tuple[str, ...] | Unknown] = {
         "positions": group.positions,
         "states": tuple(state_name(name, state) for state in group.states),
+        "commanded": state_names(inputs, group),
     }
     span, related = inputs.span_of_parts(parts), inputs.related_spans(parts)
     return Subject("group", name, values, links, parts, (), span, related)

@@ -4,6 +4,7 @@ from collections.abc import Mapping
 
 from rulecheck.facts.bank_facts import BANK
 from rulecheck.facts.clamp_facts import CLAMP
+from rulecheck.facts.commanded_facts import COMMANDED_STATE
 from rulecheck.facts.core_facts import CORE
 from rulecheck.facts.filter_facts import FILTER
 from rulecheck.facts.free_path_facts import FREE_PATH
@@ -37,6 +38,7 @@ VOCABULARY: Mapping[str, SubjectTerm] = {
         BRIDGE,
         GROUP,
         SWITCH_STATE,
+        COMMANDED_STATE,
         GATE_DRIVE,
         GATE_SUPPLY,
         INDUCTOR,

@@ -4,7 +4,7 @@ from rulecheck.reading import SourceText, packaged
 
 SUFFIX = ".rules.yaml"
 IN_FORCE = (
-    *("netlist", "position", "leg", "rating", "free-path", "gate-drive"),
+    *("netlist", "position", "leg", "rating", "free-path", "gate-drive", "commutation"),
     *("protection", "isolation", "consistency", "snubber", "magnetics"),
 )
 """Packs in force where a project names none, in order."""

@@ -68,4 +68,4 @@ def opposite(times: OnTimes, length: float) -> OnTimes:
 
 
 def total(times: OnTimes) -> float:
-    return sum(span.high - span.low for span in times)
+    return sum((span.high - span.low for span in times), 0.0)
