@@ -23,8 +23,10 @@ _RATINGS = {
     "isolation": Word("The voltage that it withstands between its two sides.", "5 kV"),
     "gate": Word("The voltages that its gate withstands against its source.", "[-20 V, 20 V]"),
     "power": Word("The heat that it gets rid of.", "3 W"),
+    "energy": Word("The heat that it takes in at once, such as at a first charging.", "40 J"),
     "junction-temperature": Word("The hottest that its junction may become.", "150 degC"),
     "dielectric": Word("What a capacitor is made of.", "film"),
+    "core": Word("Of an inductor with a magnet: it wants current to its second net.", "polarised"),
 }
 _GATE = {
     "": Word("The gate of a device, as its data sheet states it."),

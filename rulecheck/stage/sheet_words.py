@@ -9,6 +9,7 @@ _SWITCHING = {
     ),
     "edge": Word("How long the midpoint takes from one rail to the other.", "15 ns"),
     "shortest-pulse": Word("The shortest time that a switch is commanded on or off.", "500 ns"),
+    "stray-inductance": Word("Of the loop through a leg and its nearest capacitor.", "15 nH"),
 }
 _LEG = {
     **_SWITCHING,
@@ -52,6 +53,7 @@ SHEET_WORDS = {
     "ports.*.power-factor": Word(
         "The cosine of the angle between its voltage and its current.", "[0.8, 1]"
     ),
+    "ports.*.ripple": Word("The most ripple that its voltage may have, peak to peak.", "500 mV"),
     "ports.*.source": Word("What stands behind it.", "battery"),
     "ports.*.fuse": Word(
         "Where the fuse or breaker of its wires is drawn; `elsewhere` is another drawing.",
@@ -80,6 +82,9 @@ SHEET_WORDS = {
     "set.*.voltage": Word("The range of its voltage, first net over second.", "400 V"),
     "set.*.role": Word("What it is for, where the netlist is read wrongly.", "snubber"),
     "set.*.leakage": Word("Of a winding: the leakage inductance seen from it.", "2 uH"),
+    "set.*.rms-current": Word(
+        "Its largest rms current, where a simulation or a measurement gave it.", "6 A"
+    ),
     "set.*.balance": Word(
         "Of a winding: what keeps the mean voltage of its core at zero.", "measured"
     ),
