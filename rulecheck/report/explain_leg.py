@@ -1,6 +1,7 @@
 """Why positions form a leg: its states, and what happens with all gates off."""
 
 from rulecheck.demand import Bridge, Demands, Leg
+from rulecheck.report.explain_timing import timing_entries
 from rulecheck.report.explain_variable import variable_entries
 from rulecheck.report.explanation import Entry, Explanation
 from rulecheck.report.figures import figure, range_figure
@@ -41,6 +42,7 @@ def explain_leg(leg: Leg, stage: Stage, demands: Demands, look: Look = PLAIN) ->
             *_range_entries(members, demands, look),
             *variable_entries(_variables(members, demands), stage, demands, 1, look),
             *_switching_entries(leg, stage),
+            *timing_entries(leg, stage, look),
             *_event_entries(members, demands, look),
         ),
     )

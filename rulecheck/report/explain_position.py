@@ -3,6 +3,7 @@
 from rulecheck.capability import Capabilities, Direction
 from rulecheck.demand import Demands, PositionDemand, Witness
 from rulecheck.report.explain_gate import explain_gates
+from rulecheck.report.explain_timing import timing_entries
 from rulecheck.report.explain_variable import variable_entries
 from rulecheck.report.explanation import Entry, Explanation
 from rulecheck.report.figures import figure, range_figure, share
@@ -45,6 +46,12 @@ def explain_row(
             Entry("result", ", ".join(standing(row))),
             *explain_gates(position, stage),
             *_surroundings(position.name, demands),
+            *(
+                entry
+                for leg in demands.legs
+                if position.name in (*leg.high, *leg.low)
+                for entry in timing_entries(leg, stage, look)
+            ),
             *(Entry("not covered", line) for line in row.demand.not_covered),
         ),
     )
