@@ -106,12 +106,15 @@ def _stated(stated: float | Unknown, drivers: LegDrivers) -> Value:
     if built_in is None:
         return stated
     if isinstance(built_in, Unknown):
-        return stated if not isinstance(stated, Unknown) and stated > 0.0 else built_in
+        if isinstance(stated, Unknown):
+            return built_in
+        return Bounds(Interval(stated, math.inf), (built_in,))
     return built_in if isinstance(stated, Unknown) else max(stated, built_in)
 
 
 def _is_positive(value: Value) -> bool:
-    return isinstance(value, float) and value > 0.0
+    least = value.range.low if isinstance(value, Bounds) else value
+    return isinstance(least, float) and least > 0.0
 
 
 def _own_relation(inputs: Inputs, leg: Leg, drivers: LegDrivers) -> str | None:

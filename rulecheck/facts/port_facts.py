@@ -53,10 +53,7 @@ def _port(inputs: Inputs, wires: Wires, port: Port) -> Subject:
         "power": _stated(port, "power", port.power),
         "frequency": _stated(port, "frequency", port.frequency),
         "behind": port.source,
-        "supplies": port.voltage is not None
-        and port.current is not None
-        and port.current.high > 0.0
-        and not port.draws,
+        "supplies": _supplies(port),
         "fused": is_fused(inputs, wires, port),
         "fused-elsewhere": port.fused_elsewhere,
         "withstands": port.withstands,
@@ -85,3 +82,13 @@ def _or_derived(
 
 def _stated(port: Port, key: str, value: Interval | None) -> Interval | Unknown:
     return value or Unknown(f"{key} of port {port.name}", f"ports: {{{port.name}: {{{key}: ...}}}}")
+
+
+def _supplies(port: Port) -> bool | Unknown:
+    """Whether it fixes a voltage and supplies current; open where sheet and netlist leave that."""
+    if port.draws or (port.current is not None and port.current.high <= 0.0):
+        return False
+    if port.voltage is not None and port.current is not None:
+        return True
+    what = "voltage" if port.voltage is None else "supplies"
+    return Unknown(f"{what} of port {port.name}", f"ports: {{{port.name}: {{{what}: ...}}}}")

@@ -1,11 +1,11 @@
 """Turning a stage over, and splitting its devices."""
 
+from dataclasses import replace
 from typing import Any
 
 from hypothesis import given
 from hypothesis import strategies as st
 
-from rulecheck.values.record import replace
 from tests.kit.small_stages import (
     FEW,
     Card,

@@ -1,12 +1,12 @@
 """Rewriting a stage without changing it changes nothing in what is said of it."""
 
 import random
+from dataclasses import replace
 from typing import Any
 
 from hypothesis import given
 from hypothesis import strategies as st
 
-from rulecheck.values.record import replace
 from tests.kit.published import Study
 from tests.kit.small_stages import FEW, SmallStage, in_a_box, positions, stages, verdicts
 
