@@ -19,9 +19,8 @@ _TRACED = frozenset(
 def command_count(inputs: Inputs, position: Position) -> Value:
     """How many separate outputs command the position's gates; unknown where one is not traced."""
     found = set()
-    for drive in inputs.stage.gate_drives.values():
-        if not set(drive.devices) & set(position.parts):
-            continue
+    for gate in inputs.gates_of_position.get(position.name, ()):
+        drive = inputs.stage.gate_drives[gate]
         if drive.output.by not in _TRACED:
             settle = f"the drive of gate {drive.gate} in the netlist"
             return Unknown(f"commands of {position.name}", settle)

@@ -40,6 +40,10 @@ class Inputs(Record):
     variable_by_name: Mapping[str, Variable]
     shared: frozenset[frozenset[str]]
     """Pairs of merged nets with a sharing or snubber part across them."""
+    gates_of_position: Mapping[str, tuple[str, ...]]
+    """By position: the gates whose traced drive serves a device of it."""
+    held_by_ports: Mapping[str, tuple[str, ...]]
+    """By merged net: the nets, as written, at which ports with a voltage stand."""
 
     def merged(self, net: str) -> str:
         return self.stage.merged.get(net, net)
@@ -102,7 +106,30 @@ def gather(stage: Stage, capabilities: Capabilities, demands: Demands) -> Inputs
             for name, role in stage.roles.items()
             if role in (Role.SHARING, Role.SNUBBER) and name in parts
         ),
+        _gates_of_positions(stage),
+        _held_by_ports(stage),
     )
+
+
+def _gates_of_positions(stage: Stage) -> dict[str, tuple[str, ...]]:
+    positions = _grouped((part, p.name) for p in stage.positions for part in p.parts)
+    return _grouped(
+        (position, gate)
+        for gate, drive in stage.gate_drives.items()
+        for device in drive.devices
+        for position in positions.get(device, ())
+    )
+
+
+def _held_by_ports(stage: Stage) -> dict[str, tuple[str, ...]]:
+    spelled = {net.lower(): net for net in stage.merged}
+    nets = (
+        spelled.get(net.lower(), net)
+        for port in stage.ports
+        if port.voltage is not None
+        for net in port.named_nets or port.nets
+    )
+    return _grouped((stage.merged.get(net, net), net) for net in nets)
 
 
 def _power_nets(stage: Stage) -> frozenset[str]:

@@ -53,13 +53,7 @@ def _stiff_nets(inputs: Inputs, rail: str) -> Iterator[str]:
         part = inputs.part_by_name[name]
         if part.kind in (Kind.CAPACITOR, Kind.VOLTAGE_SOURCE) and name in inputs.branch_parts:
             yield from (net for net in part.nets if inputs.merged(net) == rail)
-    spelled = {net.lower(): net for net in inputs.stage.merged}
-    for port in inputs.stage.ports:
-        if port.voltage is not None:
-            for net in port.named_nets or port.nets:
-                written = spelled.get(net.lower(), net)
-                if inputs.merged(written) == rail:
-                    yield written
+    yield from inputs.held_by_ports.get(rail, ())
 
 
 def _senses(inputs: Inputs, name: str) -> bool:

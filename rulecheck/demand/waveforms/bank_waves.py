@@ -9,11 +9,12 @@ from rulecheck.demand.waveforms import pieces
 from rulecheck.demand.waveforms.banks import (
     Bank,
     Feed,
-    alternating_ports,
+    Feeds,
+    branch_feeds,
     closed,
-    feeds_of,
     find_banks,
     into_nets,
+    position_feeds,
     shares_of,
     without_mean,
 )
@@ -43,17 +44,39 @@ class _Around(Record):
     groups: frozenset[int]
 
 
+class _Whole(Record):
+    """What the whole stage has, indexed once for all banks."""
+
+    positions: Feeds
+    currents: Feeds
+    ports: Feeds
+    groups: Mapping[str, frozenset[int]]
+    """By link: the groups that it is in."""
+
+
+def _whole(setting: Setting) -> _Whole:
+    stage = setting.worked.stage
+    groups: dict[str, set[int]] = {}
+    for index, cluster in enumerate(setting.worked.topology.clusters):
+        for link in cluster.links:
+            groups.setdefault(link.name, set()).add(index)
+    currents, ports = branch_feeds(stage, setting.alternating)
+    found = {name: frozenset(members) for name, members in groups.items()}
+    return _Whole(position_feeds(stage), currents, ports, found)
+
+
 def bank_waves(setting: Setting) -> tuple[dict[str, CapacitorWaves], tuple[str, ...]]:
     """By capacitor, and what was assumed where anything could be worked out."""
     found: dict[str, CapacitorWaves] = {}
+    whole = _whole(setting)
     for bank in find_banks(setting.worked.stage):
-        found |= _waves_of(bank, setting)
+        found |= _waves_of(bank, setting, whole)
     known = any(not isinstance(one.rms.range, Unknown) for one in found.values())
     return found, (_SHARED,) if known else ()
 
 
-def _waves_of(bank: Bank, setting: Setting) -> dict[str, CapacitorWaves]:
-    around = _around(bank, setting)
+def _waves_of(bank: Bank, setting: Setting, whole: _Whole) -> dict[str, CapacitorWaves]:
+    around = _around(bank, setting, whole)
     open_ = [b for b in bank.capacitors if not b.value]
     if open_:
         name = open_[0].name
@@ -81,18 +104,13 @@ def _waves_of(bank: Bank, setting: Setting) -> dict[str, CapacitorWaves]:
     }
 
 
-def _around(bank: Bank, setting: Setting) -> _Around:
-    worked = setting.worked
-    stage, inside = worked.stage, set(bank.nets)
-    positions, branches = feeds_of(stage, inside)
-    branches += alternating_ports(stage, inside, setting.alternating)
+def _around(bank: Bank, setting: Setting, whole: _Whole) -> _Around:
+    stage, inside = setting.worked.stage, set(bank.nets)
+    positions = whole.positions.at(inside)
+    branches = [*whole.currents.at(inside), *whole.ports.at(inside)]
     cores = [c for c in stage.transformers if inside & {n for pair in c.windings for n in pair}]
     names = {feed.name for feed in positions} | {part for core in cores for part in core.parts}
-    groups = {
-        k
-        for k, cluster in enumerate(worked.topology.clusters)
-        if any(link.name in names for link in cluster.links)
-    }
+    groups = {k for name in names for k in whole.groups.get(name, ())}
     for feed in branches:
         groups |= _groups_of(setting, feed.name)
     return _Around(

@@ -78,28 +78,39 @@ def _bundled(branches: Sequence[Branch]) -> tuple[Bundle, ...]:
     )
 
 
-def feeds_of(stage: Stage, nets: Iterable[str]) -> tuple[list[Feed], list[Feed]]:
-    """Switch positions, and current branches, with an end in the nets."""
-    inside = set(nets)
-    positions = [Feed(p.name, p.start, p.end) for p in stage.positions]
-    branches = [
+class Feeds:
+    """Feeds by the nets at their ends, so that each bank looks at its own alone."""
+
+    def __init__(self, feeds: Iterable[Feed]) -> None:
+        self._feeds = tuple(feeds)
+        self._at: dict[str, list[int]] = {}
+        for index, feed in enumerate(self._feeds):
+            for net in {feed.start, feed.end}:
+                self._at.setdefault(net, []).append(index)
+
+    def at(self, nets: Iterable[str]) -> list[Feed]:
+        """Those with an end in the nets, in their order."""
+        return [self._feeds[k] for k in sorted({k for n in nets for k in self._at.get(n, ())})]
+
+
+def position_feeds(stage: Stage) -> Feeds:
+    return Feeds(Feed(p.name, p.start, p.end) for p in stage.positions)
+
+
+def branch_feeds(stage: Stage, alternating: frozenset[str]) -> tuple[Feeds, Feeds]:
+    """Current branches, and AC ports with a voltage, which drive their current out of minus and
+    into plus."""
+    currents = Feeds(
         Feed(name_of(b), b.start, b.end) for b in stage.branches if b.kind is BranchKind.CURRENT
-    ]
-    found = [[f for f in feeds if inside & {f.start, f.end}] for feeds in (positions, branches)]
-    return found[0], found[1]
-
-
-def alternating_ports(stage: Stage, nets: Iterable[str], alternating: frozenset[str]) -> list[Feed]:
-    """AC ports with a voltage, as what drives their current out of minus and into plus."""
-    inside = set(nets)
-    return [
+    )
+    ports = Feeds(
         Feed(f"i({b.name.removeprefix('port/')})", b.end, b.start)
         for b in stage.branches
         if b.kind is BranchKind.VOLTAGE
         and b.port
         and f"i({b.name.removeprefix('port/')})" in alternating
-        and inside & {b.start, b.end}
-    ]
+    )
+    return currents, ports
 
 
 def into_nets(
