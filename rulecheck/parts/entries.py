@@ -73,7 +73,8 @@ class EntryReader(Record):
         self, figure: Figure, raw: object, where: Path, origin: str, stated: Stated
     ) -> None:
         if figure.words:
-            stated.facts[figure.path] = str(raw).lower()
+            words = raw if isinstance(raw, list) else [raw]
+            stated.facts[figure.path] = " ".join(str(word).lower() for word in words)
             return
         span = self.marks.span(where)
         value = _value(figure, raw, span)

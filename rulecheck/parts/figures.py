@@ -67,6 +67,7 @@ FIGURES: tuple[Figure, ...] = (
     Figure("diode", "recovery-time", _S),
     Figure("driver", "dead-time", _S, ranged=True),
     Figure("driver", "interlock", Dimension.NUMBER, words=("true", "false")),
+    Figure("driver", "inverts", Dimension.NUMBER, words=("output",)),
     Figure("driver", "delay", _S, ranged=True),
     Figure("driver", "output-current", _A),
     Figure("driver", "lockout", _V, ranged=True),

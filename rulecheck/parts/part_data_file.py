@@ -86,6 +86,7 @@ class DriverEntry(msgspec.Struct, frozen=True, forbid_unknown_fields=True, renam
 
     dead_time: TimeRange | None = None
     interlock: bool | None = None
+    inverts: list[str] | None = None
     delay: TimeRange | None = None
     output_current: Current | None = None
     lockout: VoltageRange | None = None

@@ -46,6 +46,7 @@ _DIODE = {
 _DRIVER = {
     "": Word("What a gate driver, an isolator or a controller does by itself."),
     "dead-time": Word("The dead time that it keeps by itself.", "300 ns"),
+    "inverts": Word("The outputs that are high while their input is low.", "[output-low]"),
     "interlock": Word("Whether it refuses to turn on both of its outputs at once.", "true"),
     "delay": Word(
         "The delay from its input to its output, shortest and longest.", "[20 ns, 45 ns]"

@@ -4,8 +4,10 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
-from rulecheck.netlist import Waveform
-from rulecheck.stage import GateCommand, common_window
+from rulecheck.netlist import Waveform, read_circuit_text
+from rulecheck.parts import identify_parts, read_part_data
+from rulecheck.reading import SourceText
+from rulecheck.stage import GateCommand, common_window, read_sheet, read_stage
 from rulecheck.stage.gate_command import both, joined, opposite, total
 from rulecheck.stage.waveform_command import command_of
 from rulecheck.values import Interval, Unknown
@@ -178,3 +180,25 @@ def test_overlap_agrees_with_a_grid_of_time(one: GateCommand, other: GateCommand
     assert total(opposite(window.on["a"], window.length)) + total(window.on["a"]) == pytest.approx(
         window.length
     )
+
+
+INVERTING = """
+parts:
+  DR-LS:
+    kind: driver
+    pins: [supply, ground, input, output]
+    driver: {inverts: [output], delay: 20 ns}
+"""
+
+
+def test_an_inverting_output_is_on_while_its_input_is_low() -> None:
+    """Part data name the outputs that invert, by the role of their pin."""
+    cards = (
+        "C1 BUS 0 1u\nL1 BUS SW 1m\nM1 SW G 0 0 FET\nR1 O G 10\n"
+        "XU1 VCC 0 IN O DR-LS\nV1 IN 0 PULSE(0 5 0 1n 1n 3u 10u)\n.model FET NMOS\n"
+    )
+    circuit = read_circuit_text(SourceText("t.cir", f"* inverting driver\n{cards}"))
+    parts = identify_parts(circuit, read_part_data([SourceText("t.parts.yaml", INVERTING)]))
+    sheet = "ports: {bus: {between: [BUS, 0], voltage: 48 V}}"
+    stage = read_stage(parts, read_sheet(SourceText("t.stage.yaml", sheet)).sheet).stage
+    assert total(stage.gate_commands["M1"].on) == pytest.approx(7e-6, rel=1e-2)
